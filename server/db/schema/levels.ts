@@ -1,0 +1,95 @@
+import {
+  date,
+  integer,
+  numeric,
+  pgEnum,
+  pgTable,
+  primaryKey,
+} from 'drizzle-orm/pg-core';
+import { instant, tenantColumns, tenantPolicy } from './columns.ts';
+import { toZone } from './zones.ts';
+
+export const levelMeasure = pgEnum('level_measure', [
+  'inside_jobs',
+  'in_process_jobs',
+  'inside_units',
+  'in_process_units',
+]);
+
+/**
+ * What happened to a level within one local hour; hours without a change have no row.
+ * Offsets are microseconds from the hour's start, summed over the changes, so that integrals are exact.
+ */
+export const levelHour = pgTable(
+  'level_hour',
+  {
+    ...tenantColumns(),
+    zoneId: integer().notNull(),
+    measure: levelMeasure().notNull(),
+    hour: instant().notNull(),
+    ups: numeric().notNull(),
+    downs: numeric().notNull(),
+    upOffset: numeric().notNull(),
+    downOffset: numeric().notNull(),
+    /** Highest level within the hour, less the level just before it. */
+    highest: numeric().notNull(),
+  },
+  (table) => [
+    primaryKey({
+      columns: [table.organisationId, table.siteId, table.zoneId, table.measure, table.hour],
+    }),
+    toZone(table),
+    tenantPolicy(),
+  ],
+).enableRLS();
+
+/** The same over one local day, with the level at its start; days without a change have no row. */
+export const levelDay = pgTable(
+  'level_day',
+  {
+    ...tenantColumns(),
+    zoneId: integer().notNull(),
+    measure: levelMeasure().notNull(),
+    day: date().notNull(),
+    starts: instant().notNull(),
+    ends: instant().notNull(),
+    levelStart: numeric().notNull(),
+    levelEnd: numeric().notNull(),
+    ups: numeric().notNull(),
+    downs: numeric().notNull(),
+    /** ∫ level dt over the day, in unit-microseconds. */
+    integral: numeric().notNull(),
+    peak: numeric().notNull(),
+  },
+  (table) => [
+    primaryKey({
+      columns: [table.organisationId, table.siteId, table.zoneId, table.measure, table.day],
+    }),
+    toZone(table),
+    tenantPolicy(),
+  ],
+).enableRLS();
+
+/** Departures of one local day: sums of their times and a histogram in logarithmic bins of ratio 1.02. */
+export const flowDay = pgTable(
+  'flow_day',
+  {
+    ...tenantColumns(),
+    zoneId: integer().notNull(),
+    day: date().notNull(),
+    starts: instant().notNull(),
+    departures: integer().notNull(),
+    flowMicroseconds: numeric().notNull(),
+    queueKnown: integer().notNull(),
+    queueMicroseconds: numeric().notNull(),
+    processKnown: integer().notNull(),
+    processMicroseconds: numeric().notNull(),
+    bins: integer().array().notNull(),
+    counts: integer().array().notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.organisationId, table.siteId, table.zoneId, table.day] }),
+    toZone(table),
+    tenantPolicy(),
+  ],
+).enableRLS();
