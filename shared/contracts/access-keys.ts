@@ -1,0 +1,42 @@
+import { z } from 'zod';
+import { contract, idParam, instantOrNull, instantSchema } from './contract.ts';
+import { siteParams } from './sites.ts';
+
+export const accessKeySchema = z.object({
+  id: z.int(),
+  name: z.string(),
+  createdAt: instantSchema,
+  revokedAt: instantOrNull,
+});
+
+export const listAccessKeys = contract({
+  name: 'listAccessKeys',
+  method: 'get',
+  path: '/api/sites/:siteId/access-keys',
+  summary: 'The access keys of a site',
+  action: 'access-key.read',
+  params: siteParams,
+  response: z.array(accessKeySchema),
+});
+
+export const createAccessKey = contract({
+  name: 'createAccessKey',
+  method: 'post',
+  path: '/api/sites/:siteId/access-keys',
+  summary: 'Makes an access key for a machine; the key itself is shown this once',
+  action: 'access-key.create',
+  params: siteParams,
+  body: z.object({ name: z.string().trim().min(1).max(120) }),
+  response: accessKeySchema.extend({ key: z.string() }),
+  status: 201,
+});
+
+export const revokeAccessKey = contract({
+  name: 'revokeAccessKey',
+  method: 'delete',
+  path: '/api/sites/:siteId/access-keys/:keyId',
+  summary: 'Ends an access key at once',
+  action: 'access-key.revoke',
+  params: siteParams.extend({ keyId: idParam }),
+  response: accessKeySchema,
+});

@@ -1,0 +1,25 @@
+import * as accessKeys from './access-keys.ts';
+import * as auth from './auth.ts';
+import type { Contract } from './contract.ts';
+import * as figures from './figures.ts';
+import * as jobs from './jobs.ts';
+import * as server from './server.ts';
+import * as sites from './sites.ts';
+import * as uploads from './uploads.ts';
+import * as zones from './zones.ts';
+
+/** Every call of the API: the published description and the tests walk over this list. */
+export const contracts: readonly Contract[] = [
+  auth,
+  sites,
+  uploads,
+  zones,
+  figures,
+  jobs,
+  accessKeys,
+  server,
+].flatMap((module) => Object.values(module).filter(isContract));
+
+function isContract(value: unknown): value is Contract {
+  return typeof value === 'object' && value !== null && 'path' in value && 'action' in value;
+}
