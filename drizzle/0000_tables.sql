@@ -1,7 +1,6 @@
 CREATE TYPE "public"."level_measure" AS ENUM('inside_jobs', 'in_process_jobs', 'inside_units', 'in_process_units');--> statement-breakpoint
 CREATE TYPE "public"."member_role" AS ENUM('admin', 'analyst', 'supervisor', 'consultant');--> statement-breakpoint
 CREATE TYPE "public"."lost_finish" AS ENUM('infer', 'leave-open');--> statement-breakpoint
-CREATE TYPE "public"."row_outcome" AS ENUM('new', 'same', 'completing', 'correcting');--> statement-breakpoint
 CREATE TYPE "public"."upload_status" AS ENUM('receiving', 'waiting', 'reading', 'loading', 'loaded', 'failed', 'withdrawn');--> statement-breakpoint
 CREATE TYPE "public"."counts_from" AS ENUM('arrival', 'start');--> statement-breakpoint
 CREATE TYPE "public"."figure_unit" AS ENUM('jobs', 'units');--> statement-breakpoint
@@ -221,6 +220,7 @@ CREATE TABLE "site" (
 	"lost_finish" "lost_finish" DEFAULT 'infer' NOT NULL,
 	"new_pass_after_days" integer DEFAULT 90 NOT NULL,
 	"data_version" bigint DEFAULT 0 NOT NULL,
+	"rebuild_requested_at" timestamp with time zone,
 	"created_at" timestamp with time zone NOT NULL,
 	CONSTRAINT "site_organisation_id_id_pk" PRIMARY KEY("organisation_id","id"),
 	CONSTRAINT "site_name_once" UNIQUE("organisation_id","name")
@@ -293,6 +293,8 @@ CREATE TABLE "upload_area" (
 	"rows" integer NOT NULL,
 	"first_at" timestamp with time zone NOT NULL,
 	"latest_at" timestamp with time zone NOT NULL,
+	"has_quantities" boolean NOT NULL,
+	"has_starts" boolean NOT NULL,
 	CONSTRAINT "upload_area_organisation_id_site_id_upload_id_area_id_pk" PRIMARY KEY("organisation_id","site_id","upload_id","area_id")
 );
 --> statement-breakpoint
@@ -329,7 +331,6 @@ CREATE TABLE "upload_row" (
 	"resource" text,
 	"status" text,
 	"parent" text,
-	"outcome" "row_outcome" NOT NULL,
 	CONSTRAINT "upload_row_organisation_id_site_id_job_key_upload_id_line_part_pk" PRIMARY KEY("organisation_id","site_id","job_key","upload_id","line","part")
 );
 --> statement-breakpoint

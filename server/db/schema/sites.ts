@@ -38,6 +38,8 @@ export const site = pgTable(
     newPassAfterDays: integer().notNull().default(90),
     /** Grows with every change of figures; answers are cached under it. */
     dataVersion: bigint({ mode: 'number' }).notNull().default(0),
+    /** Set when a setting changed on which every stay depends; cleared once all are derived again. */
+    rebuildRequestedAt: instant(),
     createdAt: instant().notNull(),
   },
   (table) => [

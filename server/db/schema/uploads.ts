@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import {
   bigint,
   bigserial,
+  boolean,
   date,
   foreignKey,
   index,
@@ -28,7 +29,6 @@ export const uploadStatus = pgEnum('upload_status', [
   'failed',
   'withdrawn',
 ]);
-export const rowOutcome = pgEnum('row_outcome', ['new', 'same', 'completing', 'correcting']);
 
 /** One file as it was handed over. `id` grows in order of receipt, which decides whose word is later. */
 export const upload = pgTable(
@@ -106,6 +106,9 @@ export const uploadArea = pgTable(
     rows: integer().notNull(),
     firstAt: instant().notNull(),
     latestAt: instant().notNull(),
+    /** Whether any of its rows here carries a quantity, or a start. */
+    hasQuantities: boolean().notNull(),
+    hasStarts: boolean().notNull(),
   },
   (table) => [
     primaryKey({ columns: [table.organisationId, table.siteId, table.uploadId, table.areaId] }),
@@ -146,7 +149,6 @@ export const uploadRow = pgTable(
     finished: instant(),
     event: text(),
     ...toldColumns(),
-    outcome: rowOutcome().notNull(),
   },
   (table) => [
     primaryKey({
