@@ -29,6 +29,15 @@ create trigger audit_entry_only_grows before update or delete on audit_entry
 create trigger audit_entry_never_emptied before truncate on audit_entry
   for each statement execute function refuse_change_of_audit();--> statement-breakpoint
 
+-- ⌈log₄ of the seconds⌉ of a stay, 99 while open: a look-up by time needs to reach back 4^class seconds only.
+create function length_class(entered timestamptz, left_at timestamptz) returns smallint
+language sql immutable parallel safe as $$
+  select case
+    when left_at is null then 99
+    else ceil(ln(greatest(date_part('epoch', left_at - entered), 1)) / ln(4.0::double precision))
+  end::smallint
+$$;--> statement-breakpoint
+
 -- Who was inside at t, and who came or left in a period: one bounded look-up per length class.
 create index record_by_length on record
   (organisation_id, site_id, area_id, length_class, stay_from) include (left_at, job_key, ordinal)

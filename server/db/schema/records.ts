@@ -27,11 +27,10 @@ export const record = pgTable(
     started: instant(),
     finished: instant(),
     ...toldColumns(),
-    /** Where the record's latest version stands, and how many versions it has. */
+    /** The first row of a file that told it as it now stands, else the last that told of it. */
     uploadId: integer().notNull(),
     line: integer().notNull(),
     part: smallint().notNull(),
-    versions: integer().notNull(),
     /** When the job came, as far as it is known: arrival, else previous finish, else start. */
     entered: instant(),
     /** Finish, or the later start from which a lost finish was inferred; null while open. */
