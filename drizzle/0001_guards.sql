@@ -92,4 +92,18 @@ begin
   end if;
 end
 $$;--> statement-breakpoint
-revoke all on function weirmark_login(text, text) from public;
+revoke all on function weirmark_login(text, text) from public;--> statement-breakpoint
+
+-- Sites with work that waits or was broken off, whatever the tenant: it tells their ids and nothing else.
+create function sites_with_work() returns table (organisation_id integer, site_id integer)
+language sql stable security definer set search_path = public as $$
+  select upload.organisation_id, upload.site_id from upload
+  where status in ('waiting', 'reading', 'loading')
+    or (withdraw_requested_at is not null and status <> 'withdrawn')
+  union
+  select site.organisation_id, site.id from site where rebuild_requested_at is not null
+  union
+  select zone.organisation_id, zone.site_id from zone where state = 'deriving'
+$$;--> statement-breakpoint
+revoke all on function sites_with_work() from public;--> statement-breakpoint
+grant execute on function sites_with_work() to weirmark_app;

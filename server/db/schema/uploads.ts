@@ -54,6 +54,8 @@ export const upload = pgTable(
     error: jsonb(),
     /** Latest accepted time anywhere in the file: up to there it speaks for the areas in it. */
     latestAt: instant(),
+    /** How often work on it was begun: after a few deaths of the server it is given up. */
+    attempts: integer().notNull().default(0),
     stopRequestedAt: instant(),
     withdrawRequestedAt: instant(),
     finishedAt: instant(),

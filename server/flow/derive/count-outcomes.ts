@@ -1,0 +1,95 @@
+import { sql, type SQL } from 'drizzle-orm';
+import { z } from 'zod';
+import type { Derivation } from './derivation.ts';
+
+const columns = [
+  'job_key',
+  'area_id',
+  'arrived',
+  'started',
+  'finished',
+  'quantity',
+  'family',
+  'due',
+  'priority',
+  'work_content',
+  'value',
+  'resource',
+  'status',
+  'parent',
+] as const;
+
+const outcomeRow = z.object({
+  new: z.coerce.number(),
+  same: z.coerce.number(),
+  completing: z.coerce.number(),
+  correcting: z.coerce.number(),
+});
+export type OutcomeCounts = z.infer<typeof outcomeRow>;
+
+const joined = (parts: SQL[], by: SQL): SQL => sql.join(parts, by);
+const each = (of: (column: SQL) => SQL, by: SQL): SQL =>
+  joined(
+    columns.map((column) => of(sql`${sql.identifier(column)}`)),
+    by,
+  );
+
+/**
+ * What the rows of one upload did to the records: the first row of a record is new; a later one corrects
+ * where it gives another value than was given last, completes where it gives what was blank, and is the
+ * same otherwise. Needs `told_row`.
+ */
+export async function countOutcomes(
+  { tx }: Derivation,
+  uploadId: number,
+): Promise<OutcomeCounts> {
+  const record = sql`first_upload, first_line, first_part`;
+  const { rows } = await tx.execute(sql`/* count outcomes */
+    with repeated as (
+      select
+        told_row.*,
+        (${each((column) => column, sql`, `)}) is not distinct from (
+          ${each((column) => sql`lag(${column}) over in_order`, sql`, `)}
+        ) as repeats
+      from told_row where versions > 1
+      window in_order as (partition by ${record} order by version)
+    ),
+    telling as (
+      -- Only records of which a row of this upload says something else than the row before it.
+      select distinct ${record} from repeated
+      where upload_id = ${uploadId} and version > 1 and not repeats
+    ),
+    compared as (
+      select
+        repeated.upload_id, repeated.version,
+        ${each(
+          (column) => sql`${column} is not null and ${column} is distinct from lag(${column}) over (
+            partition by ${record}, ${column} is null order by version
+          ) and lag(${column}) over (
+            partition by ${record}, ${column} is null order by version
+          ) is not null`,
+          sql` or `,
+        )} as corrects,
+        ${each(
+          (column) => sql`${column} is not null and lag(${column}) over (
+            partition by ${record}, ${column} is null order by version
+          ) is null`,
+          sql` or `,
+        )} as completes
+      from repeated join telling using (${record})
+    ),
+    told as (
+      select count(*) filter (where version = 1) as new, count(*) as total
+      from told_row where upload_id = ${uploadId}
+    ),
+    judged as (
+      select
+        count(*) filter (where corrects) as correcting,
+        count(*) filter (where completes and not corrects) as completing
+      from compared where upload_id = ${uploadId} and version > 1
+    )
+    select
+      new, completing, correcting, total - new - completing - correcting as same
+    from told cross join judged`);
+  return outcomeRow.parse(rows[0]);
+}

@@ -1,0 +1,14 @@
+import type { ZoneRules } from '../../../shared/local-time.ts';
+import type { Transaction } from '../../db/client.ts';
+
+/** What every step of deriving needs: where, in which transaction, and the site's settings. */
+export interface Derivation {
+  tx: Transaction;
+  organisationId: number;
+  siteId: number;
+  rules: ZoneRules;
+  /** Take a lost finish as the job's next start, or leave the stay open. */
+  inferLostFinish: boolean;
+  /** A job key that returns after an idle gap of more days is a new pass. */
+  newPassAfterDays: number;
+}

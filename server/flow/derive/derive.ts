@@ -1,0 +1,153 @@
+import { sql } from 'drizzle-orm';
+import { z } from 'zod';
+import type { Derivation } from './derivation.ts';
+import { dayGrid, type DayGrid } from './local-grid.ts';
+import { mergeRecords } from './merge-records.ts';
+import { refreshWarmUp, refreshZones } from './refresh-zones.ts';
+import { replaceAllFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
+import { replaceLevelDays } from './replace-level-days.ts';
+import { replaceAllLevelHours, replaceTouchedLevelHours } from './replace-level-hours.ts';
+import { findChangedJobs, replaceRecords } from './replace-records.ts';
+import { replaceStays } from './replace-stays.ts';
+import { gatherToldRows, touchEveryJob } from './told-rows.ts';
+import {
+  createTouchedHours,
+  readTouchedZones,
+  spanTouchedHours,
+  touchHoursOfChangedJobs,
+} from './touched-hours.ts';
+
+/**
+ * Brings records, stays, levels and days up to date with the told rows of the jobs in `touched_job`
+ * (see `createTouchedJobs`), and touches nothing else. The answer is the same as a rebuild's.
+ */
+export async function deriveTouchedJobs(derivation: Derivation): Promise<void> {
+  await gatherToldRows(derivation);
+  await deriveFromToldRows(derivation);
+}
+
+/** The same, where `told_row` was gathered already. */
+export async function deriveFromToldRows(derivation: Derivation): Promise<void> {
+  const { unitsChanged } = await refreshZones(derivation);
+  await mergeRecords(derivation);
+  await findChangedJobs(derivation);
+  await createTouchedHours(derivation);
+  const fresh = await isFresh(derivation);
+  if (!fresh) await touchHoursOfChangedJobs(derivation);
+  await replaceRecords(derivation);
+  await replaceStays(derivation, sql`select job_key from changed_job`);
+  if (fresh) await deriveAllLevels(derivation, await zoneIds(derivation));
+  else await deriveTouchedLevels(derivation, unitsChanged);
+  await finish(derivation);
+}
+
+/** Derives everything from the told rows, whatever stands. */
+export async function rebuildSite(derivation: Derivation): Promise<void> {
+  const { tx } = derivation;
+  await refreshZones(derivation);
+  await touchEveryJob(derivation);
+  await gatherToldRows(derivation);
+  await mergeRecords(derivation);
+  await tx.execute(sql`drop table if exists changed_job`);
+  await tx.execute(sql`create temp table changed_job on commit drop as select * from touched_job`);
+  await replaceRecords(derivation);
+  await replaceStays(derivation, sql`select job_key from changed_job`);
+  await deriveAllLevels(derivation, await zoneIds(derivation));
+  await finish(derivation);
+}
+
+/** Derives the stays, levels and days of one zone of several areas, for a loop that is new or changed. */
+export async function deriveZone(derivation: Derivation, zoneId: number): Promise<void> {
+  const { organisationId, siteId } = derivation;
+  await refreshZones(derivation);
+  await replaceStays(
+    derivation,
+    sql`select job_key from record where organisation_id = ${organisationId} and site_id = ${siteId}`,
+    zoneId,
+  );
+  await deriveAllLevels(derivation, [zoneId]);
+  await finish(derivation);
+}
+
+/** Whether there was nothing before, so that there is nothing to compare hours with. */
+async function isFresh({ tx, organisationId, siteId }: Derivation): Promise<boolean> {
+  const { rows } = await tx.execute(sql`/* anything before */
+    select not exists (
+      select from record where organisation_id = ${organisationId} and site_id = ${siteId}
+    ) as fresh`);
+  return rows[0]?.fresh === true;
+}
+
+async function zoneIds({ tx, organisationId, siteId }: Derivation): Promise<number[]> {
+  const { rows } = await tx.execute(sql`/* zones */
+    select id from zone where organisation_id = ${organisationId} and site_id = ${siteId}`);
+  return rows.map((row) => Number(row.id));
+}
+
+async function deriveAllLevels(derivation: Derivation, zones: readonly number[]): Promise<void> {
+  await replaceAllLevelHours(derivation, zones);
+  const grid = await gridOfHours(derivation);
+  if (!grid) return removeDays(derivation, zones);
+  await replaceLevelDays(derivation, new Map(zones.map((zone) => [zone, -Infinity])), grid);
+  await replaceAllFlowDays(derivation, zones, grid);
+}
+
+async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[]): Promise<void> {
+  await touchHoursOfChangedJobs(derivation);
+  const touched = await readTouchedZones(derivation);
+  const whole = new Set([
+    ...unitsChanged,
+    ...touched.filter((zone) => zone.mostly).map((zone) => zone.zoneId),
+  ]);
+  if (whole.size > 0) {
+    await derivation.tx.execute(sql`/* leave whole zones to the other way */
+      delete from touched_hour where zone_id = any(${sql.param([...whole])}::integer[])`);
+    await deriveAllLevels(derivation, [...whole]);
+  }
+  const parts = touched.filter((zone) => !whole.has(zone.zoneId));
+  if (parts.length === 0) return;
+  const grid = await gridOfTouchedHours(derivation);
+  if (!grid) return;
+  await spanTouchedHours(derivation, grid);
+  await replaceTouchedLevelHours(derivation);
+  await replaceTouchedFlowDays(derivation, grid);
+  const wide = (await gridOfHours(derivation)) ?? grid;
+  await replaceLevelDays(derivation, new Map(parts.map((zone) => [zone.zoneId, zone.from])), wide);
+}
+
+async function finish(derivation: Derivation): Promise<void> {
+  const { tx, organisationId, siteId } = derivation;
+  await refreshWarmUp(derivation);
+  await tx.execute(sql`/* new data version */
+    update site set data_version = data_version + 1
+    where organisation_id = ${organisationId} and id = ${siteId}`);
+}
+
+const spanRow = z.object({ first: z.coerce.date().nullable(), last: z.coerce.date().nullable() });
+
+async function gridOfHours({ tx, rules, organisationId, siteId }: Derivation): Promise<DayGrid | null> {
+  const { rows } = await tx.execute(sql`/* span of hours */
+    select min(hour) as first, max(hour) as last from level_hour
+    where organisation_id = ${organisationId} and site_id = ${siteId}`);
+  return gridOver(rules, rows[0]);
+}
+
+async function gridOfTouchedHours({ tx, rules }: Derivation): Promise<DayGrid | null> {
+  const { rows } = await tx.execute(
+    sql`/* span of touched hours */ select min(hour) as first, max(hour) as last from touched_hour`,
+  );
+  return gridOver(rules, rows[0]);
+}
+
+function gridOver(rules: Derivation['rules'], row: unknown): DayGrid | null {
+  const { first, last } = spanRow.parse(row);
+  return first && last ? dayGrid(rules, first.getTime(), last.getTime() + 1) : null;
+}
+
+async function removeDays(derivation: Derivation, zones: readonly number[]): Promise<void> {
+  const { tx, organisationId, siteId } = derivation;
+  const ofZones = sql`organisation_id = ${organisationId} and site_id = ${siteId}
+    and zone_id = any(${sql.param([...zones])}::integer[])`;
+  await tx.execute(sql`/* remove days */ delete from level_day where ${ofZones}`);
+  await tx.execute(sql`/* remove days */ delete from flow_day where ${ofZones}`);
+}

@@ -1,0 +1,201 @@
+import { sql } from 'drizzle-orm';
+import type { Derivation } from './derivation.ts';
+
+/**
+ * Temporary table `merged_record`: the records of the touched jobs as they now stand, in the columns of
+ * `record`. Of each field the last given value holds, so a given value beats a blank in any order.
+ * Needs `told_row`.
+ */
+export async function mergeRecords(derivation: Derivation): Promise<void> {
+  await foldVersions(derivation);
+  await chainRecords(derivation);
+}
+
+/** Temporary table `folded_record`: one row for all rows that tell of the same record. */
+async function foldVersions({ tx }: Derivation): Promise<void> {
+  await tx.execute(sql`drop table if exists folded_record`);
+  await tx.execute(sql`/* fold versions */
+    create temp table folded_record on commit drop as
+    with in_order as (
+      select * from told_row where versions > 1
+      order by first_upload, first_line, first_part, version
+    ),
+    last_given as (
+      -- The rows come in order, so the last element of each array is the last value given.
+      select
+        first_upload, first_line, first_part,
+        array_agg(job_key) as job_key,
+        array_agg(area_id) as area_id,
+        array_agg(arrived) filter (where arrived is not null) as arrived,
+        array_agg(started) filter (where started is not null) as started,
+        array_agg(finished) filter (where finished is not null) as finished,
+        array_agg(record_key) filter (where record_key is not null) as record_key,
+        array_agg(quantity) filter (where quantity is not null) as quantity,
+        array_agg(family) filter (where family is not null) as family,
+        array_agg(due) filter (where due is not null) as due,
+        array_agg(priority) filter (where priority is not null) as priority,
+        array_agg(work_content) filter (where work_content is not null) as work_content,
+        array_agg(value) filter (where value is not null) as value,
+        array_agg(resource) filter (where resource is not null) as resource,
+        array_agg(status) filter (where status is not null) as status,
+        array_agg(parent) filter (where parent is not null) as parent
+      from in_order group by first_upload, first_line, first_part
+    ),
+    folded as (
+      select
+        first_upload, first_line, first_part,
+        job_key[array_upper(job_key, 1)] as job_key,
+        area_id[array_upper(area_id, 1)] as area_id,
+        arrived[array_upper(arrived, 1)] as arrived,
+        started[array_upper(started, 1)] as started,
+        finished[array_upper(finished, 1)] as finished,
+        record_key[array_upper(record_key, 1)] as record_key,
+        quantity[array_upper(quantity, 1)] as quantity,
+        family[array_upper(family, 1)] as family,
+        due[array_upper(due, 1)] as due,
+        priority[array_upper(priority, 1)] as priority,
+        work_content[array_upper(work_content, 1)] as work_content,
+        value[array_upper(value, 1)] as value,
+        resource[array_upper(resource, 1)] as resource,
+        status[array_upper(status, 1)] as status,
+        parent[array_upper(parent, 1)] as parent
+      from last_given
+    ),
+    source as (
+      -- The first row that tells it as it now stands, else the last row that told of it.
+      select distinct on (told.first_upload, told.first_line, told.first_part)
+        told.first_upload, told.first_line, told.first_part,
+        told.upload_id, told.line, told.part
+      from in_order as told join folded using (first_upload, first_line, first_part)
+      order by
+        told.first_upload, told.first_line, told.first_part,
+        (
+          (told.arrived, told.started, told.finished)
+            is distinct from (folded.arrived, folded.started, folded.finished)
+        ),
+        case
+          when (told.arrived, told.started, told.finished)
+            is distinct from (folded.arrived, folded.started, folded.finished)
+          then -told.version else told.version
+        end
+    )
+    select
+      job_key, area_id, arrived, started, finished,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      upload_id, line, part
+    from told_row where versions = 1
+    union all
+    select
+      job_key, area_id, arrived, started, finished,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      upload_id, line, part
+    from folded join source using (first_upload, first_line, first_part)`);
+}
+
+/**
+ * Adds to each record what follows from the job's other records: its place, its pass, a lost finish
+ * taken from a later start, and when the job came: its arrival, else its latest finish anywhere that is
+ * not after this start, else this start.
+ */
+async function chainRecords(derivation: Derivation): Promise<void> {
+  const { tx, inferLostFinish, newPassAfterDays } = derivation;
+  await tx.execute(sql`drop table if exists merged_record`);
+  await tx.execute(sql`/* chain records */
+    create temp table merged_record on commit drop as
+    with placed as (
+      select
+        *,
+        coalesce(started, arrived, finished) as about,
+        (row_number() over (
+          partition by job_key
+          order by coalesce(started, arrived, finished), finished, upload_id, line, part
+        ))::integer as ordinal
+      from folded_record
+    ),
+    judged as (
+      select
+        *,
+        case
+          when finished is null and ${inferLostFinish}::boolean then min(started) over (
+            partition by job_key order by about
+            groups between 1 following and unbounded following
+          )
+        end as inferred,
+        least(arrived, started, finished) - max(greatest(arrived, started, finished)) over (
+          partition by job_key order by ordinal rows between unbounded preceding and 1 preceding
+        ) > make_interval(days => ${newPassAfterDays}::integer) as returns
+      from placed
+    ),
+    passed as (
+      select
+        *,
+        coalesce(finished, inferred) as left_at,
+        finished is null and inferred is not null as finish_inferred,
+        (1 + count(*) filter (where returns) over (
+          partition by job_key order by ordinal rows unbounded preceding
+        ))::integer as pass
+      from judged
+    ),
+    followed as (
+      select
+        *,
+        coalesce(started, finished) as wanted,
+        max(left_at) over (
+          partition by job_key, pass order by ordinal
+          rows between unbounded preceding and 1 preceding
+        ) as latest_left
+      from passed
+    ),
+    overlapping as (
+      select distinct job_key, pass from followed
+      where arrived is null and latest_left > wanted
+    ),
+    -- Only where a job was in two areas at once: finishes and starts in order of time. At one instant
+    -- finishes come first, but records of no length keep their places.
+    moment as (
+      select
+        job_key, pass, left_at as at, left_at,
+        case when left_at > about then 0 else ordinal end as rank, 1 as turn, null::integer as asks
+      from followed join overlapping using (job_key, pass)
+      where left_at is not null
+      union all
+      select job_key, pass, wanted, null, ordinal, 0, ordinal
+      from followed join overlapping using (job_key, pass)
+      where wanted is not null
+    ),
+    answered as (
+      select
+        job_key, pass, asks,
+        max(left_at) over (
+          partition by job_key, pass order by at, rank, turn rows unbounded preceding
+        ) as previous_left
+      from moment
+    ),
+    entered as (
+      select
+        followed.*,
+        coalesce(
+          arrived,
+          case when latest_left > wanted then previous_left else latest_left end,
+          started
+        ) as entered
+      from followed
+      left join (select * from answered where asks is not null) as answered
+        on answered.job_key = followed.job_key
+        and answered.pass = followed.pass
+        and answered.asks = followed.ordinal
+    )
+    select
+      job_key, ordinal, area_id, pass, arrived, started, finished,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      upload_id, line, part,
+      entered, left_at, finish_inferred,
+      case counts_from when 'start' then started else entered end as stay_from,
+      case
+        when case counts_from when 'start' then started else entered end is not null
+        then length_class(case counts_from when 'start' then started else entered end, left_at)
+      end as length_class
+    from entered join zone on zone.id = area_id
+    where zone.organisation_id = ${derivation.organisationId} and zone.site_id = ${derivation.siteId}`);
+  await tx.execute(sql`analyze merged_record`);
+}
