@@ -2,3 +2,8 @@
 export const queues = ['site-work'] as const;
 
 export type QueueName = (typeof queues)[number];
+
+/** Wakes the work on a site. What is to be done stands in the database; waking twice does no harm. */
+export interface SiteQueue {
+  wake(organisationId: number, siteId: number): Promise<void>;
+}

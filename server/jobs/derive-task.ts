@@ -1,0 +1,44 @@
+import { and, eq, sql } from 'drizzle-orm';
+import { zone } from '../db/schema/zones.ts';
+import { deriveZone, rebuildSite } from '../flow/derive/derive.ts';
+import { inDerivation } from './derivation-of-site.ts';
+import type { SiteTask } from './site-work.ts';
+
+/** Derives the whole site afresh, because a setting changed on which its stays depend. */
+export async function deriveRequested(task: SiteTask): Promise<void> {
+  const { organisationId, siteId } = task;
+  await inDerivation(task.connection, organisationId, siteId, async (derivation) => {
+    const { tx } = derivation;
+    // A wish that arrives while this one is granted stays: only the one read here is cleared.
+    const { rows } = await tx.execute(sql`/* rebuild wish */
+      select rebuild_requested_at::text as wish from site
+      where organisation_id = ${organisationId} and id = ${siteId}`);
+    await rebuildSite(derivation);
+    await tx
+      .update(zone)
+      .set({ state: 'ready' })
+      .where(and(eq(zone.organisationId, organisationId), eq(zone.siteId, siteId)));
+    await tx.execute(sql`/* wish granted */
+      update site set rebuild_requested_at = null
+      where organisation_id = ${organisationId} and id = ${siteId}
+        and rebuild_requested_at::text = ${rows[0]?.wish ?? null}`);
+  });
+}
+
+/** Derives a zone of several areas that is new or changed. */
+export async function deriveRequestedZone(task: SiteTask, zoneId: number): Promise<void> {
+  const { organisationId, siteId } = task;
+  await inDerivation(task.connection, organisationId, siteId, async (derivation) => {
+    await deriveZone(derivation, zoneId);
+    await derivation.tx
+      .update(zone)
+      .set({ state: 'ready' })
+      .where(
+        and(
+          eq(zone.organisationId, organisationId),
+          eq(zone.siteId, siteId),
+          eq(zone.id, zoneId),
+        ),
+      );
+  });
+}

@@ -1,0 +1,53 @@
+import { and, eq } from 'drizzle-orm';
+import { upload } from '../db/schema/uploads.ts';
+import { withTenant } from '../db/tenant.ts';
+import { IntakeFailure } from '../intake/failure.ts';
+import type { SiteTask } from './site-work.ts';
+
+/** After so many broken-off attempts an upload is given up. */
+export const attemptLimit = 5;
+
+/**
+ * Ends an upload that could not be taken in, with a code and a sentence. A fault of our own is logged
+ * and told as such; a lost database is thrown on, so that the work is done again.
+ */
+export async function failUpload(
+  task: SiteTask,
+  uploadId: number,
+  error: unknown,
+): Promise<void> {
+  if (isLostConnection(error)) throw error;
+  const failure =
+    error instanceof IntakeFailure
+      ? { code: error.code as string, detail: error.message }
+      : {
+          code: 'internal-error',
+          detail:
+            'Something went wrong while this file was read. Nothing of it was kept. Upload it again, or tell your administrator: the log names this upload.',
+        };
+  if (failure.code === 'internal-error') task.log.error({ err: error, uploadId }, 'upload failed');
+  const { organisationId, siteId } = task;
+  await withTenant(task.db, organisationId, (tx) =>
+    tx
+      .update(upload)
+      .set({ status: 'failed', error: failure, finishedAt: task.clock.now() })
+      .where(
+        and(
+          eq(upload.organisationId, organisationId),
+          eq(upload.siteId, siteId),
+          eq(upload.id, uploadId),
+        ),
+      ),
+  );
+}
+
+/** SQLSTATE classes 08 (connection) and 57P (shut down), and sockets that broke. */
+function isLostConnection(error: unknown): boolean {
+  for (let each: unknown = error; each instanceof Error; each = each.cause) {
+    const code = 'code' in each && typeof each.code === 'string' ? each.code : '';
+    if (/^(08|57P|ECONN|EPIPE)/.test(code)) return true;
+    if (/Connection terminated|Client has encountered a connection error/.test(each.message))
+      return true;
+  }
+  return false;
+}
