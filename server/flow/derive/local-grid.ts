@@ -5,10 +5,7 @@ import {
   stepBorders,
   type ZoneRules,
 } from '../../../shared/local-time.ts';
-
-/** An instant as a bound value; the ends of time where it is not finite. */
-export const instantValue = (at: number): string =>
-  at === -Infinity ? '-infinity' : at === Infinity ? 'infinity' : new Date(at).toISOString();
+import { instantValue } from '../instant-value.ts';
 
 /** Rows (begins, until, anchor, last_start): the stretches from which a moment's local hour is told. */
 export function hourStretchRows(rules: ZoneRules, from: number, to: number): SQL {

@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm';
+import { binRatio, zeroBin } from '../../methods/binned-percentile.ts';
 import type { Derivation } from './derivation.ts';
-import { binRatio, zeroBin } from './replace-flow-days.ts';
 
 /**
  * What the uploads say of each zone: which columns they hold, and how far they speak. An upload speaks,

@@ -1,12 +1,8 @@
 import { sql, type SQL } from 'drizzle-orm';
+import { binRatio, zeroBin } from '../../methods/binned-percentile.ts';
+import { lengthReaches } from '../length-reach.ts';
 import type { Derivation } from './derivation.ts';
 import { dayGridRow, type DayGrid } from './local-grid.ts';
-import { lengthReaches } from './replace-level-hours.ts';
-
-/** Ratio of the borders of a bin: a percentile read from the bins is right within 1 %. */
-export const binRatio = 1.02;
-/** The bin of stays of no length. */
-export const zeroBin = -10_000;
 
 const summed = ({ organisationId, siteId }: Derivation, departures: SQL, grid: DayGrid): SQL => sql`
   insert into flow_day (

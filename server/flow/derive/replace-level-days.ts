@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm';
+import { instantValue } from '../instant-value.ts';
 import type { Derivation } from './derivation.ts';
-import { dayGridRow, instantValue, type DayGrid } from './local-grid.ts';
+import { dayGridRow, type DayGrid } from './local-grid.ts';
 
 /**
  * Makes the days of the given zones from their hours, from one day on: a change of a level shifts every

@@ -1,4 +1,5 @@
 import { sql, type SQL } from 'drizzle-orm';
+import { lengthReaches } from '../length-reach.ts';
 import type { Derivation } from './derivation.ts';
 import { hourOf, hourStretchRows } from './local-grid.ts';
 
@@ -147,12 +148,3 @@ export async function replaceTouchedLevelHours(derivation: Derivation): Promise<
       )`,
     )}`);
 }
-
-/** Rows (class, reach): how far back a stay of a length class may have entered. Class 99 is open. */
-export const lengthReaches = sql`
-  select
-    class::smallint,
-    case when class = 99 then interval '200 years'
-      else make_interval(secs => 4.0::double precision ^ class + 1)
-    end as reach
-  from unnest(array[0,1,2,3,4,5,6,7,8,9,10,11,12,13,14,15,16,99]) as class`;

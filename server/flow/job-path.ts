@@ -1,0 +1,132 @@
+import { sql } from 'drizzle-orm';
+import { z } from 'zod';
+import type { SiteReader } from './zone-reader.ts';
+
+const date = z.coerce.date().nullable();
+const seconds = z.coerce.number().nullable();
+
+const recordRow = z.object({
+  ordinal: z.number(),
+  area_id: z.number(),
+  area_name: z.string(),
+  pass: z.number(),
+  entered: date,
+  arrived: date,
+  started: date,
+  finished: date,
+  left_at: date,
+  finish_inferred: z.boolean(),
+  queue_seconds: seconds,
+  process_seconds: seconds,
+  flow_seconds: seconds,
+  quantity: z.coerce.number().nullable(),
+  record_key: z.string().nullable(),
+  family: z.string().nullable(),
+  due: date,
+  priority: z.string().nullable(),
+  work_content: z.string().nullable(),
+  value: z.string().nullable(),
+  resource: z.string().nullable(),
+  status: z.string().nullable(),
+  parent: z.string().nullable(),
+  upload_id: z.number(),
+  line: z.number(),
+});
+export type RecordRow = z.infer<typeof recordRow>;
+
+/** The records of a job in order. */
+export async function readJobRecords(
+  { tx, organisationId, siteId }: SiteReader,
+  jobKey: string,
+): Promise<RecordRow[]> {
+  const { rows } = await tx.execute(sql`/* job records */
+    select
+      record.*, zone.name as area_name,
+      extract(epoch from started - entered) as queue_seconds,
+      case when not finish_inferred then extract(epoch from left_at - started) end as process_seconds,
+      extract(epoch from left_at - entered) as flow_seconds
+    from record join zone
+      on zone.organisation_id = record.organisation_id
+      and zone.site_id = record.site_id
+      and zone.id = record.area_id
+    where record.organisation_id = ${organisationId} and record.site_id = ${siteId}
+      and job_key = ${jobKey}
+    order by ordinal`);
+  return z.array(recordRow).parse(rows);
+}
+
+const toldRow = z.object({
+  upload_id: z.number(),
+  line: z.number(),
+  part: z.number(),
+  file_name: z.string(),
+  area_id: z.number(),
+  record_key: z.string().nullable(),
+  arrived: date,
+  started: date,
+  finished: date,
+});
+export type ToldRow = z.infer<typeof toldRow>;
+
+/** Every row that told of a job, in order of receipt. */
+export async function readToldRows(
+  { tx, organisationId, siteId }: SiteReader,
+  jobKey: string,
+): Promise<ToldRow[]> {
+  const { rows } = await tx.execute(sql`/* rows of a job */
+    select upload_row.*, file_name
+    from upload_row join upload
+      on upload.organisation_id = upload_row.organisation_id
+      and upload.site_id = upload_row.site_id
+      and upload.id = upload_row.upload_id
+    where upload_row.organisation_id = ${organisationId} and upload_row.site_id = ${siteId}
+      and job_key = ${jobKey}
+    order by upload_id, line, part`);
+  return z.array(toldRow).parse(rows);
+}
+
+const stayRow = z.object({
+  zone_id: z.number(),
+  zone_name: z.string(),
+  kind: z.enum(['area', 'loop', 'site']),
+  entered: z.coerce.date(),
+  started: date,
+  left_at: date,
+  queue_seconds: seconds,
+  process_seconds: seconds,
+  flow_seconds: seconds,
+});
+export type StayRow = z.infer<typeof stayRow>;
+
+/** The stays of a job in every zone, by time of entry. */
+export async function readJobStays(
+  { tx, organisationId, siteId }: SiteReader,
+  jobKey: string,
+): Promise<StayRow[]> {
+  const { rows } = await tx.execute(sql`/* job stays */
+    select
+      zone_stay.*, zone.name as zone_name, zone.kind,
+      extract(epoch from left_at - entered) as flow_seconds
+    from zone_stay join zone
+      on zone.organisation_id = zone_stay.organisation_id
+      and zone.site_id = zone_stay.site_id
+      and zone.id = zone_stay.zone_id
+    where zone_stay.organisation_id = ${organisationId} and zone_stay.site_id = ${siteId}
+      and job_key = ${jobKey}
+    order by entered, kind, zone_id`);
+  return z.array(stayRow).parse(rows);
+}
+
+/** Keys of jobs that begin with a text, a few. A range of the byte-ordered key uses the index. */
+export async function readJobKeys(
+  { tx, organisationId, siteId }: SiteReader,
+  begins: string,
+  limit: number,
+): Promise<string[]> {
+  const { rows } = await tx.execute(sql`/* job keys */
+    select distinct job_key from record
+    where organisation_id = ${organisationId} and site_id = ${siteId}
+      and job_key >= ${begins} and job_key < ${begins}::text || chr(1114111) collate "C"
+    order by job_key limit ${limit}`);
+  return z.array(z.object({ job_key: z.string() })).parse(rows).map((row) => row.job_key);
+}
