@@ -40,6 +40,12 @@ export class Cell {
     return this.start === this.end;
   }
 
+  equals(other: Buffer): boolean {
+    const { bytes, start, end } = this;
+    if (end - start !== other.length || bytes[start] !== other[0]) return false;
+    return bytes.compare(other, 0, other.length, start, end) === 0;
+  }
+
   /** Whether it is plain ASCII without control characters, as most cells are. */
   get isPlain(): boolean {
     const { bytes, end } = this;
