@@ -1,6 +1,6 @@
 import { foldAreaSpelling } from '../../shared/area-spelling.ts';
 import type { Cell } from './cell.ts';
-import { IntakeFailure } from './intake-failure.ts';
+import { IntakeFailure } from './failure.ts';
 import { areaLimit } from './limits.ts';
 
 /** An area that the file names. */
@@ -48,7 +48,7 @@ export class AreaRegister {
    * @param untrimmedStart where the cell begins with its blanks, for telling spellings apart
    */
   find(cell: Cell, untrimmedStart: number, untrimmedEnd: number): WrittenArea | null {
-    const key = cell.bytes.latin1Slice(untrimmedStart, untrimmedEnd);
+    const key = cell.bytes.toString('latin1', untrimmedStart, untrimmedEnd);
     const kept = this.#byBytes.get(key);
     if (kept) return kept;
     const name = cell.text();

@@ -63,7 +63,7 @@ export class Cell {
 
   /** The text, or null where the bytes are none. */
   text(): string | null {
-    if (this.isPlain) return this.bytes.latin1Slice(this.start, this.end);
+    if (this.isPlain) return this.bytes.toString('latin1', this.start, this.end);
     const slice = this.bytes.subarray(this.start, this.end);
     if (slice.includes(0)) return null;
     try {

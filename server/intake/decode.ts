@@ -1,4 +1,4 @@
-import { IntakeFailure } from './intake-failure.ts';
+import { IntakeFailure } from './failure.ts';
 import { foreignKind } from './file-kind.ts';
 
 /** How the bytes of a file become text: its encoding, the bytes before the text, and what ends a line. */

@@ -1,4 +1,4 @@
-import { IntakeFailure } from './intake-failure.ts';
+import { IntakeFailure } from './failure.ts';
 import { columnLimit, rowByteLimit } from './limits.ts';
 import { findRowExtent, QuotedRowParser } from './quoted-row.ts';
 
@@ -41,19 +41,21 @@ export class RowScanner {
   readonly #delimiter: number;
   readonly #quoted: QuotedRowParser;
   #line = 1;
-  #rest: Buffer = Buffer.alloc(0);
+  /** The incomplete row of the blocks before lies at its beginning; the next block is laid behind it. */
+  #buffer: Buffer = Buffer.alloc(0);
+  #restBytes = 0;
 
   /** @param delimiter one ASCII character */
   constructor(delimiter: string) {
     this.#delimiter = delimiter.charCodeAt(0);
     this.#quoted = new QuotedRowParser(delimiter);
     this.row = {
-      bytes: this.#rest,
+      bytes: this.#buffer,
       starts: new Int32Array(columnLimit + 1),
       ends: new Int32Array(columnLimit + 1),
       count: 0,
       line: 0,
-      raw: this.#rest,
+      raw: this.#buffer,
       rawStart: 0,
       rawEnd: 0,
       trouble: null,
@@ -67,7 +69,7 @@ export class RowScanner {
    * @throws IntakeFailure where a single line is longer than a row may be
    */
   scan(block: Buffer, isLast: boolean, onRow: (row: ScannedRow) => boolean | void): void {
-    const bytes = this.#rest.length > 0 ? Buffer.concat([this.#rest, block]) : block;
+    const bytes = this.#layBehindRest(block);
     let at = 0;
     while (at < bytes.length) {
       const next = this.#scanRow(bytes, at, isLast);
@@ -75,7 +77,19 @@ export class RowScanner {
       at = next;
       if (onRow(this.row) === false) break;
     }
-    this.#rest = bytes.subarray(at);
+    bytes.copyWithin(0, at);
+    this.#restBytes = bytes.length - at;
+  }
+
+  #layBehindRest(block: Buffer): Buffer {
+    const length = this.#restBytes + block.length;
+    if (length > this.#buffer.length) {
+      const larger = Buffer.allocUnsafe(Math.max(length, this.#buffer.length * 2));
+      this.#buffer.copy(larger, 0, 0, this.#restBytes);
+      this.#buffer = larger;
+    }
+    block.copy(this.#buffer, this.#restBytes);
+    return this.#buffer.subarray(0, length);
   }
 
   /** @returns where the next row begins, or -1 where this one is not complete yet */

@@ -44,6 +44,9 @@ export type StayColumns = z.infer<typeof stayColumnsSchema>;
 
 export const delimiters = [',', ';', '\t', '|'] as const;
 
+export const dateOrders = ['day-first', 'month-first'] as const;
+export type DateOrder = (typeof dateOrders)[number];
+
 /** How a file is read. Keys that are left out are detected. Rows per event and per job follow later. */
 export const columnPlanSchema = z
   .object({
@@ -55,6 +58,8 @@ export const columnPlanSchema = z
     unknownAreas: z.enum(['add', 'refuse']).default('add'),
     mode: z.enum(['merge', 'replace-period']).default('merge'),
     delimiter: z.enum(delimiters).optional(),
+    /** Which of two short numbers of a date is the day, where the time format is `auto`. */
+    dateOrder: z.enum(dateOrders).optional(),
   })
   .strict();
 export type ColumnPlan = z.infer<typeof columnPlanSchema>;

@@ -5,7 +5,7 @@ import {
   type OptionalColumn,
   type TimeColumn,
 } from '../../../shared/contracts/plan.ts';
-import { IntakeFailure } from '../intake-failure.ts';
+import { IntakeFailure } from '../failure.ts';
 
 export type StayColumn = 'job' | 'area' | TimeColumn | OptionalColumn;
 export const stayColumns: readonly StayColumn[] = ['job', 'area', ...timeColumns, ...optionalColumns];
@@ -56,4 +56,9 @@ function noSuchColumn(name: string, header: readonly string[]): IntakeFailure {
     `The column plan names a column “${name}”, and the file has none.`,
     `Its columns are ${shown.join(', ')}${more}. Choose among them.`,
   );
+}
+
+/** Where the columns of the plan stand that hold times. */
+export function timePlaces(places: StayColumnPlaces): number[] {
+  return [...timeColumns, 'due' as const].flatMap((column) => places[column] ?? []);
 }

@@ -1,8 +1,9 @@
+import type { DateOrder } from '../../../shared/contracts/plan.ts';
 import { ByteCursor } from './byte-cursor.ts';
 import { dayExists, daysSince1970, fullYear } from './calendar.ts';
 import type { LocalClock } from './local-clock.ts';
 import { TimeOfDay } from './time-of-day.ts';
-import type { DateOrder, TimeForm, TimeReader, TimeTrouble } from './time-reader.ts';
+import type { TimeForm, TimeReader, TimeTrouble } from './time-reader.ts';
 
 const dash = 0x2d;
 const slash = 0x2f;

@@ -1,5 +1,5 @@
 import { format } from 'date-fns';
-import { IntakeFailure } from '../intake-failure.ts';
+import { IntakeFailure } from '../failure.ts';
 
 /** A step of a compiled pattern: a field of the date, or bytes that must stand there. */
 export type PatternStep =

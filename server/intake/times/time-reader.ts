@@ -11,8 +11,6 @@ export const timeForms = [
 ] as const;
 export type TimeForm = (typeof timeForms)[number];
 
-export type DateOrder = 'day-first' | 'month-first';
-
 /** Why a cell is no time: it cannot be read, or only in the order of day and month that is not the file's. */
 export type TimeTrouble = 'unreadable' | 'other-date-order';
 

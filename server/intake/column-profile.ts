@@ -1,0 +1,63 @@
+import { zoneRules } from '../../shared/local-time.ts';
+import { wordsOf } from './column-words.ts';
+import { readDecimal } from './decimal.ts';
+import type { Sample } from './sample.ts';
+import { AutoTimeReader } from './times/auto-time-reader.ts';
+import { LocalClock } from './times/local-clock.ts';
+
+/** What the cells of one column of a sample look like. Shares are of the cells that are not blank. */
+export interface ColumnProfile {
+  place: number;
+  header: string;
+  words: readonly string[];
+  /** Cells that are not blank. */
+  filled: number;
+  /** Written as dates and times, which nothing else is. */
+  timeShare: number;
+  /** Digits that may be a time: serials, epochs and compact dates. */
+  digitTimeShare: number;
+  numberShare: number;
+  distinctShare: number;
+  distinct: number;
+  cells: readonly string[];
+}
+
+const digits = /^-?\d+(?:\.\d+)?$/;
+
+/** Looks at each column of a sample. */
+export function profileColumns({ header, rows }: Sample): ColumnProfile[] {
+  const reader = new AutoTimeReader(new LocalClock(zoneRules('UTC')), null);
+  const isTime = (text: string): boolean => {
+    const bytes = Buffer.from(text);
+    return reader.read(bytes, 0, bytes.length) !== 'unreadable';
+  };
+  return header.map((name, place) => {
+    const cells = rows.map(({ cells: row }) => (row[place] ?? '').trim());
+    const filled = cells.filter((cell) => cell !== '' && cell.toLowerCase() !== 'null');
+    const share = (fits: (cell: string) => boolean): number =>
+      filled.length === 0 ? 0 : filled.filter(fits).length / filled.length;
+    const distinct = new Set(filled).size;
+    return {
+      place,
+      header: name,
+      words: wordsOf(name),
+      filled: filled.length,
+      timeShare: share((cell) => !digits.test(cell) && isTime(cell)),
+      digitTimeShare: share((cell) => digits.test(cell) && isTime(cell)),
+      numberShare: share((cell) => readDecimal(cell) !== null),
+      distinctShare: filled.length === 0 ? 0 : distinct / filled.length,
+      distinct,
+      cells,
+    };
+  });
+}
+
+/** Share of cells from which a column counts as holding something of a kind: exports have slips. */
+export const mostly = 0.8;
+
+/** Whether the column holds dates and times, beyond doubt. */
+export const holdsTimes = ({ timeShare }: ColumnProfile): boolean => timeShare >= mostly;
+
+/** Whether the column may hold times: also digits, or nothing as yet. */
+export const mayHoldTimes = (column: ColumnProfile): boolean =>
+  column.filled === 0 || column.timeShare + column.digitTimeShare >= mostly;
