@@ -176,7 +176,7 @@ CREATE TABLE "stay" (
 	"started" timestamp with time zone,
 	"left_at" timestamp with time zone,
 	"length_class" smallint NOT NULL,
-	"process_seconds" numeric,
+	"process_microseconds" bigint,
 	"process_from" timestamp with time zone[] NOT NULL,
 	"process_to" timestamp with time zone[] NOT NULL,
 	"quantity" numeric,

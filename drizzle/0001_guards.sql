@@ -29,6 +29,12 @@ create trigger audit_entry_only_grows before update or delete on audit_entry
 create trigger audit_entry_never_emptied before truncate on audit_entry
   for each statement execute function refuse_change_of_audit();--> statement-breakpoint
 
+-- A length of time as a whole number, so that sums are exact.
+create function microseconds(length interval) returns bigint
+language sql immutable parallel safe as $$
+  select (date_part('epoch', length) * 1000000)::bigint
+$$;--> statement-breakpoint
+
 -- ⌈log₄ of the seconds⌉ of a stay, 99 while open: a look-up by time needs to reach back 4^class seconds only.
 create function length_class(entered timestamptz, left_at timestamptz) returns smallint
 language sql immutable parallel safe as $$
@@ -40,18 +46,19 @@ $$;--> statement-breakpoint
 
 -- Who was inside at t, and who came or left in a period: one bounded look-up per length class.
 create index record_by_length on record
-  (organisation_id, site_id, area_id, length_class, stay_from) include (left_at, job_key, ordinal)
+  (organisation_id, site_id, area_id, length_class, stay_from)
+  include (left_at, started, finish_inferred)
   where stay_from is not null;--> statement-breakpoint
 create index stay_by_length on stay
-  (organisation_id, site_id, zone_id, length_class, entered) include (left_at, job_key, ordinal);--> statement-breakpoint
+  (organisation_id, site_id, zone_id, length_class, entered) include (left_at);--> statement-breakpoint
 
 -- Every stay of every zone: an area's are columns of its records.
 create view zone_stay with (security_invoker = true) as
 select
   organisation_id, site_id, area_id as zone_id, job_key, ordinal,
   stay_from as entered, started, left_at, length_class, quantity, finish_inferred,
-  extract(epoch from started - stay_from) as queue_seconds,
-  case when not finish_inferred then extract(epoch from left_at - started) end as process_seconds,
+  microseconds(started - stay_from) as queue_microseconds,
+  case when not finish_inferred then microseconds(left_at - started) end as process_microseconds,
   upload_id, line
 from record
 where stay_from is not null
@@ -60,10 +67,10 @@ select
   organisation_id, site_id, zone_id, job_key, ordinal,
   entered, started, left_at, length_class, quantity, finish_inferred,
   case
-    when left_at is not null then extract(epoch from left_at - entered) - process_seconds
-    else extract(epoch from started - entered)
-  end as queue_seconds,
-  case when left_at is not null then process_seconds end as process_seconds,
+    when left_at is not null then microseconds(left_at - entered) - process_microseconds
+    else microseconds(started - entered)
+  end as queue_microseconds,
+  case when left_at is not null then process_microseconds end as process_microseconds,
   upload_id, line
 from stay;--> statement-breakpoint
 

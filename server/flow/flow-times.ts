@@ -59,13 +59,13 @@ export async function readFlowTimes(
       zone_id, place,
       count(*) as departures,
       count(*) filter (where finish_inferred) as inferred,
-      coalesce(sum(flow_seconds), 0) as flow_sum,
-      avg(flow_seconds) as flow_mean,
+      sum(flow_microseconds) / 1000000.0 as flow_sum,
+      avg(flow_microseconds) / 1000000.0 as flow_mean,
       percentile_cont(array[0.5, 0.85, 0.95]) within group (
-        order by flow_seconds::double precision
+        order by flow_microseconds / 1000000.0::double precision
       ) as percentiles,
-      avg(queue_seconds) as queue_mean,
-      avg(process_seconds) as process_mean
+      avg(queue_microseconds) / 1000000.0 as queue_mean,
+      avg(process_microseconds) / 1000000.0 as process_mean
     from departed
     group by zone_id, place`);
   const found = new Map(
@@ -97,8 +97,8 @@ function departuresWithin(
   const to = sql`${instantValue(borders.at(-1) ?? 0)}::timestamptz`;
   return sql`
     select
-      found.zone_id, found.finish_inferred, found.queue_seconds, found.process_seconds,
-      extract(epoch from found.left_at - found.entered) as flow_seconds,
+      found.zone_id, found.finish_inferred, found.queue_microseconds, found.process_microseconds,
+      microseconds(found.left_at - found.entered) as flow_microseconds,
       width_bucket(found.left_at, ${sql.param(borders.map(instantValue))}::timestamptz[]) as place
     from unnest(${sql.param([...zoneIds])}::integer[]) as asked (zone_id)
     cross join (${lengthReaches}) as length_reach
@@ -109,5 +109,6 @@ function departuresWithin(
         and length_class = class and class <> 99
         and entered < ${to} and entered >= ${from} - reach
         and left_at >= ${from} and left_at < ${to}
+      offset 0
     ) as found`;
 }

@@ -47,7 +47,8 @@ export async function readInsideAt(
   const { rows } = await tx.execute(sql`/* inside at */
     select
       found.job_key, found.ordinal, found.entered, found.entered::text as entered_at,
-      found.started, found.left_at, found.queue_seconds, found.process_seconds,
+      found.started, found.left_at, found.queue_microseconds / 1000000.0 as queue_seconds,
+      found.process_microseconds / 1000000.0 as process_seconds,
       extract(epoch from ${moment} - found.entered) as age_seconds,
       found.finish_inferred, found.upload_id, found.line
     from (${lengthReaches}) as length_reach

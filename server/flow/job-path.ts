@@ -106,6 +106,8 @@ export async function readJobStays(
   const { rows } = await tx.execute(sql`/* job stays */
     select
       zone_stay.*, zone.name as zone_name, zone.kind,
+      queue_microseconds / 1000000.0 as queue_seconds,
+      process_microseconds / 1000000.0 as process_seconds,
       extract(epoch from left_at - entered) as flow_seconds
     from zone_stay join zone
       on zone.organisation_id = zone_stay.organisation_id

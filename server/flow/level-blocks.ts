@@ -98,7 +98,7 @@ export async function readLevelBlocks(
     union all
     select
       asked.zone_id, asked.measure, 'day', starts, ends, ups, downs, 0, 0,
-      integral - level_start * round(date_part('epoch', ends - starts) * 1000000)::bigint,
+      integral - level_start * microseconds(ends - starts),
       peak - level_start
     from asked join level_day on ${ofZone('level_day')}
     where day >= ${localDay(rules, whole.from)}::date and day < ${localDay(rules, whole.to)}::date`);

@@ -46,6 +46,7 @@ export async function readLevelChanges(
           and length_class = class
           and entered <= ${to} and entered >= ${from} - reach
           and (left_at is null or left_at >= ${from})
+        offset 0
       ) as found
     ),
     change as (

@@ -53,6 +53,7 @@ export async function readWindowEdges(
           and length_class = class
           and entered < ${to} and entered >= ${from} - reach
           and (left_at is null or left_at >= ${from})
+        offset 0
       ) as found
     )
     select

@@ -1,4 +1,5 @@
 import {
+  bigint,
   boolean,
   integer,
   numeric,
@@ -60,8 +61,8 @@ export const stay = pgTable(
     started: instant(),
     leftAt: instant(),
     lengthClass: smallint().notNull(),
-    /** Union of the process intervals; null where the log does not hold it. */
-    processSeconds: numeric(),
+    /** Length of the union of the process intervals; null where the log does not hold it. */
+    processMicroseconds: bigint({ mode: 'number' }),
     /** The process intervals, disjoint and in order; the last end is null while in process. */
     processFrom: timestamp({ withTimezone: true }).array().notNull(),
     processTo: timestamp({ withTimezone: true }).array().notNull(),

@@ -6,7 +6,11 @@ import { mergeRecords } from './merge-records.ts';
 import { refreshWarmUp, refreshZones } from './refresh-zones.ts';
 import { replaceAllFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
 import { replaceLevelDays } from './replace-level-days.ts';
-import { replaceAllLevelHours, replaceTouchedLevelHours } from './replace-level-hours.ts';
+import {
+  replaceAllLevelHours,
+  replaceTouchedLevelHours,
+  type DerivedZone,
+} from './replace-level-hours.ts';
 import { findChangedJobs, replaceRecords } from './replace-records.ts';
 import { replaceStays } from './replace-stays.ts';
 import { gatherToldRows, touchEveryJob } from './told-rows.ts';
@@ -32,11 +36,11 @@ export async function deriveFromToldRows(derivation: Derivation): Promise<void> 
   await mergeRecords(derivation);
   await findChangedJobs(derivation);
   await createTouchedHours(derivation);
-  const fresh = await isFresh(derivation);
-  if (!fresh) await touchHoursOfChangedJobs(derivation);
+  const mostly = await isMostOfSite(derivation);
+  if (!mostly) await touchHoursOfChangedJobs(derivation);
   await replaceRecords(derivation);
   await replaceStays(derivation, sql`select job_key from changed_job`);
-  if (fresh) await deriveAllLevels(derivation, await zoneIds(derivation));
+  if (mostly) await deriveAllLevels(derivation, await readZones(derivation));
   else await deriveTouchedLevels(derivation, unitsChanged);
   await finish(derivation);
 }
@@ -52,7 +56,7 @@ export async function rebuildSite(derivation: Derivation): Promise<void> {
   await tx.execute(sql`create temp table changed_job on commit drop as select * from touched_job`);
   await replaceRecords(derivation);
   await replaceStays(derivation, sql`select job_key from changed_job`);
-  await deriveAllLevels(derivation, await zoneIds(derivation));
+  await deriveAllLevels(derivation, await readZones(derivation));
   await finish(derivation);
 }
 
@@ -65,31 +69,60 @@ export async function deriveZone(derivation: Derivation, zoneId: number): Promis
     sql`select job_key from record where organisation_id = ${organisationId} and site_id = ${siteId}`,
     zoneId,
   );
-  await deriveAllLevels(derivation, [zoneId]);
+  const zones = await readZones(derivation);
+  await deriveAllLevels(
+    derivation,
+    zones.filter((zone) => zone.id === zoneId),
+  );
   await finish(derivation);
 }
 
-/** Whether there was nothing before, so that there is nothing to compare hours with. */
-async function isFresh({ tx, organisationId, siteId }: Derivation): Promise<boolean> {
-  const { rows } = await tx.execute(sql`/* anything before */
-    select not exists (
-      select from record where organisation_id = ${organisationId} and site_id = ${siteId}
-    ) as fresh`);
-  return rows[0]?.fresh === true;
+/**
+ * Whether so many jobs changed, against those that stand, that making every level afresh costs less than
+ * finding the hours to make.
+ */
+async function isMostOfSite({ tx, organisationId, siteId }: Derivation): Promise<boolean> {
+  const { rows } = await tx.execute(sql`/* share of changed jobs */
+    with changed as (select count(*) as jobs from changed_job),
+    standing as (
+      -- Counts no further than the answer needs.
+      select count(*) as jobs from (
+        select from stay join zone
+          on zone.organisation_id = stay.organisation_id
+          and zone.site_id = stay.site_id
+          and zone.id = stay.zone_id
+        where stay.organisation_id = ${organisationId} and stay.site_id = ${siteId}
+          and zone.kind = 'site'
+        limit (select 4 * jobs + 1 from changed)
+      ) as counted
+    )
+    select standing.jobs <= 4 * changed.jobs as mostly from standing cross join changed`);
+  return rows[0]?.mostly === true;
 }
 
-async function zoneIds({ tx, organisationId, siteId }: Derivation): Promise<number[]> {
-  const { rows } = await tx.execute(sql`/* zones */
-    select id from zone where organisation_id = ${organisationId} and site_id = ${siteId}`);
-  return rows.map((row) => Number(row.id));
+const zoneRow = z.object({ id: z.number(), has_quantities: z.boolean() });
+
+async function readZones({ tx, organisationId, siteId }: Derivation): Promise<DerivedZone[]> {
+  const { rows } = await tx.execute(sql`/* zones to derive */
+    select id, has_quantities from zone
+    where organisation_id = ${organisationId} and site_id = ${siteId}
+    order by id`);
+  return z
+    .array(zoneRow)
+    .parse(rows)
+    .map((row) => ({ id: row.id, hasQuantities: row.has_quantities }));
 }
 
-async function deriveAllLevels(derivation: Derivation, zones: readonly number[]): Promise<void> {
+async function deriveAllLevels(
+  derivation: Derivation,
+  zones: readonly DerivedZone[],
+): Promise<void> {
   await replaceAllLevelHours(derivation, zones);
   const grid = await gridOfHours(derivation);
-  if (!grid) return removeDays(derivation, zones);
-  await replaceLevelDays(derivation, new Map(zones.map((zone) => [zone, -Infinity])), grid);
-  await replaceAllFlowDays(derivation, zones, grid);
+  const ids = zones.map((zone) => zone.id);
+  if (!grid) return removeDays(derivation, ids);
+  await replaceLevelDays(derivation, new Map(ids.map((id) => [id, -Infinity])), grid);
+  await replaceAllFlowDays(derivation, ids, grid);
 }
 
 async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[]): Promise<void> {
@@ -102,7 +135,11 @@ async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[
   if (whole.size > 0) {
     await derivation.tx.execute(sql`/* leave whole zones to the other way */
       delete from touched_hour where zone_id = any(${sql.param([...whole])}::integer[])`);
-    await deriveAllLevels(derivation, [...whole]);
+    const zones = await readZones(derivation);
+    await deriveAllLevels(
+      derivation,
+      zones.filter((zone) => whole.has(zone.id)),
+    );
   }
   const parts = touched.filter((zone) => !whole.has(zone.zoneId));
   if (parts.length === 0) return;

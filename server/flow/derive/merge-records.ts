@@ -103,51 +103,50 @@ async function chainRecords(derivation: Derivation): Promise<void> {
   await tx.execute(sql`/* chain records */
     create temp table merged_record on commit drop as
     with placed as (
-      select
-        *,
-        coalesce(started, arrived, finished) as about,
-        (row_number() over (
-          partition by job_key
-          order by coalesce(started, arrived, finished), finished, upload_id, line, part
-        ))::integer as ordinal
-      from folded_record
+      select *, coalesce(started, arrived, finished) as about from folded_record
     ),
     judged as (
       select
         *,
+        (row_number() over in_order)::integer as ordinal,
         case
           when finished is null and ${inferLostFinish}::boolean then min(started) over (
             partition by job_key order by about
             groups between 1 following and unbounded following
           )
         end as inferred,
-        least(arrived, started, finished) - max(greatest(arrived, started, finished)) over (
-          partition by job_key order by ordinal rows between unbounded preceding and 1 preceding
-        ) > make_interval(days => ${newPassAfterDays}::integer) as returns
+        least(arrived, started, finished)
+          - max(greatest(arrived, started, finished)) over (
+            in_order rows between unbounded preceding and 1 preceding
+          ) > make_interval(days => ${newPassAfterDays}::integer) as returns
       from placed
-    ),
-    passed as (
-      select
-        *,
-        coalesce(finished, inferred) as left_at,
-        finished is null and inferred is not null as finish_inferred,
-        (1 + count(*) filter (where returns) over (
-          partition by job_key order by ordinal rows unbounded preceding
-        ))::integer as pass
-      from judged
+      window in_order as (partition by job_key order by about, finished, upload_id, line, part)
     ),
     followed as (
       select
         *,
+        coalesce(finished, inferred) as left_at,
+        finished is null and inferred is not null as finish_inferred,
         coalesce(started, finished) as wanted,
-        max(left_at) over (
-          partition by job_key, pass order by ordinal
-          rows between unbounded preceding and 1 preceding
-        ) as latest_left
-      from passed
+        (1 + count(*) filter (where returns) over (in_order rows unbounded preceding))::integer as pass,
+        max(case when returns then about end) over (in_order rows unbounded preceding) as pass_began,
+        max(coalesce(finished, inferred)) over (
+          in_order rows between unbounded preceding and 1 preceding
+        ) as latest_left_ever
+      from judged
+      window in_order as (partition by job_key order by about, finished, upload_id, line, part)
+    ),
+    in_pass as (
+      -- What left before the pass began belongs to an earlier one.
+      select
+        *,
+        case
+          when pass_began is null or latest_left_ever >= pass_began then latest_left_ever
+        end as latest_left
+      from followed
     ),
     overlapping as (
-      select distinct job_key, pass from followed
+      select distinct job_key, pass from in_pass
       where arrived is null and latest_left > wanted
     ),
     -- Only where a job was in two areas at once: finishes and starts in order of time. At one instant
@@ -156,11 +155,11 @@ async function chainRecords(derivation: Derivation): Promise<void> {
       select
         job_key, pass, left_at as at, left_at,
         case when left_at > about then 0 else ordinal end as rank, 1 as turn, null::integer as asks
-      from followed join overlapping using (job_key, pass)
+      from in_pass join overlapping using (job_key, pass)
       where left_at is not null
       union all
       select job_key, pass, wanted, null, ordinal, 0, ordinal
-      from followed join overlapping using (job_key, pass)
+      from in_pass join overlapping using (job_key, pass)
       where wanted is not null
     ),
     answered as (
@@ -173,17 +172,17 @@ async function chainRecords(derivation: Derivation): Promise<void> {
     ),
     entered as (
       select
-        followed.*,
+        in_pass.*,
         coalesce(
           arrived,
           case when latest_left > wanted then previous_left else latest_left end,
           started
         ) as entered
-      from followed
+      from in_pass
       left join (select * from answered where asks is not null) as answered
-        on answered.job_key = followed.job_key
-        and answered.pass = followed.pass
-        and answered.asks = followed.ordinal
+        on answered.job_key = in_pass.job_key
+        and answered.pass = in_pass.pass
+        and answered.asks = in_pass.ordinal
     )
     select
       job_key, ordinal, area_id, pass, arrived, started, finished,

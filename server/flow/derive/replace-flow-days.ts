@@ -13,17 +13,17 @@ const summed = ({ organisationId, siteId }: Derivation, departures: SQL, grid: D
   departure as (${departures}),
   binned as (
     select
-      zone_id, width_bucket(left_at, borders) as place,
+      zone_id, width_bucket(left_at, (select borders from grid)) as place,
       case when left_at = entered then ${zeroBin}::integer
         else floor(ln(date_part('epoch', left_at - entered)) / ln(${binRatio}::double precision))::integer
       end as bin,
       count(*) as departures,
-      sum(round(date_part('epoch', left_at - entered) * 1000000)::bigint) as flow_microseconds,
-      count(queue_seconds) as queue_known,
-      coalesce(sum(queue_seconds), 0) * 1000000 as queue_microseconds,
-      count(process_seconds) as process_known,
-      coalesce(sum(process_seconds), 0) * 1000000 as process_microseconds
-    from departure cross join grid
+      sum(microseconds(left_at - entered)) as flow_microseconds,
+      count(queue_microseconds) as queue_known,
+      coalesce(sum(queue_microseconds), 0) as queue_microseconds,
+      count(process_microseconds) as process_known,
+      coalesce(sum(process_microseconds), 0) as process_microseconds
+    from departure
     group by 1, 2, 3
   )
   select
@@ -74,6 +74,7 @@ export async function replaceTouchedFlowDays(
           and length_class = class and class <> 99
           and entered < touched_day.ends and entered >= touched_day.starts - reach
           and left_at >= touched_day.starts and left_at < touched_day.ends
+        offset 0
       ) as found`,
     grid,
   )}`);

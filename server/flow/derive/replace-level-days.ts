@@ -40,38 +40,39 @@ export async function replaceLevelDays(
       order by zone_id, measure, starts desc
     ),
     placed as (
-      select level_hour.*, width_bucket(hour, borders) as place
-      from level_hour join starting using (zone_id) cross join grid
+      select level_hour.*, width_bucket(hour, (select borders from grid)) as place
+      from level_hour join starting using (zone_id)
       where organisation_id = ${organisationId} and site_id = ${siteId} and hour >= begins
     ),
     running as (
       select
         placed.*,
-        days[place] as day, borders[place] as starts, borders[place + 1] as ends,
+        (select borders from grid)[place + 1] as ends,
         coalesce(level_end, 0) + coalesce(sum(ups - downs) over (
           partition by zone_id, measure order by hour
           rows between unbounded preceding and 1 preceding
         ), 0) as level
-      from placed cross join grid left join standing using (zone_id, measure)
+      from placed left join standing using (zone_id, measure)
     ),
     by_day as (
       select
-        zone_id, measure, day, starts, ends,
+        zone_id, measure, place,
+        (select days from grid)[place] as day, (select borders from grid)[place] as starts, ends,
         (array_agg(level order by hour))[1] as level_start,
         min(hour) as first_hour,
         sum(ups) as ups, sum(downs) as downs,
         sum(
-          (ups - downs) * round(date_part('epoch', ends - hour) * 1000000)::bigint
+          (ups - downs) * microseconds(ends - hour)
           - up_offset + down_offset
         ) as gathered,
         max(level + highest) as highest
       from running
-      group by zone_id, measure, day, starts, ends
+      group by zone_id, measure, place, ends
     )
     select
       ${organisationId}, ${siteId}, zone_id, measure, day, starts, ends,
       level_start, level_start + ups - downs, ups, downs,
-      level_start * round(date_part('epoch', ends - starts) * 1000000)::bigint + gathered,
+      level_start * microseconds(ends - starts) + gathered,
       greatest(highest, case when first_hour > starts then level_start end)
     from by_day`);
 }

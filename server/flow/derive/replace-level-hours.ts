@@ -1,112 +1,111 @@
 import { sql, type SQL } from 'drizzle-orm';
 import { lengthReaches } from '../length-reach.ts';
+import type { Measure } from '../level-blocks.ts';
 import type { Derivation } from './derivation.ts';
-import { hourOf, hourStretchRows } from './local-grid.ts';
+import { localHour } from './local-grid.ts';
 
 /** All moments that a stored time may have. */
 export const always = { from: Date.UTC(1949, 0, 1), to: Date.UTC(2100, 0, 1) };
 
+/** A zone as far as deriving its levels depends on it. */
+export interface DerivedZone {
+  id: number;
+  hasQuantities: boolean;
+}
+
+/** Where a measure's level goes up and down, and by how much. */
+interface MeasureSource {
+  measure: Measure;
+  view: SQL;
+  up: SQL;
+  down: SQL;
+  weight: SQL;
+  /** Only zones whose records carry quantities have levels in units. */
+  inUnits: boolean;
+}
+
+const one = sql`1::bigint`;
+const quantity = sql`coalesce(quantity, 1)`;
+const stays = { view: sql`zone_stay`, up: sql`entered`, down: sql`left_at` };
+const processes = { view: sql`zone_process`, up: sql`process_from`, down: sql`process_to` };
+
+const sources: readonly MeasureSource[] = [
+  { measure: 'inside_jobs', ...stays, weight: one, inUnits: false },
+  { measure: 'in_process_jobs', ...processes, weight: one, inUnits: false },
+  { measure: 'inside_units', ...stays, weight: quantity, inUnits: true },
+  { measure: 'in_process_units', ...processes, weight: quantity, inUnits: true },
+];
+
 /**
- * Changes of levels, as rows (zone_id, measure, at, step): who came in or left, and who went into or out
- * of process; in units too for zones whose records carry quantities.
+ * Changes of a level summed by zone and local hour. Changes at one instant are netted before the highest
+ * level is read (the window's peers share their sum); a change exactly at the hour's start takes the
+ * place of the level before it.
  *
- * @param stays statement giving (zone_id, has_quantities, entered, left_at, quantity)
- * @param processes statement giving (zone_id, has_quantities, process_from, process_to, quantity)
+ * @param found statement giving (zone_id, up_at, down_at, weight)
+ * @param within which hours to make
  */
-const levelChanges = (stays: SQL, processes: SQL): SQL => sql`
-  stays as (${stays}),
-  processes as (${processes}),
-  level_change as (
-    select zone_id, 'inside_jobs'::level_measure as measure, entered as at, 1::numeric as step from stays
-    union all
-    select zone_id, 'inside_jobs', left_at, -1 from stays where left_at is not null
-    union all
-    select zone_id, 'inside_units', entered, coalesce(quantity, 1) from stays where has_quantities
-    union all
-    select zone_id, 'inside_units', left_at, -coalesce(quantity, 1) from stays
-    where has_quantities and left_at is not null
-    union all
-    select zone_id, 'in_process_jobs', process_from, 1 from processes
-    union all
-    select zone_id, 'in_process_jobs', process_to, -1 from processes where process_to is not null
-    union all
-    select zone_id, 'in_process_units', process_from, coalesce(quantity, 1) from processes
-    where has_quantities
-    union all
-    select zone_id, 'in_process_units', process_to, -coalesce(quantity, 1) from processes
-    where has_quantities and process_to is not null
-  )`;
-
-/**
- * Changes summed by zone, measure and local hour. Changes at one instant are netted before the highest
- * level is read; a change exactly at the hour's start takes the place of the level before it.
- */
-const hoursOfChanges = (derivation: Derivation, within: SQL): SQL => sql`
-  hour_stretch as (${hourStretchRows(derivation.rules, always.from, always.to)}),
-  in_hour as (
-    select zone_id, measure, ${hourOf(sql`at`)} as hour, at, step
-    from level_change join hour_stretch on at >= begins and at < until
-  ),
-  at_instant as (
+const insertHours = (
+  { organisationId, siteId, rules }: Derivation,
+  measure: Measure,
+  found: SQL,
+  within: SQL,
+): SQL => {
+  const hour = localHour(rules, always.from, always.to);
+  return sql`
+    insert into level_hour (
+      organisation_id, site_id, zone_id, measure, hour,
+      ups, downs, up_offset, down_offset, highest
+    )
+    with found as not materialized (${found}),
+    level_change as (
+      select zone_id, up_at as at, weight as step from found
+      union all
+      select zone_id, down_at, -weight from found where down_at is not null
+    ),
+    in_hour as (
+      select zone_id, ${hour.of(sql`at`)} as hour, at, step from level_change ${hour.join}
+    ),
+    running as (
+      select
+        zone_id, hour, at, step,
+        microseconds(at - hour) as offset_microseconds,
+        sum(step) over (partition by zone_id, hour order by at) as change
+      from in_hour
+      where ${within}
+    )
     select
-      zone_id, measure, hour, at,
-      coalesce(sum(step) filter (where step > 0), 0) as ups,
-      coalesce(-sum(step) filter (where step < 0), 0) as downs
-    from in_hour
-    where ${within}
-    group by zone_id, measure, hour, at
-  ),
-  running as (
-    select
-      *,
-      round(date_part('epoch', at - hour) * 1000000)::bigint as offset_microseconds,
-      sum(ups - downs) over (
-        partition by zone_id, measure, hour order by at rows unbounded preceding
-      ) as change
-    from at_instant
-  )
-  select
-    ${derivation.organisationId}::integer, ${derivation.siteId}::integer, zone_id, measure, hour,
-    sum(ups), sum(downs),
-    sum(ups * offset_microseconds), sum(downs * offset_microseconds),
-    greatest(max(change), case when min(at) > hour then 0 end)
-  from running
-  group by zone_id, measure, hour`;
+      ${organisationId}::integer, ${siteId}::integer, zone_id, ${measure}::level_measure, hour,
+      coalesce(sum(step) filter (where step > 0), 0),
+      coalesce(-sum(step) filter (where step < 0), 0),
+      coalesce(sum(step * offset_microseconds) filter (where step > 0), 0),
+      coalesce(-sum(step * offset_microseconds) filter (where step < 0), 0),
+      greatest(max(change), case when min(at) > hour then 0 end)
+    from running
+    group by zone_id, hour`;
+};
 
-const insertInto = sql`insert into level_hour (
-  organisation_id, site_id, zone_id, measure, hour,
-  ups, downs, up_offset, down_offset, highest
-)`;
-
-/** Derives every hour of the given zones afresh. */
+/** Derives every hour of the given zones afresh, a zone at a time: short sorts stay in memory. */
 export async function replaceAllLevelHours(
   derivation: Derivation,
-  zoneIds: readonly number[],
+  zones: readonly DerivedZone[],
 ): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
-  const zones = sql`${sql.param(zoneIds)}::integer[]`;
-  const ofZones = sql`organisation_id = ${organisationId} and site_id = ${siteId}
-    and zone_id = any(${zones})`;
-  await tx.execute(sql`/* remove level hours */ delete from level_hour where ${ofZones}`);
-  await tx.execute(sql`/* insert level hours */
-    ${insertInto}
-    with ${levelChanges(
-      sql`
-        select zone_id, has_quantities, entered, left_at, quantity
-        from zone_stay join (
-          select id as zone_id, has_quantities from zone
-          where organisation_id = ${organisationId} and site_id = ${siteId}
-        ) as zone using (zone_id)
-        where ${ofZones}`,
-      sql`
-        select zone_id, has_quantities, process_from, process_to, quantity
-        from zone_process join (
-          select id as zone_id, has_quantities from zone
-          where organisation_id = ${organisationId} and site_id = ${siteId}
-        ) as zone using (zone_id)
-        where ${ofZones}`,
-    )},
-    ${hoursOfChanges(derivation, sql`true`)}`);
+  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  for (const { id, hasQuantities } of zones) {
+    await tx.execute(sql`/* remove level hours */
+      delete from level_hour where ${ofSite} and zone_id = ${id}`);
+    for (const { measure, view, up, down, weight, inUnits } of sources) {
+      if (inUnits && !hasQuantities) continue;
+      await tx.execute(sql`/* insert level hours */ ${insertHours(
+        derivation,
+        measure,
+        sql`
+          select zone_id, ${up} as up_at, ${down} as down_at, ${weight} as weight
+          from ${view} where ${ofSite} and zone_id = ${id}`,
+        sql`true`,
+      )}`);
+    }
+  }
 }
 
 /**
@@ -119,32 +118,43 @@ export async function replaceTouchedLevelHours(derivation: Derivation): Promise<
     delete from level_hour using touched_hour
     where organisation_id = ${organisationId} and site_id = ${siteId}
       and level_hour.zone_id = touched_hour.zone_id and level_hour.hour = touched_hour.hour`);
+  for (const source of sources) {
+    await findStaysNearTouchedHours(derivation, source);
+    await tx.execute(sql`/* insert touched level hours */ ${insertHours(
+      derivation,
+      source.measure,
+      sql`select * from stay_near_touched_hour`,
+      sql`(zone_id, hour) in (select zone_id, hour from touched_hour)`,
+    )}`);
+  }
+}
+
+/** Temporary table `stay_near_touched_hour`; its size is told to the planner, which would guess it far too small. */
+async function findStaysNearTouchedHours(
+  { tx, organisationId, siteId }: Derivation,
+  { view, up, down, weight, inUnits }: MeasureSource,
+): Promise<void> {
+  await tx.execute(sql`drop table if exists stay_near_touched_hour`);
   // A long stay may lie in several spans: it is to count once.
-  const near = (view: SQL, columns: SQL) => sql`
-    select distinct on (near.zone_id, near.job_key, near.ordinal ${columns})
-      near.zone_id, has_quantities, near.entered, near.left_at, near.quantity ${columns}
+  await tx.execute(sql`/* stays near touched hours */
+    create temp table stay_near_touched_hour on commit drop as
+    select distinct on (near.zone_id, near.job_key, near.ordinal, near.up_at)
+      near.zone_id, near.up_at, near.down_at, near.weight
     from touched_span
     join zone on zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}
       and zone.id = touched_span.zone_id
-    cross join length_reach
+    cross join (${lengthReaches}) as length_reach
     cross join lateral (
-      select * from ${view} as found
-      where found.organisation_id = ${organisationId} and found.site_id = ${siteId}
-        and found.zone_id = touched_span.zone_id
-        and found.length_class = length_reach.class
-        and found.entered < touched_span.hi
-        and found.entered >= touched_span.lo - length_reach.reach
-        and (found.left_at is null or found.left_at >= touched_span.lo)
-    ) as near`;
-  await tx.execute(sql`/* insert touched level hours */
-    ${insertInto}
-    with length_reach as (${lengthReaches}),
-    ${levelChanges(near(sql`zone_stay`, sql``), near(sql`zone_process`, sql`, near.process_from, near.process_to`))},
-    ${hoursOfChanges(
-      derivation,
-      sql`exists (
-        select from touched_hour
-        where touched_hour.zone_id = in_hour.zone_id and touched_hour.hour = in_hour.hour
-      )`,
-    )}`);
+      select zone_id, job_key, ordinal, ${up} as up_at, ${down} as down_at, ${weight} as weight
+      from ${view}
+      where organisation_id = ${organisationId} and site_id = ${siteId}
+        and zone_id = touched_span.zone_id
+        and length_class = class
+        and entered < touched_span.hi
+        and entered >= touched_span.lo - reach
+        and (left_at is null or left_at >= touched_span.lo)
+      offset 0
+    ) as near
+    where has_quantities or not ${inUnits}::boolean`);
+  await tx.execute(sql`analyze stay_near_touched_hour`);
 }

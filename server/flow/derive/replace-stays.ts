@@ -39,7 +39,7 @@ export async function replaceStays(
   await tx.execute(sql`/* insert stays */
     insert into stay (
       organisation_id, site_id, job_key, zone_id, ordinal,
-      entered, started, left_at, length_class, process_seconds, process_from, process_to,
+      entered, started, left_at, length_class, process_microseconds, process_from, process_to,
       quantity, finish_inferred, upload_id, line
     )
     with spanned as (${spannedZones(derivation)}),
@@ -91,8 +91,8 @@ export async function replaceStays(
         min(started) as started,
         case when bool_and(left_at is not null) then max(left_at) end as left_at,
         case when bool_and(started is not null and left_at is not null and not finish_inferred) then
-          coalesce(sum(extract(epoch from left_at - process_from)) filter (where processes), 0)
-        end as process_seconds,
+          coalesce(sum(microseconds(left_at - process_from)) filter (where processes), 0)
+        end as process_microseconds,
         coalesce(array_agg(process_from order by ordinal) filter (where processes), '{}') as process_from,
         coalesce(array_agg(left_at order by ordinal) filter (where processes), '{}') as process_to,
         (array_agg(quantity order by ordinal desc) filter (where quantity is not null))[1] as quantity,
@@ -106,7 +106,7 @@ export async function replaceStays(
       ${organisationId}, ${siteId}, job_key, zone_id,
       row_number() over (partition by job_key, zone_id order by pass, gaps),
       entered, started, left_at, length_class(entered, left_at),
-      process_seconds, process_from, process_to,
+      process_microseconds, process_from, process_to,
       quantity, finish_inferred, upload_id, line
     from whole
     where entered is not null

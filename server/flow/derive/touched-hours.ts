@@ -2,7 +2,7 @@ import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import { stepBorders } from '../../../shared/local-time.ts';
 import type { Derivation } from './derivation.ts';
-import { dayGridRow, hourOf, hourStretchRows, type DayGrid } from './local-grid.ts';
+import { dayGridRow, localHour, type DayGrid } from './local-grid.ts';
 import { always } from './replace-level-hours.ts';
 
 /** An empty temporary table `touched_hour`: the hours of each zone in which a level changes. */
@@ -16,19 +16,28 @@ export async function createTouchedHours({ tx }: Derivation): Promise<void> {
 /** Notes every hour in which a stay of a changed job, as it stands now, changes a level. */
 export async function touchHoursOfChangedJobs(derivation: Derivation): Promise<void> {
   const { tx, rules, organisationId, siteId } = derivation;
+  const hour = localHour(rules, always.from, always.to);
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
   await tx.execute(sql`/* touch hours */
     insert into touched_hour
-    with hour_stretch as (${hourStretchRows(rules, always.from, always.to)}),
-    moment as (
+    with moment as (
       select zone_id, unnest(array[entered, left_at]) as at
-      from zone_stay where ${ofSite} and job_key in (select job_key from changed_job)
+      from changed_job cross join lateral (
+        select zone_id, entered, left_at from zone_stay
+        where ${ofSite} and zone_stay.job_key = changed_job.job_key
+        offset 0
+      ) as stay
       union all
       select zone_id, unnest(array[process_from, process_to])
-      from zone_process where ${ofSite} and job_key in (select job_key from changed_job)
+      from changed_job cross join lateral (
+        select zone_id, process_from, process_to from zone_process
+        where ${ofSite} and zone_process.job_key = changed_job.job_key
+        offset 0
+      ) as process
     )
-    select distinct zone_id, ${hourOf(sql`at`)}
-    from moment join hour_stretch on at >= begins and at < until
+    select distinct zone_id, ${hour.of(sql`at`)}
+    from moment ${hour.join}
+    where at is not null
     on conflict do nothing`);
 }
 
@@ -94,6 +103,8 @@ export async function spanTouchedHours({ tx }: Derivation, grid: DayGrid): Promi
     )
     select zone_id, min(hour) as lo, max(hour) + interval '2 hours' as hi
     from numbered group by zone_id, number`);
+  await tx.execute(sql`analyze touched_hour`);
+  await tx.execute(sql`analyze touched_span`);
   await tx.execute(sql`/* touched days */
     create temp table touched_day on commit drop as
     select distinct
