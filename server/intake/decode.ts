@@ -58,7 +58,11 @@ function refuseOtherEncodings(head: Buffer): void {
 export function decodeBlock(form: TextForm, block: Buffer, isFirst: boolean): Buffer {
   const text = isFirst ? block.subarray(form.markBytes) : block;
   if (form.loneReturns) {
-    for (let at = text.indexOf(carriageReturn); at >= 0; at = text.indexOf(carriageReturn, at + 1)) {
+    for (
+      let at = text.indexOf(carriageReturn);
+      at >= 0;
+      at = text.indexOf(carriageReturn, at + 1)
+    ) {
       text[at] = lineFeed;
     }
   }

@@ -24,7 +24,10 @@ const chunksAhead = 2;
  */
 export async function* readOriginal(db: Database, key: UploadKey): AsyncGenerator<Buffer> {
   const packed = Readable.from(readChunks(db, key), { highWaterMark: chunksAhead });
-  const gunzip = createGunzip({ chunkSize: blockBytes, highWaterMark: 2 * blockBytes } as ZlibOptions);
+  const gunzip = createGunzip({
+    chunkSize: blockBytes,
+    highWaterMark: 2 * blockBytes,
+  } as ZlibOptions);
   packed.on('error', (error) => gunzip.destroy(error));
   try {
     for await (const block of packed.pipe(gunzip)) yield block as Buffer;
@@ -35,7 +38,7 @@ export async function* readOriginal(db: Database, key: UploadKey): AsyncGenerato
 }
 
 async function* readChunks(db: Database, key: UploadKey): AsyncGenerator<Buffer> {
-  for (let last = 0; ; ) {
+  for (let last = 0; ;) {
     const chunk = await readChunkAfter(db, key, last);
     if (!chunk) return;
     yield chunk.bytes;

@@ -118,7 +118,8 @@ async function readBlocks(
   const tell = async (): Promise<void> => {
     told = bytes;
     const goesOn = await onProgress({ rows: reader.tally.rowsRead, bytes });
-    if (!goesOn) throw new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');
+    if (!goesOn)
+      throw new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');
   };
   for await (const block of source.blocks) {
     bytes += block.bytes;

@@ -6,9 +6,7 @@ const carriageReturn = 0x0d;
 
 /** Where a row that begins with `from` ends: behind its line feed, or why that cannot be told. */
 export type RowExtent =
-  | { kind: 'whole'; end: number; lines: number }
-  | { kind: 'malformed' }
-  | { kind: 'unclosed' };
+  { kind: 'whole'; end: number; lines: number } | { kind: 'malformed' } | { kind: 'unclosed' };
 
 /**
  * Finds the end of a row whose cells may be quoted (RFC 4180): within quotes a doubled quotation mark is
@@ -23,8 +21,10 @@ export function findRowExtent(
   delimiter: number,
   isLast: boolean,
 ): RowExtent {
+  const blanks: WholeRow['blanks'] = [];
   let lines = 1;
   let at = from;
+  let cellStart = from;
   let cellBegins = true;
   while (at < end) {
     const byte = bytes[at];
@@ -32,21 +32,24 @@ export function findRowExtent(
       const closing = findClosingQuote(bytes, at + 1, end);
       if (closing < 0) return { kind: 'unclosed' };
       for (let i = at; i < closing; i++) if (bytes[i] === lineFeed) lines += 1;
+      if (cellStart < at) blanks.push([cellStart, at]);
       at = skipBlanks(bytes, closing + 1, end, delimiter);
+      if (closing + 1 < at) blanks.push([closing + 1, at]);
       if (at >= end) break;
       if (!endsCell(bytes, at, end, delimiter)) return { kind: 'malformed' };
       cellBegins = false;
     } else if (byte === delimiter) {
       cellBegins = true;
       at += 1;
+      cellStart = at;
     } else if (byte === lineFeed) {
-      return { kind: 'whole', end: at + 1, lines };
+      return { kind: 'whole', end: at + 1, lines, blanks };
     } else {
       if (!isBlank(byte)) cellBegins = false;
       at += 1;
     }
   }
-  return isLast ? { kind: 'whole', end, lines } : { kind: 'unclosed' };
+  return isLast ? { kind: 'whole', end, lines, blanks } : { kind: 'unclosed' };
 }
 
 function findClosingQuote(bytes: Buffer, from: number, end: number): number {
@@ -72,8 +75,21 @@ function endsCell(bytes: Buffer, at: number, end: number, delimiter: number): bo
   return byte === carriageReturn && (at + 1 >= end || bytes[at + 1] === lineFeed);
 }
 
-/** Blank lines, which the parser skips: with them behind a row it need not wait for what follows. */
+/** The bytes of a row without the blanks around its quoted cells. */
+export function withoutBlanks(bytes: Buffer, from: number, { end, blanks }: WholeRow): Buffer {
+  const kept: Buffer[] = [];
+  let at = from;
+  for (const [blankFrom, blankTo] of blanks) {
+    kept.push(bytes.subarray(at, blankFrom));
+    at = blankTo;
+  }
+  kept.push(bytes.subarray(at, end));
+  return Buffer.concat(kept);
+}
+
+/** A line end, and blank lines the parser skips: with them behind a row it need not wait for what follows. */
 const padding = Buffer.from('\n'.repeat(16));
+// csv-parse cannot trim cells that it hands out as bytes, so the blanks are taken away before.
 
 /** Splits rows with doubled quotation marks or line ends within cells, one at a time, by csv-parse. */
 export class QuotedRowParser {
@@ -101,7 +117,6 @@ export class QuotedRowParser {
       relax_column_count: true,
       relax_quotes: true,
       skip_empty_lines: true,
-      trim: true,
     });
     // The row is refused by what `cells` answers; the parser is not used again.
     parser.on('error', () => undefined);

@@ -64,4 +64,3 @@ function timeReaderOf(plan: ColumnPlan): TimeReader {
     ? new AutoTimeReader(clock, plan.dateOrder ?? null)
     : new PatternTimeReader(compileTimePattern(plan.timeFormat), clock);
 }
-

@@ -68,4 +68,5 @@ export class RowTally {
   }
 }
 
-const sum = (counts: Iterable<number>): number => [...counts].reduce((total, count) => total + count, 0);
+const sum = (counts: Iterable<number>): number =>
+  [...counts].reduce((total, count) => total + count, 0);

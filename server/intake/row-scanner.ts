@@ -1,6 +1,6 @@
 import { IntakeFailure } from './failure.ts';
 import { columnLimit, rowByteLimit } from './limits.ts';
-import { findRowExtent, QuotedRowParser } from './quoted-row.ts';
+import { findRowExtent, QuotedRowParser, withoutBlanks } from './quoted-row.ts';
 
 const quote = 0x22;
 const lineFeed = 0x0a;
@@ -74,7 +74,7 @@ export class RowScanner {
     while (at < bytes.length) {
       const next = this.#scanRow(bytes, at, isLast);
       if (next < 0) break;
-      at = next;
+      at = Math.min(next, bytes.length);
       if (onRow(this.row) === false) break;
     }
     bytes.copyWithin(0, at);
@@ -154,14 +154,15 @@ export class RowScanner {
   /** A row that only csv-parse may split, or whose quotation marks are out of order. */
   #scanQuotedRow(bytes: Buffer, from: number, isLast: boolean): number {
     const extent = findRowExtent(bytes, from, bytes.length, this.#delimiter, isLast);
-    if (extent.kind === 'malformed') return this.#breakRow(bytes, from, 'malformed-quotes');
-    const isWithinLimit = (extent.kind === 'whole' ? extent.end : bytes.length) - from <= rowByteLimit;
+    if (extent.kind === 'malformed') return this.#breakRow(bytes, from, isLast, 'malformed-quotes');
+    const isWithinLimit =
+      (extent.kind === 'whole' ? extent.end : bytes.length) - from <= rowByteLimit;
     if (extent.kind === 'unclosed' && isWithinLimit && !isLast) return -1;
     if (extent.kind === 'unclosed' || !isWithinLimit) {
-      return this.#breakRow(bytes, from, 'quote-not-closed');
+      return this.#breakRow(bytes, from, isLast, 'quote-not-closed');
     }
-    const cells = this.#quoted.cells(withLineFeed(bytes.subarray(from, extent.end)));
-    if (cells === null) return this.#breakRow(bytes, from, 'malformed-quotes');
+    const cells = this.#quoted.cells(withoutBlanks(bytes, from, extent));
+    if (cells === null) return this.#breakRow(bytes, from, isLast, 'malformed-quotes');
     const lineEnd = bytes[extent.end - 1] === lineFeed ? extent.end - 1 : extent.end;
     this.#setRaw(bytes, from, lineEnd);
     this.#layCells(cells);
@@ -182,8 +183,14 @@ export class RowScanner {
     row.trouble = null;
   }
 
-  #breakRow(bytes: Buffer, from: number, trouble: NonNullable<ScannedRow['trouble']>): number {
+  #breakRow(
+    bytes: Buffer,
+    from: number,
+    isLast: boolean,
+    trouble: NonNullable<ScannedRow['trouble']>,
+  ): number {
     const found = bytes.indexOf(lineFeed, from);
+    if (found < 0 && !isLast) return this.#wait(bytes, from);
     const lineEnd = found < 0 ? bytes.length : found;
     if (lineEnd - from > rowByteLimit) throw rowTooLong(this.#line);
     this.#setRaw(bytes, from, lineEnd);
@@ -207,10 +214,6 @@ function quoteFollowsBlanks(bytes: Buffer, start: number, stop: number): boolean
   let at = start;
   while (at < stop && (bytes[at] === space || bytes[at] === tab)) at += 1;
   return at > start && at < stop && bytes[at] === quote;
-}
-
-function withLineFeed(row: Buffer): Buffer {
-  return row[row.length - 1] === lineFeed ? row : Buffer.concat([row, Buffer.from('\n')]);
 }
 
 function rowTooLong(line: number): IntakeFailure {

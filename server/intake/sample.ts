@@ -32,7 +32,8 @@ export function readSample(text: Buffer, isWhole: boolean, delimiter: string): S
   const rows: SampleRow[] = [];
   new RowScanner(delimiter).scan(text, isWhole, (row) => {
     const cells = cellsOf(row);
-    if (cells.some((cell) => cell.trim() !== '')) rows.push({ line: row.line, cells, raw: rawOf(row) });
+    if (cells.some((cell) => cell.trim() !== ''))
+      rows.push({ line: row.line, cells, raw: rawOf(row) });
     return rows.length <= sampleRowLimit;
   });
   const header = rows.shift()?.cells.map((cell) => cell.trim()) ?? [];

@@ -4,19 +4,19 @@ import { RowScanner, type ScannedRow } from './row-scanner.ts';
 import { rawOf } from './sample.ts';
 import { SkippedRows } from './shapes/skipped-row.ts';
 import type { StayRow } from './shapes/stay-row.ts';
-import { refusedFields, type Stage } from './stage.ts';
+import { refusedFields, type RowSink } from './stage.ts';
 
 /** Reads text block by block: each row is judged, counted, and written to the stage. */
 export class StageReader {
   readonly tally = new RowTally();
   readonly #scanner: RowScanner;
   readonly #stayRow: StayRow;
-  readonly #stage: Stage;
+  readonly #stage: RowSink;
   readonly #fields: number;
   readonly #blank = new SkippedRows([]);
   #hasHeader = false;
 
-  constructor(delimiter: string, stayRow: StayRow, stage: Stage) {
+  constructor(delimiter: string, stayRow: StayRow, stage: RowSink) {
     this.#scanner = new RowScanner(delimiter);
     this.#stayRow = stayRow;
     this.#stage = stage;
@@ -25,7 +25,9 @@ export class StageReader {
 
   /** @param isLast whether the text ends with this block */
   async read(text: Buffer, isLast: boolean): Promise<void> {
-    this.#scanner.scan(text, isLast, (row) => (this.#hasHeader ? this.#judge(row) : this.#passHeader(row)));
+    this.#scanner.scan(text, isLast, (row) =>
+      this.#hasHeader ? this.#judge(row) : this.#passHeader(row),
+    );
     await this.#stage.sendFull();
     // Lets what is on its way move: judging rows never waits by itself.
     await setImmediate();

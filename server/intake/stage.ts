@@ -40,12 +40,19 @@ export const refusedFields = 4;
 const lotBytes = 1_048_576;
 const lotRoom = lotBytes + 524_288;
 
+/** Where judged rows go. */
+export interface RowSink {
+  readonly rows: BinaryCopy;
+  readonly refused: BinaryCopy;
+  sendFull(): Promise<void>;
+}
+
 /**
  * The temporary tables of one load's connection, filled by COPY in lots: rows gather in memory, and a full
  * lot is sent while the next one gathers. A COPY of its own for each lot lets accepted and refused rows
  * take turns on the one connection.
  */
-export class Stage {
+export class Stage implements RowSink {
   rows = new BinaryCopy(lotRoom);
   refused = new BinaryCopy(lotRoom);
   readonly #client: PoolClient;
@@ -69,7 +76,9 @@ export class Stage {
 
   /** Removes what an earlier load left on the connection. */
   static async drop(client: PoolClient): Promise<void> {
-    await client.query('/* drop stage */ drop table if exists pg_temp.staged_row, pg_temp.staged_refused');
+    await client.query(
+      '/* drop stage */ drop table if exists pg_temp.staged_row, pg_temp.staged_refused',
+    );
   }
 
   /** Sends lots that are full; waits only where the lot before is still on its way. */

@@ -8,19 +8,28 @@ import {
 import { IntakeFailure } from '../failure.ts';
 
 export type StayColumn = 'job' | 'area' | TimeColumn | OptionalColumn;
-export const stayColumns: readonly StayColumn[] = ['job', 'area', ...timeColumns, ...optionalColumns];
+export const stayColumns: readonly StayColumn[] = [
+  'job',
+  'area',
+  ...timeColumns,
+  ...optionalColumns,
+];
 
 /** The place of each column of the plan among the header's cells; what is not mapped is missing. */
 export type StayColumnPlaces = Partial<Record<StayColumn, number>> & { job: number; area: number };
 
-const fold = (text: string): string => text.normalize('NFC').trim().replace(/\s+/gu, ' ').toLowerCase();
+const fold = (text: string): string =>
+  text.normalize('NFC').trim().replace(/\s+/gu, ' ').toLowerCase();
 
 /**
  * Finds the columns that a plan names in a header: as written, else without regard to case and blanks.
  *
  * @throws IntakeFailure where the header has no such column, or two of that name
  */
-export function placeColumns(columns: ColumnPlan['columns'], header: readonly string[]): StayColumnPlaces {
+export function placeColumns(
+  columns: ColumnPlan['columns'],
+  header: readonly string[],
+): StayColumnPlaces {
   const places: Partial<Record<StayColumn, number>> = {};
   for (const column of stayColumns) {
     const name = columns[column];

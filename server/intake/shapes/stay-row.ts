@@ -131,5 +131,8 @@ function refuseKey(cell: Cell, word: string): Refusal | null {
     return { reason: 'unreadable-bytes', detail: `The ${word} ${quoteCell(cell)} is no text.` };
   }
   if (!cell.isLongerThan(keyLengthLimit)) return null;
-  return { reason: 'cell-too-long', detail: `The ${word} has more than ${keyLengthLimit} characters.` };
+  return {
+    reason: 'cell-too-long',
+    detail: `The ${word} has more than ${keyLengthLimit} characters.`,
+  };
 }

@@ -163,7 +163,8 @@ export class AutoTimeReader implements TimeReader {
     const minute = Math.floor(digits / 100) % 100;
     const second = digits % 100;
     if (hour > 23 || minute > 59 || second > 59) return false;
-    if (!this.#time.readAfterSeconds(this.#cursor, hour * 3600 + minute * 60 + second)) return false;
+    if (!this.#time.readAfterSeconds(this.#cursor, hour * 3600 + minute * 60 + second))
+      return false;
     this.#setTime(this.#time.seconds);
     return true;
   }

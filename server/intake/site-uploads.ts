@@ -1,0 +1,137 @@
+import { and, desc, eq, getTableColumns, ne, sql } from 'drizzle-orm';
+import type { Database, Transaction } from '../db/client.ts';
+import { accessKey, person } from '../db/schema/people.ts';
+import { upload } from '../db/schema/uploads.ts';
+import { withTenant } from '../db/tenant.ts';
+import type { UploadKey } from './original.ts';
+import { ReceiptRefused } from './receipt-refused.ts';
+import type { UploadRow } from './present-upload.ts';
+
+export interface SiteKey {
+  organisationId: number;
+  siteId: number;
+}
+
+/** The uploads of a site that were received whole, newest first. */
+export function listUploadsOf(db: Database, site: SiteKey): Promise<UploadRow[]> {
+  return withTenant(db, site.organisationId, (tx) => selectUploads(tx, site));
+}
+
+/** @throws ReceiptRefused where the site has no such upload */
+export async function findUpload(db: Database, key: UploadKey): Promise<UploadRow> {
+  const rows = await withTenant(db, key.organisationId, (tx) =>
+    selectUploads(tx, key, key.uploadId),
+  );
+  return rows[0] ?? refuseUnknown();
+}
+
+function selectUploads(tx: Transaction, site: SiteKey, uploadId?: number): Promise<UploadRow[]> {
+  return tx
+    .select({
+      ...columnsOf(),
+      receivedBy: sql<string | null>`coalesce(${person.name}, ${accessKey.name})`,
+    })
+    .from(upload)
+    .leftJoin(person, eq(person.id, upload.receivedBy))
+    .leftJoin(accessKey, eq(accessKey.id, upload.receivedKey))
+    .where(
+      and(
+        eq(upload.organisationId, site.organisationId),
+        eq(upload.siteId, site.siteId),
+        ne(upload.status, 'receiving'),
+        uploadId === undefined ? undefined : eq(upload.id, uploadId),
+      ),
+    )
+    .orderBy(desc(upload.id));
+}
+
+const isUpload = ({ organisationId, siteId, uploadId }: UploadKey) =>
+  and(
+    eq(upload.organisationId, organisationId),
+    eq(upload.siteId, siteId),
+    eq(upload.id, uploadId),
+    ne(upload.status, 'receiving'),
+  );
+
+/** What a wish about an upload made of it. */
+export interface WishedUpload {
+  id: number;
+  status: 'waiting' | 'reading' | 'loading' | 'loaded' | 'failed' | 'withdrawn';
+}
+
+/**
+ * Asks that an upload be stopped: one that waits fails at once, one that is read or loaded when the work
+ * on it next looks.
+ *
+ * @throws ReceiptRefused where there is no such upload, or it is over with already
+ */
+export async function requestStop(
+  tx: Transaction,
+  key: UploadKey,
+  now: Date,
+): Promise<WishedUpload> {
+  const status = await lockStatus(tx, key);
+  if (status === 'waiting') {
+    const error = { code: 'stopped', detail: 'The upload was stopped. Nothing of it was kept.' };
+    await tx
+      .update(upload)
+      .set({ status: 'failed', error, stopRequestedAt: now, finishedAt: now })
+      .where(isUpload(key));
+    return { id: key.uploadId, status: 'failed' };
+  }
+  if (status !== 'reading' && status !== 'loading') {
+    throw new ReceiptRefused('conflict', `The upload is ${status}; there is nothing to stop.`);
+  }
+  await tx.update(upload).set({ stopRequestedAt: now }).where(isUpload(key));
+  return { id: key.uploadId, status };
+}
+
+/**
+ * Asks that an upload be withdrawn once it is loaded.
+ *
+ * @throws ReceiptRefused where there is no such upload, or nothing of it is in the site
+ */
+export async function requestWithdrawal(
+  tx: Transaction,
+  key: UploadKey,
+  now: Date,
+): Promise<WishedUpload> {
+  const status = await lockStatus(tx, key);
+  if (status === 'failed' || status === 'withdrawn') {
+    throw new ReceiptRefused(
+      'conflict',
+      status === 'failed'
+        ? 'The upload failed; nothing of it is in the site.'
+        : 'The upload was withdrawn already.',
+    );
+  }
+  await tx
+    .update(upload)
+    .set({
+      withdrawRequestedAt: sql`coalesce(${upload.withdrawRequestedAt}, ${now.toISOString()})`,
+    })
+    .where(isUpload(key));
+  return { id: key.uploadId, status };
+}
+
+/** Reads the status and holds the upload until the transaction ends. */
+async function lockStatus(tx: Transaction, key: UploadKey): Promise<WishedUpload['status']> {
+  const [row] = await tx
+    .select({ status: upload.status })
+    .from(upload)
+    .where(isUpload(key))
+    .for('update');
+  if (!row || row.status === 'receiving') return refuseUnknown();
+  return row.status;
+}
+
+function refuseUnknown(): never {
+  throw new ReceiptRefused('not-found', 'There is no such upload at this site.');
+}
+
+function columnsOf() {
+  const { receivedBy, receivedKey, ...columns } = getTableColumns(upload);
+  void receivedBy;
+  void receivedKey;
+  return columns;
+}
