@@ -1,10 +1,11 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import { columnPlanSchema, type ColumnPlan } from '../../shared/contracts/plan.ts';
+import type { Problem } from '../../shared/errors.ts';
 import type { Database } from '../db/client.ts';
 import { columnPlan } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
+import { ApiError } from '../errors.ts';
 import { IntakeFailure } from './failure.ts';
-import { ReceiptRefused, type FieldIssue } from './receipt-refused.ts';
 import { compileTimePattern } from './times/time-pattern.ts';
 
 const wrongPlan = 'The column plan was not understood.';
@@ -13,7 +14,7 @@ const wrongPlan = 'The column plan was not understood.';
  * The column plan that came with a file: as JSON, or as the id of a saved plan of the site.
  *
  * @param part the text as it came; undefined or blank where none did
- * @throws ReceiptRefused with everything that is wrong with it
+ * @throws ApiError with everything that is wrong with it
  */
 export async function readPlanPart(
   db: Database,
@@ -72,7 +73,7 @@ function checkPlan(told: unknown): ColumnPlan {
   refuseUnreadablePattern(checked.data.timeFormat);
   if (checked.data.mode === 'replace-period') {
     const message = 'Files that replace a period are not taken yet; leave the mode at merge.';
-    throw new ReceiptRefused('not-built', message, [{ field: 'plan.mode', message }]);
+    throw new ApiError('not-built', message, { errors: [{ field: 'plan.mode', message }] });
   }
   return checked.data;
 }
@@ -87,5 +88,5 @@ function refuseUnreadablePattern(timeFormat: string): void {
   }
 }
 
-const refuse = (issues: FieldIssue[]): ReceiptRefused =>
-  new ReceiptRefused('invalid-input', wrongPlan, issues);
+const refuse = (issues: Problem['errors']): ApiError =>
+  new ApiError('invalid-input', wrongPlan, { errors: issues });

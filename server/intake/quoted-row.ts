@@ -4,9 +4,16 @@ const quote = 0x22;
 const lineFeed = 0x0a;
 const carriageReturn = 0x0d;
 
-/** Where a row that begins with `from` ends: behind its line feed, or why that cannot be told. */
-export type RowExtent =
-  { kind: 'whole'; end: number; lines: number } | { kind: 'malformed' } | { kind: 'unclosed' };
+/** A row that ends before `end`, behind its line feed, with the blanks that stand around quoted cells. */
+export interface WholeRow {
+  kind: 'whole';
+  end: number;
+  lines: number;
+  blanks: [from: number, to: number][];
+}
+
+/** Where a row ends, or why that cannot be told. */
+export type RowExtent = WholeRow | { kind: 'malformed' } | { kind: 'unclosed' };
 
 /**
  * Finds the end of a row whose cells may be quoted (RFC 4180): within quotes a doubled quotation mark is

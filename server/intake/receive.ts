@@ -1,7 +1,7 @@
 import type { Request } from 'express';
 import multer, { MulterError, type StorageEngine } from 'multer';
 import type { Database } from '../db/client.ts';
-import { ReceiptRefused } from './receipt-refused.ts';
+import { ApiError } from '../errors.ts';
 import {
   discardReceipt,
   storeOriginal,
@@ -24,7 +24,7 @@ const planBytes = 65_536;
  * arrives. A transfer that breaks off, or that holds anything else, leaves nothing behind.
  *
  * @param limitMb the largest file that is taken, in MiB
- * @throws ReceiptRefused with the sentence that says what was wrong with the request
+ * @throws ApiError with the sentence that says what was wrong with the request
  */
 export async function receiveParts(
   request: Request,
@@ -35,9 +35,11 @@ export async function receiveParts(
   await runMulter(request, new ChunkStorage(db, receipt), limitMb * 1_048_576, limitMb);
   const file = request.file as (Express.Multer.File & { stored: StoredOriginal }) | undefined;
   if (!file) {
-    throw new ReceiptRefused('invalid-input', 'The request holds no file.', [
-      { field: 'file', message: 'Send the export as a part named file, with a file name.' },
-    ]);
+    throw new ApiError('invalid-input', 'The request holds no file.', {
+      errors: [
+        { field: 'file', message: 'Send the export as a part named file, with a file name.' },
+      ],
+    });
   }
   const parts = request.body as Record<string, unknown>;
   const stored = file.stored;
@@ -58,7 +60,7 @@ export async function runMulter(
 ): Promise<void> {
   if (!request.is('multipart/form-data')) {
     const sentence = 'Send the file as multipart/form-data, in a part named file.';
-    throw new ReceiptRefused('wrong-media-type', sentence);
+    throw new ApiError('wrong-media-type', sentence);
   }
   const limits = {
     fileSize,
@@ -148,14 +150,14 @@ function asRefusal(error: unknown, limitMb: number): unknown {
   if (error instanceof MulterError) {
     if (error.code === 'LIMIT_FILE_SIZE') {
       const sentence = `The file is larger than ${limitMb} MiB, the most that this server takes.`;
-      return new ReceiptRefused('too-large', sentence);
+      return new ApiError('too-large', sentence);
     }
     const sentence = limitSentences[error.code] ?? 'The request was not understood as a form.';
-    return new ReceiptRefused('invalid-input', sentence);
+    return new ApiError('invalid-input', sentence);
   }
   if (error instanceof Error && isBrokenForm(error)) {
     const sentence = 'The transfer broke off or is no proper form. Nothing of it was kept.';
-    return new ReceiptRefused('invalid-input', sentence);
+    return new ApiError('invalid-input', sentence);
   }
   return error;
 }
@@ -166,12 +168,12 @@ const isBrokenForm = ({ message }: Error): boolean =>
     message,
   );
 
-function refuseFields(unknown: readonly string[]): ReceiptRefused {
+function refuseFields(unknown: readonly string[]): ApiError {
   const issues = unknown.map((name) => ({
     field: name.slice(0, 100),
     message: 'There is no such part; the request takes file and plan.',
   }));
   const sentence =
     issues.length > 0 ? 'The request holds parts that are not known.' : 'Send one plan only.';
-  return new ReceiptRefused('invalid-input', sentence, issues);
+  return new ApiError('invalid-input', sentence, { errors: issues });
 }

@@ -3,8 +3,8 @@ import type { Database, Transaction } from '../db/client.ts';
 import { accessKey, person } from '../db/schema/people.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
+import { conflict, notFound } from '../errors.ts';
 import type { UploadKey } from './original.ts';
-import { ReceiptRefused } from './receipt-refused.ts';
 import type { UploadRow } from './present-upload.ts';
 
 export interface SiteKey {
@@ -17,7 +17,7 @@ export function listUploadsOf(db: Database, site: SiteKey): Promise<UploadRow[]>
   return withTenant(db, site.organisationId, (tx) => selectUploads(tx, site));
 }
 
-/** @throws ReceiptRefused where the site has no such upload */
+/** @throws ApiError where the site has no such upload */
 export async function findUpload(db: Database, key: UploadKey): Promise<UploadRow> {
   const rows = await withTenant(db, key.organisationId, (tx) =>
     selectUploads(tx, key, key.uploadId),
@@ -63,7 +63,7 @@ export interface WishedUpload {
  * Asks that an upload be stopped: one that waits fails at once, one that is read or loaded when the work
  * on it next looks.
  *
- * @throws ReceiptRefused where there is no such upload, or it is over with already
+ * @throws ApiError where there is no such upload, or it is over with already
  */
 export async function requestStop(
   tx: Transaction,
@@ -80,7 +80,7 @@ export async function requestStop(
     return { id: key.uploadId, status: 'failed' };
   }
   if (status !== 'reading' && status !== 'loading') {
-    throw new ReceiptRefused('conflict', `The upload is ${status}; there is nothing to stop.`);
+    throw conflict(`The upload is ${status}; there is nothing to stop.`);
   }
   await tx.update(upload).set({ stopRequestedAt: now }).where(isUpload(key));
   return { id: key.uploadId, status };
@@ -89,7 +89,7 @@ export async function requestStop(
 /**
  * Asks that an upload be withdrawn once it is loaded.
  *
- * @throws ReceiptRefused where there is no such upload, or nothing of it is in the site
+ * @throws ApiError where there is no such upload, or nothing of it is in the site
  */
 export async function requestWithdrawal(
   tx: Transaction,
@@ -98,8 +98,7 @@ export async function requestWithdrawal(
 ): Promise<WishedUpload> {
   const status = await lockStatus(tx, key);
   if (status === 'failed' || status === 'withdrawn') {
-    throw new ReceiptRefused(
-      'conflict',
+    throw conflict(
       status === 'failed'
         ? 'The upload failed; nothing of it is in the site.'
         : 'The upload was withdrawn already.',
@@ -126,7 +125,7 @@ async function lockStatus(tx: Transaction, key: UploadKey): Promise<WishedUpload
 }
 
 function refuseUnknown(): never {
-  throw new ReceiptRefused('not-found', 'There is no such upload at this site.');
+  throw notFound('The upload');
 }
 
 function columnsOf() {

@@ -140,6 +140,8 @@ describe('rows of delimited text', () => {
   });
 
   test('longer than the limit on one line fail the file', () => {
-    expect(() => scan(`a,b\n${'x'.repeat(rowByteLimit + 1)}`, ',', [65_536])).toThrow(IntakeFailure);
+    expect(() => scan(`a,b\n${'x'.repeat(rowByteLimit + 1)}`, ',', [65_536])).toThrow(
+      IntakeFailure,
+    );
   });
 });

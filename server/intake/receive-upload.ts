@@ -1,0 +1,87 @@
+import type { Request } from 'express';
+import { and, eq } from 'drizzle-orm';
+import type { ColumnPlan } from '../../shared/contracts/plan.ts';
+import { recordAct } from '../audit/record-act.ts';
+import type { Actor } from '../auth/actor.ts';
+import type { Clock } from '../clock.ts';
+import type { Database } from '../db/client.ts';
+import { upload } from '../db/schema/uploads.ts';
+import { withTenant } from '../db/tenant.ts';
+import type { UploadKey } from './original.ts';
+import { readPlanPart } from './plan-part.ts';
+import { receiveParts, type ReceivedParts } from './receive.ts';
+import type { SiteKey } from './site-uploads.ts';
+import { discardReceipt } from './store-original.ts';
+
+export interface ReceiptContext {
+  db: Database;
+  clock: Clock;
+  actor: Actor;
+  requestId?: string;
+  /** The largest file that is taken, in MiB. */
+  limitMb: number;
+}
+
+/**
+ * Receives a file with its column plan, whole or not at all, and makes it an upload that waits to be read.
+ *
+ * @returns the upload's id
+ * @throws ApiError where the request or the plan is not in order; nothing of the file is left then
+ */
+export async function receiveUpload(
+  request: Request,
+  site: SiteKey,
+  context: ReceiptContext,
+): Promise<number> {
+  const { db, clock, actor, limitMb } = context;
+  const receipt = {
+    ...site,
+    receivedAt: clock.now(),
+    receivedBy: actor.kind === 'person' ? actor.personId : null,
+    receivedKey: actor.kind === 'machine' ? actor.accessKeyId : null,
+  };
+  const received = await receiveParts(request, db, receipt, limitMb);
+  const key = { ...site, uploadId: received.stored.uploadId };
+  try {
+    const plan = await readPlanPart(db, site, received.planPart);
+    await accept(key, received, plan, context);
+  } catch (error) {
+    await discardReceipt(db, key);
+    throw error;
+  }
+  return key.uploadId;
+}
+
+async function accept(
+  key: UploadKey,
+  { stored, fileName }: ReceivedParts,
+  planGiven: ColumnPlan | null,
+  { db, clock, actor, requestId }: ReceiptContext,
+): Promise<void> {
+  const { organisationId, siteId, uploadId } = key;
+  const { byteSize, sha256 } = stored;
+  const at = clock.now();
+  await withTenant(db, organisationId, async (tx) => {
+    await tx
+      .update(upload)
+      .set({ status: 'waiting', byteSize, sha256, planGiven, receivedAt: at })
+      .where(
+        and(
+          eq(upload.organisationId, organisationId),
+          eq(upload.siteId, siteId),
+          eq(upload.id, uploadId),
+        ),
+      );
+    await recordAct(tx, {
+      organisationId,
+      siteId,
+      at,
+      actor,
+      action: 'upload.create',
+      subjectKind: 'upload',
+      subjectId: uploadId,
+      after: { fileName, byteSize, sha256 },
+      ...(requestId === undefined ? {} : { requestId }),
+    });
+  });
+}
