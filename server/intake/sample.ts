@@ -14,7 +14,7 @@ export interface Sample {
   delimiter: string;
   /** The first row that holds anything, its cells without blanks at their ends. */
   header: string[];
-  /** Rows behind the header that hold anything. */
+  /** Rows behind the header that hold anything else. */
   rows: SampleRow[];
 }
 
@@ -37,7 +37,9 @@ export function readSample(text: Buffer, isWhole: boolean, delimiter: string): S
     return rows.length <= sampleRowLimit;
   });
   const header = rows.shift()?.cells.map((cell) => cell.trim()) ?? [];
-  return { delimiter, header, rows };
+  const repeatsHeader = ({ cells }: SampleRow): boolean =>
+    cells.length === header.length && cells.every((cell, index) => cell.trim() === header[index]);
+  return { delimiter, header, rows: rows.filter((row) => !repeatsHeader(row)) };
 }
 
 /** The cells of a row as text; of a row whose quotation marks are out of order, the row as one cell. */

@@ -31,12 +31,16 @@ export interface ReadTextOptions {
 export function readText(text: string | Buffer, options: ReadTextOptions = {}) {
   const bytes = Buffer.isBuffer(text) ? text : Buffer.from(text);
   const timeZone = options.timeZone ?? 'UTC';
-  const detection = detect({ text: bytes, isWhole: true, plan: null, timeZone });
-  const guessed = readingOf(detection);
-  const plan = { ...guessed.plan, ...options.plan };
-  const reading = options.plan
-    ? readingOf(detect({ text: bytes, isWhole: true, plan, timeZone }))
-    : guessed;
+  const settings = {
+    shape: 'stay' as const,
+    timeZone,
+    timeFormat: 'auto',
+    unknownAreas: 'add' as const,
+    mode: 'merge' as const,
+  };
+  const { columns } = options.plan ?? {};
+  const plan = columns ? { ...settings, columns, ...options.plan } : null;
+  const reading = readingOf(detect({ text: bytes, isWhole: true, plan, timeZone }));
   const { stayRow, areas } = stayRowOf(reading, {
     receivedAt: new Date(options.receivedAt ?? '2026-06-01T00:00:00Z'),
     knownAreas: new Map((options.knownAreas ?? []).map((folded, index) => [folded, index + 1])),

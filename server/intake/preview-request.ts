@@ -1,0 +1,98 @@
+import type { Request } from 'express';
+import { and, eq } from 'drizzle-orm';
+import type { StorageEngine } from 'multer';
+import type { UploadPreview } from '../../shared/contracts/uploads.ts';
+import type { Database } from '../db/client.ts';
+import { site } from '../db/schema/sites.ts';
+import { areaSpelling } from '../db/schema/zones.ts';
+import { withTenant } from '../db/tenant.ts';
+import { ApiError, invalidInput, notFound } from '../errors.ts';
+import { IntakeFailure } from './failure.ts';
+import { sampleBytes } from './limits.ts';
+import { readPlanPart } from './plan-part.ts';
+import { previewOf } from './preview.ts';
+import { runMulter } from './receive.ts';
+import type { SiteKey } from './site-uploads.ts';
+
+/** Of a whole file that is sent for a preview no more than this is taken. */
+const previewMb = 16;
+
+/**
+ * Shows what would be read of the file in a request, without keeping anything.
+ *
+ * @throws ApiError where the request, the plan or the file cannot be read
+ */
+export async function previewRequest(
+  request: Request,
+  db: Database,
+  siteKey: SiteKey,
+  receivedAt: Date,
+): Promise<UploadPreview> {
+  const head = new HeadStorage();
+  await runMulter(request, head, previewMb * 1_048_576, previewMb);
+  if (!head.isFilled) {
+    throw invalidInput('The request holds no file.', [
+      { field: 'file', message: 'Send the beginning of the export as a part named file.' },
+    ]);
+  }
+  const { plan: part } = request.body as { plan?: string };
+  const plan = await readPlanPart(db, siteKey, part);
+  const context = await readContext(db, siteKey);
+  try {
+    return previewOf({ bytes: head.bytes, plan, receivedAt, ...context });
+  } catch (error) {
+    if (error instanceof IntakeFailure) {
+      throw new ApiError('invalid-input', error.advice, {
+        errors: [{ field: 'file', message: error.advice }],
+      });
+    }
+    throw error;
+  }
+}
+
+/** Keeps the beginning of a file in memory and drops the rest. */
+class HeadStorage implements StorageEngine {
+  bytes: Buffer = Buffer.alloc(0);
+  isFilled = false;
+
+  _handleFile(
+    _request: Request,
+    file: Express.Multer.File,
+    done: (error?: unknown, info?: Partial<Express.Multer.File>) => void,
+  ): void {
+    const kept: Buffer[] = [];
+    let length = 0;
+    file.stream.on('data', (block: Buffer) => {
+      if (length < sampleBytes) length += kept.push(block) && block.length;
+    });
+    file.stream.on('error', done);
+    file.stream.on('end', () => {
+      this.bytes = Buffer.concat(kept).subarray(0, sampleBytes);
+      this.isFilled = true;
+      done(null, { size: length });
+    });
+  }
+
+  _removeFile(_request: Request, _file: unknown, done: (error: Error | null) => void): void {
+    done(null);
+  }
+}
+
+async function readContext(
+  db: Database,
+  { organisationId, siteId }: SiteKey,
+): Promise<{ timeZone: string; knownAreas: Map<string, number> }> {
+  return withTenant(db, organisationId, async (tx) => {
+    const [found] = await tx
+      .select({ timeZone: site.timeZone })
+      .from(site)
+      .where(and(eq(site.organisationId, organisationId), eq(site.id, siteId)));
+    if (!found) throw notFound('The site');
+    const spellings = await tx
+      .select({ folded: areaSpelling.folded, areaId: areaSpelling.areaId })
+      .from(areaSpelling)
+      .where(and(eq(areaSpelling.organisationId, organisationId), eq(areaSpelling.siteId, siteId)));
+    const knownAreas = new Map(spellings.map(({ folded, areaId }) => [folded, areaId]));
+    return { timeZone: found.timeZone, knownAreas };
+  });
+}
