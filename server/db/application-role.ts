@@ -1,5 +1,6 @@
 import { randomBytes } from 'node:crypto';
 import { sql } from 'drizzle-orm';
+import { Client } from 'pg';
 import type { Database } from './client.ts';
 import { readSecret } from './secrets.ts';
 
@@ -33,4 +34,29 @@ export async function applicationUrl(migrating: Database, migratingUrl: string):
   url.username = login;
   url.password = password;
   return url.href;
+}
+
+/**
+ * Refuses a role made by hand that row-level security would not bind.
+ *
+ * @throws Error with a sentence that says what is wrong with the role
+ */
+export async function checkApplicationUrl(url: string): Promise<void> {
+  const client = new Client({ connectionString: url });
+  await client.connect();
+  try {
+    const { rows } = await client.query<{ unbound: boolean; granted: boolean }>(
+      `select rolsuper or rolbypassrls as unbound, pg_has_role('weirmark_app', 'usage') as granted
+       from pg_roles where rolname = current_user`,
+    );
+    const [role] = rows;
+    if (role?.unbound)
+      throw new Error(
+        'The role in DATABASE_APP_URL is a superuser or bypasses row-level security. Give one that does neither.',
+      );
+    if (!role?.granted)
+      throw new Error('The role in DATABASE_APP_URL lacks its rights: grant it weirmark_app.');
+  } finally {
+    await client.end();
+  }
 }

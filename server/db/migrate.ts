@@ -6,7 +6,7 @@ import { migrate } from 'drizzle-orm/node-postgres/migrator';
 import { Client } from 'pg';
 import PgBoss from 'pg-boss';
 import { queues } from '../jobs/queues.ts';
-import { applicationUrl } from './application-role.ts';
+import { applicationUrl, checkApplicationUrl } from './application-role.ts';
 import type { Database } from './client.ts';
 
 const migrationsFolder = fileURLToPath(new URL('../../drizzle', import.meta.url));
@@ -19,10 +19,12 @@ const migrationLock = 7_261_905;
  * once; they take turns, and the later ones find nothing to do.
  *
  * @param migratingUrl address of the role that owns the schema
+ * @param givenApplicationUrl where the application's role was made by hand
  * @returns the address under which requests and jobs run
  */
 export async function migrateDatabase(
   migratingUrl: string,
+  givenApplicationUrl?: string,
 ): Promise<{ applicationUrl: string }> {
   const client = new Client({ connectionString: migratingUrl });
   await client.connect();
@@ -31,7 +33,10 @@ export async function migrateDatabase(
     await db.execute(sql`/* migration lock */ select pg_advisory_lock(${migrationLock})`);
     await migrate(db, { migrationsFolder: path.resolve(migrationsFolder) });
     await migrateQueue(db, migratingUrl);
-    return { applicationUrl: await applicationUrl(db, migratingUrl) };
+    if (givenApplicationUrl === undefined)
+      return { applicationUrl: await applicationUrl(db, migratingUrl) };
+    await checkApplicationUrl(givenApplicationUrl);
+    return { applicationUrl: givenApplicationUrl };
   } finally {
     await client.end();
   }

@@ -15,6 +15,8 @@ export interface ZoneSummary {
   /** Levels in the unit asked for. */
   inside: LevelFigures;
   inProcess: LevelFigures;
+  /** Number in process, in jobs: servers serve jobs. */
+  inProcessJobs: LevelFigures;
   edges: WindowEdges;
   inferredDepartures: number;
   littlesLaw: LittlesLaw;
@@ -40,6 +42,10 @@ export async function readZoneSummary(
     measures.inside === 'inside_jobs'
       ? inside
       : await readLevelOver(reader, zone.id, 'inside_jobs', period);
+  const inProcessJobs =
+    measures.inProcess === 'in_process_jobs'
+      ? inProcess
+      : await readLevelOver(reader, zone.id, 'in_process_jobs', period);
   const edges = await readWindowEdges(reader, zone.id, period);
   const { flow, approximate } = await readFlow(reader, zone, period, edges.departures);
   return {
@@ -49,6 +55,7 @@ export async function readZoneSummary(
         : stepFigures(zone, seconds, inside, inProcess, flow),
     inside,
     inProcess,
+    inProcessJobs,
     edges,
     inferredDepartures: flow.inferred,
     littlesLaw: littlesLaw({

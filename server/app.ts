@@ -1,0 +1,77 @@
+import { readFileSync } from 'node:fs';
+import express, { type Express } from 'express';
+import { pinoHttp } from 'pino-http';
+import type { Dependencies } from './dependencies.ts';
+import { createApi } from './http/api.ts';
+import { answerErrors, unknownCall } from './http/middleware/errors.ts';
+import { requestId, requestIdOf } from './http/middleware/request-id.ts';
+import { securityHeaders } from './http/middleware/security-headers.ts';
+import { registerAccessKeys } from './http/routes/access-keys.ts';
+import { registerAuth } from './http/routes/auth.ts';
+import { registerFigures } from './http/routes/figures.ts';
+import { registerJobs } from './http/routes/jobs.ts';
+import { registerServer } from './http/routes/server.ts';
+import { registerSites } from './http/routes/sites.ts';
+import { registerUploads } from './http/routes/uploads.ts';
+import { registerZones } from './http/routes/zones.ts';
+
+/** Largest JSON body; files come as multipart. */
+const bodyLimit = '1mb';
+
+/**
+ * The application without a listening socket, so that tests can drive it.
+ *
+ * @param client adds what serves the client after the API; left out where only the API is wanted
+ */
+export function buildApp(deps: Dependencies, client?: (app: Express) => void): Express {
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('trust proxy', deps.env.WEIRMARK_TRUST_PROXY);
+  app.use(requestId);
+  app.use(
+    pinoHttp({
+      logger: deps.log,
+      genReqId: (_req, res) => requestIdOf(res as express.Response),
+      autoLogging: { ignore: (req) => !req.url?.startsWith('/api/') },
+      customLogLevel: (_req, res, error) =>
+        error !== undefined || res.statusCode >= 500 ? 'error' : 'debug',
+    }),
+  );
+  app.use(securityHeaders(deps.env.WEIRMARK_DEV));
+  app.use('/api', (_req, res, next) => {
+    res.setHeader('Cache-Control', 'no-store');
+    next();
+  });
+  app.use(express.json({ limit: bodyLimit }));
+  const router = express.Router();
+  const api = createApi(router, deps);
+  registerServer(api);
+  registerAuth(api);
+  registerSites(api);
+  registerUploads(api);
+  registerZones(api);
+  registerFigures(api);
+  registerJobs(api);
+  registerAccessKeys(api);
+  app.use(router);
+  app.use('/api', unknownCall);
+  client?.(app);
+  app.use(answerErrors(deps.log));
+  return app;
+}
+
+/** Serves the built client: hashed assets for good, every other address its one page. */
+export function serveClient(folder: string): (app: Express) => void {
+  return (app) => {
+    const page = readFileSync(`${folder}/index.html`, 'utf8');
+    app.use(
+      '/assets',
+      express.static(`${folder}/assets`, { immutable: true, maxAge: '1y', fallthrough: false }),
+    );
+    app.use(express.static(folder, { index: false, maxAge: 0 }));
+    app.get('/{*path}', (_req, res) => {
+      res.setHeader('Cache-Control', 'no-cache');
+      res.type('html').send(page);
+    });
+  };
+}

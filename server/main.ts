@@ -1,0 +1,154 @@
+import { once } from 'node:events';
+import { createServer, type Server } from 'node:http';
+import type { AddressInfo } from 'node:net';
+import { fileURLToPath } from 'node:url';
+import { buildApp, serveClient } from './app.ts';
+import { createFirstAdminGate } from './auth/first-admin.ts';
+import { createSignInThrottle } from './auth/throttle.ts';
+import { systemClock } from './clock.ts';
+import { connect } from './db/client.ts';
+import { startEmbedded } from './db/embedded.ts';
+import { migrateDatabase } from './db/migrate.ts';
+import { readSecret } from './db/secrets.ts';
+import { loadDemo } from './demo/load-demo.ts';
+import { readEnv, type Env } from './env.ts';
+import { discardUnfinishedReceipts } from './intake/discard-receipts.ts';
+import { startWorker } from './jobs/queue.ts';
+import { createLog, type Logger } from './log.ts';
+import { developmentClient } from './development-client.ts';
+
+const clientFolder = fileURLToPath(new URL('../dist', import.meta.url));
+const say = (line: string) => process.stdout.write(`${line}\n`);
+
+/** What has been started, to be stopped in the opposite order. */
+type Stop = () => Promise<void>;
+
+async function main(): Promise<void> {
+  const env = readEnv(process.env);
+  const log = createLog(env.LOG_LEVEL);
+  const stops: Stop[] = [];
+  const stopAll = async () => {
+    for (const stop of stops.splice(0).reverse())
+      await stop().catch((error: unknown) => {
+        log.error({ err: error }, 'while stopping');
+      });
+  };
+  stopOnSignals(stopAll);
+  try {
+    await start(env, log, stops);
+  } catch (error) {
+    await stopAll();
+    throw error;
+  }
+}
+
+async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
+  const migratingUrl = env.DATABASE_URL ?? (await localDatabase(env, stops));
+  const migrated = await migrateDatabase(migratingUrl, env.DATABASE_APP_URL);
+  const onIdleError = (error: Error) => {
+    log.warn({ err: error }, 'a database connection was lost');
+  };
+  const migrating = connect(migratingUrl, { max: 1, onIdleError });
+  const db = connect(migrated.applicationUrl, { max: 12, onIdleError });
+  stops.push(async () => {
+    await Promise.all([migrating.$client.end(), db.$client.end()]);
+  });
+  const secret = await readSecret(migrating, 'session-key', randomKey);
+  if (env.WEIRMARK_DEMO) await loadDemo(db, systemClock);
+  const { gate, token } = await createFirstAdminGate(migrating, db);
+  await discardUnfinishedReceipts(db, new Date(Date.now() - unfinishedAfterMs));
+  const worker = await startWorker(
+    migrated.applicationUrl,
+    { db, clock: systemClock, log },
+    log,
+  );
+  stops.push(() => worker.stop());
+  const client = env.WEIRMARK_DEV ? await developmentClient(stops) : serveClient(clientFolder);
+  const app = buildApp(
+    {
+      db,
+      clock: systemClock,
+      log,
+      env,
+      sessionKey: Buffer.from(secret, 'base64url'),
+      throttle: createSignInThrottle(db),
+      queue: worker,
+      firstAdmin: gate,
+      checkAnswers: false,
+    },
+    client,
+  );
+  const server = createServer(app);
+  stops.push(() => close(server));
+  const origin = await listen(server, env);
+  await answersHealth(origin);
+  if (await gate.isOpen()) say(`Make the first admin at ${origin}/first-admin?token=${token}`);
+  say(`Weirmark is ready at ${origin}`);
+}
+
+/** A file still arriving after so long was broken off with the server that took it. */
+const unfinishedAfterMs = 6 * 3_600_000;
+
+const randomKey = () => Buffer.from(crypto.getRandomValues(new Uint8Array(32))).toString('base64url');
+
+async function localDatabase(env: Env, stops: Stop[]): Promise<string> {
+  const local = await startEmbedded({
+    ...(env.WEIRMARK_DATA_DIR === undefined ? {} : { dataDir: env.WEIRMARK_DATA_DIR }),
+    kind: env.WEIRMARK_DEV ? 'dev' : 'start',
+    say,
+  });
+  if (local.owned) stops.push(() => local.stop());
+  return local.migratingUrl;
+}
+
+async function listen(server: Server, env: Env): Promise<string> {
+  server.listen(env.PORT, env.HOST);
+  try {
+    await once(server, 'listening');
+  } catch (error) {
+    if (error instanceof Error && 'code' in error && error.code === 'EADDRINUSE')
+      throw new Error(
+        `Port ${env.PORT} on ${env.HOST} is taken, perhaps by Weirmark itself. Stop what uses it, or set PORT.`,
+        { cause: error },
+      );
+    throw error;
+  }
+  const { port } = server.address() as AddressInfo;
+  const host = env.HOST.includes(':') ? `[${env.HOST}]` : env.HOST;
+  return `http://${host}:${port}`;
+}
+
+/** Ready means that it truly answers. */
+async function answersHealth(origin: string): Promise<void> {
+  const url = new URL('/api/health', origin);
+  if (url.hostname === '0.0.0.0') url.hostname = '127.0.0.1';
+  const answer = await fetch(url);
+  if (!answer.ok) throw new Error(`The server does not answer: status ${answer.status}.`);
+}
+
+async function close(server: Server): Promise<void> {
+  const closed = new Promise<void>((resolve) => server.close(() => resolve()));
+  server.closeIdleConnections();
+  // Whoever holds a connection open does not hold up the stop.
+  const force = setTimeout(() => {
+    server.closeAllConnections();
+  }, 5000);
+  await closed;
+  clearTimeout(force);
+}
+
+function stopOnSignals(stopAll: Stop): void {
+  let stopping = false;
+  const stop = () => {
+    if (stopping) process.exit(1);
+    stopping = true;
+    void stopAll().then(() => process.exit(0));
+  };
+  process.on('SIGINT', stop);
+  process.on('SIGTERM', stop);
+}
+
+main().catch((error: unknown) => {
+  process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+  process.exit(1);
+});
