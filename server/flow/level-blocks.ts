@@ -20,6 +20,17 @@ export interface LevelTrack {
   blocks: LevelBlock[];
 }
 
+/** The levels of zones just before a moment that begins a local hour, by `trackKey`. */
+export async function readLevelsBefore(
+  reader: SiteReader,
+  zoneIds: readonly number[],
+  measures: readonly Measure[],
+  hour: number,
+): Promise<Map<string, number>> {
+  const tracks = await readLevelBlocks(reader, zoneIds, measures, { from: hour, to: hour });
+  return new Map([...tracks].map(([key, track]) => [key, track.level]));
+}
+
 const numeric = z.coerce.number();
 const blockRow = z.object({
   zone_id: z.number(),
@@ -61,7 +72,7 @@ export async function readLevelBlocks(
     with asked as (
       select zone_id, measure
       from unnest(${sql.param([...zoneIds])}::integer[]) as zone_id
-      cross join unnest(${sql.param([...measures])}::level_measure[]) as measure
+      cross join unnest(${sql.param([...new Set(measures)])}::level_measure[]) as measure
     )
     select
       zone_id, measure, 'level' as grain,

@@ -1,6 +1,6 @@
 import { hourEnd, hourStart, hourStretches } from '../../shared/local-time.ts';
 import { levelSteps, type LevelFigures } from '../methods/level-steps.ts';
-import { readLevelBlocks, trackKey, type Measure } from './level-blocks.ts';
+import { readLevelBlocks, readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
 import { readLevelChanges } from './level-changes.ts';
 import type { Period, SiteReader } from './zone-reader.ts';
 
@@ -60,8 +60,8 @@ async function readBase(
   measure: Measure,
   hour: number,
 ): Promise<number> {
-  const tracks = await readLevelBlocks(reader, [zoneId], [measure], { from: hour, to: hour });
-  return tracks.get(trackKey(zoneId, measure))?.level ?? 0;
+  const levels = await readLevelsBefore(reader, [zoneId], [measure], hour);
+  return levels.get(trackKey(zoneId, measure)) ?? 0;
 }
 
 async function readWhole(reader: SiteReader, zoneId: number, measure: Measure, period: Period) {

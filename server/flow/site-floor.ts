@@ -3,7 +3,7 @@ import { stepBorders } from '../../shared/local-time.ts';
 import { levelSteps, type LevelFigures } from '../methods/level-steps.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { noFlowTimes, readFlowTimes } from './flow-times.ts';
-import { readLevelBlocks, trackKey, type Measure } from './level-blocks.ts';
+import { readLevelBlocks, readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
 import { readOldestInside } from './oldest-inside.ts';
 import { measuresOf, stepFigures, unknownFigures } from './step-figures.ts';
 import type { FigureZone, Period, SiteReader } from './zone-reader.ts';
@@ -16,6 +16,8 @@ export interface FloorZone {
   figures: Figures;
   inside: LevelFigures;
   inProcess: LevelFigures;
+  /** Level just before the period's end, read apart from what came and left in it. */
+  wipEnd: number;
   oldestInsideSeconds: number | null;
   partial: boolean;
 }
@@ -34,7 +36,9 @@ export async function readSiteFloor(
   const period = { from: hours[0] ?? asked.from, to: hours.at(-1) ?? asked.to };
   const borders = [period.from, period.to];
   const zoneIds = zones.map((zone) => zone.id);
-  const tracks = await readLevelBlocks(reader, zoneIds, measuresFor(zones, unit), period);
+  const wanted = measuresFor(zones, unit);
+  const tracks = await readLevelBlocks(reader, zoneIds, wanted, period);
+  const ends = await readLevelsBefore(reader, zoneIds, wanted, period.to);
   const over = (zoneId: number, measure: Measure) => {
     const track = tracks.get(trackKey(zoneId, measure));
     const [figures] = levelSteps(borders, track?.level ?? 0, track?.blocks ?? []);
@@ -59,6 +63,7 @@ export async function readSiteFloor(
           : stepFigures(zone, seconds, inside, inProcess, flowTimes),
       inside,
       inProcess,
+      wipEnd: ends.get(trackKey(zone.id, measures.inside)) ?? 0,
       oldestInsideSeconds: oldest.get(zone.id) ?? null,
       partial: zone.dataUntil === null || period.to > zone.dataUntil,
     };

@@ -12,6 +12,7 @@ const edgesRow = z.object({
   before_sum: numeric,
   still_inside_sum: numeric,
   still_inside: numeric,
+  units_still_inside: numeric,
   age_sum: numeric,
   oldest: z.coerce.number().nullable(),
 });
@@ -27,6 +28,8 @@ export interface WindowEdges {
   /** Σ (e − max(a, s)) over stays entered before e and not left before e. */
   stillInsideSum: number;
   stillInside: number;
+  /** Units of these; a job without a quantity is one. */
+  unitsStillInside: number;
   /** Σ and greatest (e − a) over the same. */
   ageSum: number;
   oldest: number | null;
@@ -43,12 +46,12 @@ export async function readWindowEdges(
   const { rows } = await tx.execute(sql`/* window edges */
     with met as (
       select
-        entered, left_at,
+        entered, left_at, quantity,
         left_at is null or left_at >= ${to} as still_inside,
         coalesce(left_at >= ${from} and left_at < ${to}, false) as departs
       from (${lengthReaches}) as length_reach
       cross join lateral (
-        select entered, left_at from zone_stay
+        select entered, left_at, quantity from zone_stay
         where organisation_id = ${organisationId} and site_id = ${siteId} and zone_id = ${zoneId}
           and length_class = class
           and entered < ${to} and entered >= ${from} - reach
@@ -67,6 +70,7 @@ export async function readWindowEdges(
         sum(extract(epoch from ${to} - greatest(entered, ${from}))) filter (where still_inside), 0
       ) as still_inside_sum,
       count(*) filter (where still_inside) as still_inside,
+      coalesce(sum(coalesce(quantity, 1)) filter (where still_inside), 0) as units_still_inside,
       coalesce(sum(extract(epoch from ${to} - entered)) filter (where still_inside), 0) as age_sum,
       max(extract(epoch from ${to} - entered)) filter (where still_inside) as oldest
     from met`);
@@ -78,6 +82,7 @@ export async function readWindowEdges(
     beforeSum: row.before_sum,
     stillInsideSum: row.still_inside_sum,
     stillInside: row.still_inside,
+    unitsStillInside: row.units_still_inside,
     ageSum: row.age_sum,
     oldest: row.oldest,
   };

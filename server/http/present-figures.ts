@@ -9,7 +9,7 @@ import type { LevelFigures } from '../methods/level-steps.ts';
 const iso = (at: number) => new Date(at).toISOString();
 const isoOrNull = (date: Date | null) => date?.toISOString() ?? null;
 
-/** Both sides are counted apart: the levels' end against their start and what came and left. */
+/** Two sides, counted apart: who is inside at the end, against who was at the start, came and left. */
 function books(inside: LevelFigures, wipEnd: number) {
   const { levelStart: wipStart, ups: arrivals, downs: departures } = inside;
   const gap = wipStart + arrivals - departures - wipEnd;
@@ -44,7 +44,10 @@ export function presentSummary(
       serverSeconds === null || serverSeconds === 0 || !zone.hasStarts
         ? null
         : inProcessJobs.integral / serverSeconds,
-    books: books(inside, inside.levelEnd),
+    books: books(
+      inside,
+      asked.unit === 'units' && zone.hasQuantities ? edges.unitsStillInside : edges.stillInside,
+    ),
     partial: summary.partial,
     approximate: summary.approximate,
     warmingUp: warmingUp(zone, period),
@@ -63,7 +66,7 @@ export function presentFloorRow(zone: Zone, period: Period, row: FloorZone): Flo
     wipEnd: known ? row.inside.levelEnd : null,
     inProcessEnd: known && row.zone.hasStarts ? row.inProcess.levelEnd : null,
     oldestInsideSeconds: row.oldestInsideSeconds,
-    books: books(row.inside, row.inside.levelEnd),
+    books: books(row.inside, row.wipEnd),
     partial: row.partial,
     warmingUp: warmingUp(row.zone, period),
   };
