@@ -32,8 +32,9 @@ const markup = /^\s*(?:<\?xml|<!doctype|<html|<log[\s>])/i;
  */
 export function foreignKind(head: Buffer): string | null {
   const found = beginnings.find(({ bytes, at = 0 }) => startsWith(head, bytes, at));
-  // Letters alone could begin a header: a file of such a kind also holds control bytes early on.
-  if (found && (!found.bytes.every(isPrintable) || hasControlBytes(head))) return found.kind;
+  // A few letters could begin a header: a file of such a kind also holds control bytes early on.
+  const isShortWord = found && found.bytes.length < 6 && found.bytes.every(isPrintable);
+  if (found && (!isShortWord || hasControlBytes(head))) return found.kind;
   if (markup.test(head.toString('latin1', 0, 200))) return 'an XML or HTML document';
   return null;
 }
