@@ -28,13 +28,32 @@ export interface WrittenArea {
 /** Spellings that are remembered byte by byte; there are hardly ever more, and more are read again. */
 const spellingsKept = 10_000;
 
+/** A spelling as its bytes, so that no text has to be made of a cell that was seen before. */
+interface KnownSpelling {
+  bytes: Buffer;
+  written: WrittenArea;
+}
+
+/** FNV-1a, 32 bits (Fowler, Noll & Vo). Spellings of one hash take turns; what is found is compared. */
+function hashOf(bytes: Buffer, start: number, end: number): number {
+  let hash = 0x811c9dc5;
+  for (let at = start; at < end; at++) hash = Math.imul(hash ^ (bytes[at] as number), 0x01000193);
+  return hash;
+}
+
+function isSame(kept: Buffer, bytes: Buffer, start: number, end: number): boolean {
+  if (kept.length !== end - start) return false;
+  for (let i = 0; i < kept.length; i++) if (kept[i] !== bytes[start + i]) return false;
+  return true;
+}
+
 /** The areas that a file names, by any of their spellings. */
 export class AreaRegister {
   /** The areas of accepted rows, by their number. */
   readonly accepted: NamedArea[] = [];
   readonly #known: ReadonlyMap<string, number>;
   readonly #byFolded = new Map<string, NamedArea>();
-  readonly #byBytes = new Map<string, WrittenArea>();
+  readonly #byHash = new Map<number, KnownSpelling>();
 
   /** @param known the site's areas by folded spelling */
   constructor(known: ReadonlyMap<string, number>) {
@@ -48,16 +67,17 @@ export class AreaRegister {
    * @param untrimmedStart where the cell begins with its blanks, for telling spellings apart
    */
   find(cell: Cell, untrimmedStart: number, untrimmedEnd: number): WrittenArea | null {
-    const key = cell.bytes.toString('latin1', untrimmedStart, untrimmedEnd);
-    const kept = this.#byBytes.get(key);
-    if (kept) return kept;
+    const hash = hashOf(cell.bytes, untrimmedStart, untrimmedEnd);
+    const kept = this.#byHash.get(hash);
+    if (kept && isSame(kept.bytes, cell.bytes, untrimmedStart, untrimmedEnd)) return kept.written;
     const name = cell.text();
     if (name === null) return null;
     const isPadded = untrimmedStart !== cell.start || untrimmedEnd !== cell.end;
     const area = this.#findFolded(name);
     const written = { area, isFolded: isPadded || name !== area.name };
-    if (this.#byBytes.size >= spellingsKept) this.#byBytes.clear();
-    this.#byBytes.set(key, written);
+    const bytes = Buffer.from(cell.bytes.subarray(untrimmedStart, untrimmedEnd));
+    if (this.#byHash.size >= spellingsKept) this.#byHash.clear();
+    this.#byHash.set(hash, { bytes, written });
     return written;
   }
 
@@ -84,7 +104,7 @@ export class AreaRegister {
     for (const [folded, area] of this.#byFolded) {
       if (area.number < 0) this.#byFolded.delete(folded);
     }
-    this.#byBytes.clear();
+    this.#byHash.clear();
   }
 
   /**
