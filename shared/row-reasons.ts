@@ -21,7 +21,8 @@ export const refusalReasons = {
   'cell-too-long': 'A cell is longer than can be kept.',
   'unknown-area': 'The area is not known, and the column plan says to refuse unknown areas.',
   'unreadable-time': 'A time cannot be read.',
-  'contradicts-date-order': 'A date cannot be read in the order of day and month that the file uses.',
+  'contradicts-date-order':
+    'A date cannot be read in the order of day and month that the file uses.',
   'no-time': 'The row holds none of arrival, start and finish.',
   'time-before-1950': 'A time lies before 1950.',
   'time-after-receipt': 'A time lies more than a day after the file was received.',

@@ -17,14 +17,14 @@ import {
 } from '../../server/intake/site-uploads.ts';
 import { presentUpload } from '../../server/intake/present-upload.ts';
 import { storeOriginal } from '../../server/intake/store-original.ts';
-import { makeSite, type TestSite } from '../support/intake-site.ts';
+import { makeIntakeSite, type IntakeSite } from '../support/intake-site.ts';
 
-let site: TestSite;
+let site: IntakeSite;
 let client: PoolClient;
 const receivedAt = new Date('2026-06-01T00:00:00Z');
 
 beforeAll(async () => {
-  site = await makeSite('Europe/Dublin');
+  site = await makeIntakeSite('Europe/Dublin');
   client = await site.db.$client.connect();
 });
 

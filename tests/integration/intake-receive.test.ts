@@ -8,7 +8,7 @@ import { discardUnfinishedReceipts } from '../../server/intake/discard-receipts.
 import { readOriginal } from '../../server/intake/original.ts';
 import { receiveUpload } from '../../server/intake/receive-upload.ts';
 import { withTenant } from '../../server/db/tenant.ts';
-import { makeSite, type TestSite } from '../support/intake-site.ts';
+import { makeIntakeSite, type IntakeSite } from '../support/intake-site.ts';
 
 const plan = {
   shape: 'stay',
@@ -17,12 +17,12 @@ const plan = {
 };
 const csv = 'job,area,start\nJ1,Bench,2026-01-05\n';
 
-let site: TestSite;
+let site: IntakeSite;
 let server: Server;
 let address: string;
 
 beforeAll(async () => {
-  site = await makeSite();
+  site = await makeIntakeSite();
   const app = express();
   app.post('/', async (req: Request, res: Response) => {
     const id = await receiveUpload(req, site.key, {

@@ -1,26 +1,21 @@
 import { sql } from 'drizzle-orm';
 import { connect, type Database } from '../../server/db/client.ts';
-import { migrateDatabase } from '../../server/db/migrate.ts';
 import { withTenant } from '../../server/db/tenant.ts';
+import { cloneDatabase } from './database.ts';
 
-/** An empty site in a database of its own. */
-export interface TestSite {
+/** An empty site in a database of its own, for what lies below the API. */
+export interface IntakeSite {
   db: Database;
   key: { organisationId: number; siteId: number };
   accessKeyId: number;
   close(): Promise<void>;
 }
 
-export async function makeSite(timeZone = 'UTC'): Promise<TestSite> {
-  const base = process.env.INTAKE_TEST_URL ?? '';
-  const name = `t_${Date.now()}_${Math.floor(Math.random() * 1e6)}`;
-  const admin = connect(`${base}/postgres`);
-  await admin.$client.query(`create database ${name}`);
-  const { applicationUrl } = await migrateDatabase(`${base}/${name}`);
-  const owner = connect(`${base}/${name}`);
-  const db = connect(applicationUrl);
+export async function makeIntakeSite(timeZone = 'UTC'): Promise<IntakeSite> {
+  const database = await cloneDatabase();
+  const db = connect(database.applicationUrl);
   const key = await insertSite(db, timeZone);
-  const { rows } = await db.execute(sql`/* key */
+  const { rows } = await db.execute(sql`/* access key */
     insert into access_key (organisation_id, site_id, name, key_hash, created_at)
     values (${key.organisationId}, ${key.siteId}, 'nightly', 'x', now()) returning id`);
   return {
@@ -29,14 +24,15 @@ export async function makeSite(timeZone = 'UTC'): Promise<TestSite> {
     accessKeyId: Number(rows[0]?.id),
     async close() {
       await db.$client.end();
-      await owner.$client.end();
-      await admin.$client.query(`drop database ${name} with (force)`);
-      await admin.$client.end();
+      await database.drop();
     },
   };
 }
 
-async function insertSite(db: Database, timeZone: string) {
+async function insertSite(
+  db: Database,
+  timeZone: string,
+): Promise<{ organisationId: number; siteId: number }> {
   const made = await db.execute(sql`/* organisation */
     insert into organisation (name, created_at) values ('Test', now()) returning id`);
   const organisationId = Number(made.rows[0]?.id);
