@@ -1,0 +1,40 @@
+import { existsSync, mkdirSync, writeFileSync } from 'node:fs';
+import { run } from './run.mjs';
+import { say, SetupError } from './say.mjs';
+
+/** Debian's package makes a cluster of its own on the usual port; ours is made by us. */
+function keepClusterUnmade(asRoot) {
+  const folder = '/etc/postgresql-common/createcluster.d';
+  const file = `${folder}/no-main.conf`;
+  if (existsSync(file)) return;
+  if (asRoot) {
+    mkdirSync(folder, { recursive: true });
+    writeFileSync(file, 'create_main_cluster = false\n');
+    return;
+  }
+  run('sudo', ['-n', 'mkdir', '-p', folder]);
+  run('sudo', ['-n', 'sh', '-c', `echo "create_main_cluster = false" > ${file}`]);
+}
+
+/** Installs packages of Debian, as root or through sudo without a password. @throws SetupError */
+export function installDebianPackages(packages, purpose) {
+  const names = packages.join(' ');
+  const byHand = `Install it by hand: apt-get install ${names}`;
+  if (!existsSync('/usr/bin/apt-get'))
+    throw new SetupError(`${purpose} is missing, and this is not Debian. Install ${names} by hand.`);
+  const asRoot = process.getuid?.() === 0;
+  if (!asRoot && !run('sudo', ['-n', 'true']).ok)
+    throw new SetupError(`${purpose} is missing, and only root may install it. ${byHand}`);
+  say(`Installing ${purpose} (${names}) …`);
+  if (packages.includes('postgresql')) keepClusterUnmade(asRoot);
+  const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive' };
+  const aptGet = (...args) =>
+    asRoot
+      ? run('apt-get', args, { env })
+      : run('sudo', ['-n', 'env', 'DEBIAN_FRONTEND=noninteractive', 'apt-get', ...args]);
+  const updated = aptGet('update');
+  const installed = aptGet('install', '-y', '--no-install-recommends', ...packages);
+  if (installed.ok) return;
+  const why = (updated.ok ? installed : updated).output.trim().split('\n').slice(-3).join(' ');
+  throw new SetupError(`${purpose} could not be installed: ${why} ${byHand}`);
+}

@@ -1,0 +1,2 @@
+export function findPostgresBinaries(): string | null;
+export function ensurePostgres(): void;
