@@ -32,7 +32,13 @@ export async function receiveParts(
   receipt: Omit<Receipt, 'fileName'>,
   limitMb: number,
 ): Promise<ReceivedParts> {
-  await runMulter(request, new ChunkStorage(db, receipt), limitMb * 1_048_576, limitMb);
+  const storage = new ChunkStorage(db, receipt);
+  try {
+    await runMulter(request, storage, limitMb * 1_048_576, limitMb);
+  } catch (error) {
+    await storage.discard();
+    throw error;
+  }
   const file = request.file as (Express.Multer.File & { stored: StoredOriginal }) | undefined;
   if (!file) {
     throw new ApiError('invalid-input', 'The request holds no file.', {
@@ -84,10 +90,17 @@ export async function runMulter(
 class ChunkStorage implements StorageEngine {
   readonly #db: Database;
   readonly #receipt: Omit<Receipt, 'fileName'>;
+  #storing: Promise<StoredOriginal | null> = Promise.resolve(null);
 
   constructor(db: Database, receipt: Omit<Receipt, 'fileName'>) {
     this.#db = db;
     this.#receipt = receipt;
+  }
+
+  /** Removes what was stored, also where multer answers a fault before it is. */
+  async discard(): Promise<void> {
+    const stored = await this.#storing;
+    if (stored) await discardReceipt(this.#db, { ...this.#receipt, uploadId: stored.uploadId });
   }
 
   _handleFile(
@@ -98,7 +111,9 @@ class ChunkStorage implements StorageEngine {
     // Beyond the limit the parser only drops what comes; there is no point in waiting for its end.
     file.stream.once('limit', () => file.stream.destroy(new MulterError('LIMIT_FILE_SIZE')));
     const receipt = { ...this.#receipt, fileName: cleanFileName(file.originalname) };
-    storeOriginal(this.#db, receipt, file.stream).then(
+    const storing = storeOriginal(this.#db, receipt, file.stream);
+    this.#storing = storing.catch(() => null);
+    storing.then(
       (stored) => {
         done(null, { stored, size: stored.byteSize } as Partial<Express.Multer.File>);
       },

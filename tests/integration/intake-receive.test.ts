@@ -211,6 +211,21 @@ describe('nothing is kept, and a sentence says why,', () => {
   });
 });
 
+test('a plan may be the id of a saved one of the site', async () => {
+  const { rows } = await withTenant(site.db, site.key.organisationId, (tx) =>
+    tx.execute(sql`/* saved plan */
+      insert into column_plan (organisation_id, site_id, name, header_fingerprint, plan, saved_at)
+      values (${site.key.organisationId}, ${site.key.siteId}, 'weekly', 'x', ${JSON.stringify(plan)}, now())
+      returning id`),
+  );
+  const saved = String(rows[0]?.id);
+  expect(await send([file(), { name: 'plan', value: saved }])).toMatchObject({ status: 202 });
+  const given = await withTenant(site.db, site.key.organisationId, (tx) =>
+    tx.execute(sql`/* plan given */ select plan_given from upload`),
+  );
+  expect(given.rows[0]).toMatchObject({ plan_given: plan });
+});
+
 test('files whose server ended while they arrived are discarded, others are not', async () => {
   await send([file()]);
   await withTenant(site.db, site.key.organisationId, (tx) =>
