@@ -77,13 +77,11 @@ export async function runMulter(
     fieldNameSize: 100,
   };
   const middleware = multer({ storage, limits, defParamCharset: 'utf8' }).single('file');
-  await new Promise<void>((resolve, reject) => {
-    // Multer answers by a callback of its own; the response is not its affair.
-    void middleware(request, request.res as never, (error: unknown) => {
-      if (error === undefined || error === null) resolve();
-      else reject(asRefusal(error, limitMb));
-    });
+  // Multer answers by a callback of its own; the response is not its affair.
+  const error = await new Promise<unknown>((resolve) => {
+    void middleware(request, request.res as never, resolve);
   });
+  if (error !== undefined && error !== null) throw asRefusal(error, limitMb);
 }
 
 /** Multer's storage of one request: the file goes to the database in chunks. */
@@ -161,7 +159,7 @@ const limitSentences: Partial<Record<MulterError['code'], string>> = {
   LIMIT_FIELD_VALUE: 'The column plan is longer than 64 KiB.',
 };
 
-function asRefusal(error: unknown, limitMb: number): unknown {
+function asRefusal(error: unknown, limitMb: number): Error {
   if (error instanceof MulterError) {
     if (error.code === 'LIMIT_FILE_SIZE') {
       const sentence = `The file is larger than ${limitMb} MiB, the most that this server takes.`;
@@ -174,7 +172,9 @@ function asRefusal(error: unknown, limitMb: number): unknown {
     const sentence = 'The transfer broke off or is no proper form. Nothing of it was kept.';
     return new ApiError('invalid-input', sentence);
   }
-  return error;
+  return error instanceof Error
+    ? error
+    : new Error('The request could not be read.', { cause: error });
 }
 
 /** What the form parser and a lost connection say; they carry no codes. */

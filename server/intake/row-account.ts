@@ -60,11 +60,11 @@ export class RowTally {
   }
 
   #warnings(): Record<string, number> {
-    const counts: Partial<Record<WarningReason, number>> = {};
+    const counts: Record<string, number> = {};
     this.#warned.forEach((rows, bits) => {
       for (const code of warningsOf(bits)) counts[code] = (counts[code] ?? 0) + rows;
     });
-    return counts as Record<string, number>;
+    return counts;
   }
 }
 

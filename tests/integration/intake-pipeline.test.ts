@@ -320,7 +320,7 @@ describe('what is answered of an upload', () => {
     );
     let text = '';
     for await (const part of refusedCsv(site.db, key)) text += part;
-    const rows = parse(text, { record_delimiter: '\r\n' }) as string[][];
+    const rows: string[][] = parse(text, { record_delimiter: '\r\n' });
     expect(rows).toHaveLength(4501);
     expect(rows[0]).toEqual(['line', 'reason', 'detail', 'row']);
     expect(rows.at(-1)).toEqual(['4500', 'missing-job', 'No job.', `'${raw}`]);

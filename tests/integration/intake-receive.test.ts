@@ -33,7 +33,8 @@ beforeAll(async () => {
     });
     res.status(202).json({ id });
   });
-  app.use((error: unknown, _req: Request, res: Response, _next: NextFunction) => {
+  app.use((error: unknown, _req: Request, res: Response, next: NextFunction) => {
+    if (res.headersSent) next(error);
     const known = error instanceof ApiError ? error : null;
     res.status(known?.status ?? 500).json({ detail: known?.message, errors: known?.more.errors });
   });

@@ -67,13 +67,13 @@ describe('rows of delimited text', () => {
               index === rows.length - 1 && !hasLastEnd ? cells.join(by) : cells.join(by) + end,
             )
             .join('');
-          const expected = parse(text, {
+          const expected: string[][] = parse(text, {
             delimiter: by,
             record_delimiter: ['\r\n', '\n'],
             relax_column_count: true,
             relax_quotes: true,
             trim: true,
-          }) as string[][];
+          });
           const seen = scan(text, by, blockSizes);
           const trimmed = (each: string[][]): string[][] =>
             each.map((cells) => cells.map((one) => one.trim()));

@@ -199,7 +199,7 @@ describe('a row is accepted', () => {
       '2025-10-26T01:30',
       'second behind an ambiguous start',
     ],
-  ])('started %s, finished %s: the %s', (started, finished, expected, _) => {
+  ])('started %s, finished %s: %s, the %s', (started, finished, expected) => {
     const read = readRow(`J1,Bench,,${started},${finished},1,,`, {
       plan: { timeZone: 'Europe/Dublin' },
     });
