@@ -1,5 +1,5 @@
 import type { Request, RequestHandler, Response, Router } from 'express';
-import { z } from 'zod';
+import type { z } from 'zod';
 import type { Contract } from '../../shared/contracts/contract.ts';
 import type { Actor } from '../auth/actor.ts';
 import type { Dependencies } from '../dependencies.ts';
@@ -29,7 +29,7 @@ export type Handler<C extends Contract> = (
 /** Registers calls of the API on a router: validate, authenticate, authorise, do, answer. */
 export interface Api {
   deps: Dependencies;
-  route<C extends Contract>(contract: C, handler: Handler<C>): void;
+  route: <C extends Contract>(contract: C, handler: Handler<C>) => void;
 }
 
 export function createApi(router: Router, deps: Dependencies): Api {

@@ -1,5 +1,5 @@
 import { createDocument, type ZodOpenApiPathsObject } from 'zod-openapi';
-import { z } from 'zod';
+import type { z } from 'zod';
 import { contracts } from '../../shared/contracts/all.ts';
 import type { Contract } from '../../shared/contracts/contract.ts';
 import { errorKinds, problemSchema } from '../../shared/errors.ts';

@@ -43,9 +43,9 @@ export async function makeSite(
     async upload(content, plan, fileName = 'export.csv') {
       const sent = agent.post(`${path}/uploads`).attach('file', Buffer.from(content), fileName);
       if (plan) void sent.field('plan', JSON.stringify(plan));
-      const { body } = await sent.expect(202);
+      const accepted = (await sent.expect(202)).body as { id: number };
       await test.settled();
-      return get(`/uploads/${(body as { id: number }).id}`);
+      return get(`/uploads/${accepted.id}`);
     },
     async withdraw(uploadId) {
       await agent.delete(`${path}/uploads/${uploadId}`).expect(202);
