@@ -16,12 +16,15 @@ export interface ColumnProfile {
   timeShare: number;
   /** Digits that may be a time: serials, epochs and compact dates. */
   digitTimeShare: number;
+  /** Times, and what looks like one written in a way that is not read: 05-JAN-26, 8h15. */
+  timeLikeShare: number;
   numberShare: number;
   distinctShare: number;
   distinct: number;
   cells: readonly string[];
 }
 
+const numbersApart = /\d\D+\d/;
 const digits = /^-?\d+(?:\.\d+)?$/;
 
 /** Looks at each column of a sample. */
@@ -44,6 +47,9 @@ export function profileColumns({ header, rows }: Sample): ColumnProfile[] {
       filled: filled.length,
       timeShare: share((cell) => !digits.test(cell) && isTime(cell)),
       digitTimeShare: share((cell) => digits.test(cell) && isTime(cell)),
+      timeLikeShare: share(
+        (cell) => isTime(cell) || (!digits.test(cell) && numbersApart.test(cell)),
+      ),
       numberShare: share((cell) => readDecimal(cell) !== null),
       distinctShare: filled.length === 0 ? 0 : distinct / filled.length,
       distinct,
@@ -57,6 +63,10 @@ export const mostly = 0.8;
 
 /** Whether the column holds dates and times, beyond doubt. */
 export const holdsTimes = ({ timeShare }: ColumnProfile): boolean => timeShare >= mostly;
+
+/** Whether a column whose header says that it holds times may do so, however badly it is written. */
+export const looksLikeTimes = (column: ColumnProfile): boolean =>
+  column.filled === 0 || column.timeLikeShare >= 0.5;
 
 /** Whether the column may hold times: also digits, or nothing as yet. */
 export const mayHoldTimes = (column: ColumnProfile): boolean =>

@@ -96,6 +96,9 @@ const phraseWords = Object.fromEntries(
   ]),
 ) as unknown as Readonly<Record<StayColumn, readonly (readonly string[])[]>>;
 
+/** From this score on the whole header is a phrase for the column. */
+export const wholeHeaderScore = 100;
+
 /**
  * How well a header fits a column by its words: 0 not at all; more for longer phrases, most where the
  * phrase is the whole header.
@@ -104,7 +107,7 @@ export function wordScore(column: StayColumn, words: readonly string[]): number 
   const fits = phraseWords[column].filter((phrase) => contains(words, phrase));
   if (fits.length === 0) return 0;
   const longest = Math.max(...fits.map((phrase) => phrase.length));
-  if (longest === words.length) return 100 + longest;
+  if (longest === words.length) return wholeHeaderScore + longest;
   const rest = words.filter((word) => !fits.some((phrase) => phrase.includes(word)));
   const others = isTime(column) ? plans : besides;
   const meansOther = column !== 'due' && rest.some((word) => others.has(word));

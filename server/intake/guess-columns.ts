@@ -1,6 +1,12 @@
 import type { StayColumns } from '../../shared/contracts/plan.ts';
-import { holdsTimes, mayHoldTimes, mostly, type ColumnProfile } from './column-profile.ts';
-import { wordScore } from './column-words.ts';
+import {
+  holdsTimes,
+  looksLikeTimes,
+  mayHoldTimes,
+  mostly,
+  type ColumnProfile,
+} from './column-profile.ts';
+import { wholeHeaderScore, wordScore } from './column-words.ts';
 import { isTaken, type FoundColumns, type GuessReason } from './found-columns.ts';
 import { guessTimesByOrder } from './guess-times.ts';
 import { stayColumns, type StayColumn } from './shapes/stay-columns.ts';
@@ -55,7 +61,7 @@ function guessByWords(profiles: readonly ColumnProfile[], reasons: GuessReason[]
     .flatMap((profile) =>
       stayColumns.map((column) => ({ profile, column, score: wordScore(column, profile.words) })),
     )
-    .filter(({ profile, column, score }) => score > 0 && mayHold(profile, column))
+    .filter(({ profile, column, score }) => score > 0 && mayHold(profile, column, score))
     .sort((a, b) => b.score - a.score || a.profile.place - b.profile.place);
   const found: FoundColumns = {};
   for (const { profile, column } of fits) {
@@ -72,13 +78,13 @@ const isOnly = (profile: ColumnProfile, all: readonly ColumnProfile[]): boolean 
   all.every((other) => other === profile || other.header !== profile.header);
 
 /** Whether the cells of a column can be what its header says. */
-function mayHold(profile: ColumnProfile, column: StayColumn): boolean {
+function mayHold(profile: ColumnProfile, column: StayColumn, score: number): boolean {
   switch (column) {
     case 'arrived':
     case 'started':
     case 'finished':
     case 'due':
-      return mayHoldTimes(profile);
+      return mayHoldTimes(profile) || (score >= wholeHeaderScore && looksLikeTimes(profile));
     case 'quantity':
     case 'workContent':
     case 'value':

@@ -94,6 +94,17 @@ describe('the guess', () => {
     });
   });
 
+  test('trusts a header that says it all over cells that are badly written', () => {
+    const text =
+      'job,area,start,finish,closed\nJ1,A,05-JAN-26,2026-01-05,yes\nJ2,A,06-JAN-26,x,no\n';
+    expect(guess(text).plan?.columns).toEqual({
+      job: 'job',
+      area: 'area',
+      started: 'start',
+      finished: 'finish',
+    });
+  });
+
   test.each([
     ['13/02/2026', 'day-first'],
     ['02/13/2026', 'month-first'],
