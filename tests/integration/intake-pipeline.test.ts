@@ -1,6 +1,7 @@
 import { Readable } from 'node:stream';
 import { parse } from 'csv-parse/sync';
 import { sql } from 'drizzle-orm';
+import fc from 'fast-check';
 import type { PoolClient } from 'pg';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
@@ -254,6 +255,39 @@ describe('a file that cannot be read fails with a code and a sentence:', () => {
     const outcome = await read('job,area,start\nJ1,A,2026-01-05\n');
     expect(outcome.account.rowsRead).toBe(1);
   });
+});
+
+test('whatever bytes a file holds, the database takes each row as accepted or refused', async () => {
+  const text = fc.oneof(
+    fc.string({ unit: 'binary', maxLength: 6 }).map((each) => Buffer.from(each)),
+    fc.uint8Array({ maxLength: 6 }).map((each) => Buffer.from(each)),
+    fc
+      .constantFrom('"', '""', '"a ""b"" c"', '\0', '\u00a0', ' x ')
+      .map((each) => Buffer.from(each)),
+  );
+  const time = fc.constantFrom('2026-01-05', '', '46027.5', 'x').map((each) => Buffer.from(each));
+  const number = fc.constantFrom('1', '', '0.25', '-1', 'x').map((each) => Buffer.from(each));
+  const row = fc
+    .tuple(text, text, time, time, number, text)
+    .map((cells) => Buffer.concat(cells.flatMap((cell) => [cell, Buffer.from(',')]).slice(0, -1)));
+  const plan: ColumnPlan = {
+    ...fullPlan,
+    columns: { job: 'j', area: 'a', started: 's', finished: 'f', quantity: 'q', family: 'x' },
+    delimiter: ',',
+  };
+  await fc.assert(
+    fc.asyncProperty(fc.array(row, { minLength: 1, maxLength: 12 }), async (rows) => {
+      const lines = rows.flatMap((each) => [each, Buffer.from('\n')]);
+      const file = Buffer.concat([Buffer.from('j,a,s,f,q,x\nfirst,A,2026-01-05,,,\n'), ...lines]);
+      const { account } = await read(file, { plan });
+      const counted = await client.query(`select (select count(*)::integer from staged_row) as rows,
+        (select count(*)::integer from staged_refused) as refused`);
+      expect(counted.rows).toEqual([
+        { rows: account.rowsRead - account.skipped - account.refused, refused: account.refused },
+      ]);
+    }),
+    { numRuns: 60 },
+  );
 });
 
 test('the order of day and month is looked for beyond the beginning of the file', async () => {
