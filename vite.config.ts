@@ -22,6 +22,7 @@ const project = (
 
 export default defineConfig({
   plugins: [react(), tailwindcss()],
+  publicDir: 'src/public',
   build: { outDir: 'dist', emptyOutDir: true },
   test: {
     projects: [

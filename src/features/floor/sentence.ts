@@ -1,0 +1,76 @@
+import type { FloorRow } from '../../../shared/contracts/figures.ts';
+import { formatCount, formatDuration, formatPerDay, plural } from '../../lib/format.ts';
+
+/** A piece of the sentence; with a zone it links to that zone. */
+export interface Clause {
+  text: string;
+  zoneId?: number;
+}
+
+/** So much growth over the period is told first: a tenth of what was there, and five at least. */
+const growthWorthTelling = (row: FloorRow) => Math.max(5, 0.1 * (row.wipStart ?? 0));
+
+const growth = (row: FloorRow) => (row.wipEnd ?? 0) - (row.wipStart ?? 0);
+
+/**
+ * What the Floor's figures say, worst first: books that do not balance, areas that have grown, the site
+ * as a whole, and what to mind about the data.
+ */
+export function floorSentence(rows: readonly FloorRow[], unit: 'jobs' | 'units'): Clause[] {
+  const site = rows.find((row) => row.zone.kind === 'site');
+  const areas = rows.filter((row) => row.zone.kind === 'area' && row.wipMean !== null);
+  if (!site || site.wipMean === null || areas.length === 0) return [];
+  return [
+    ...unbalanced(rows),
+    ...grown(areas, unit),
+    ...whole(site, unit),
+    ...mind(rows),
+  ];
+}
+
+function unbalanced(rows: readonly FloorRow[]): Clause[] {
+  return rows
+    .filter((row) => !row.books.balance)
+    .map((row) => ({
+      text: `The books of ${row.zone.name} do not balance: tell your administrator. `,
+      zoneId: row.zone.id,
+    }));
+}
+
+function grown(areas: readonly FloorRow[], unit: string): Clause[] {
+  const risen = areas
+    .filter((row) => growth(row) >= growthWorthTelling(row))
+    .sort((one, other) => growth(other) - growth(one));
+  if (risen.length === 0) return [{ text: 'No area holds much more now than at the start. ' }];
+  return risen.slice(0, 3).map((row) => ({
+    text: `${row.zone.name} holds ${formatCount(row.wipEnd)} ${unit}, ${formatCount(growth(row))} more than at the start: ${formatCount(row.arrivals)} came and ${formatCount(row.departures)} left. `,
+    zoneId: row.zone.id,
+  }));
+}
+
+function whole(site: FloorRow, unit: 'jobs' | 'units'): Clause[] {
+  const inside = site.wipEnd ?? 0;
+  const flow =
+    site.flowP50Seconds === null
+      ? 'none has left in this period'
+      : `half of those that left took at most ${formatDuration(site.flowP50Seconds)}`;
+  const counted =
+    unit === 'jobs' ? plural(inside, 'job') : `${formatCount(inside)} ${inside === 1 ? 'unit' : 'units'}`;
+  return [
+    {
+      text: `On the whole site ${inside === 1 ? 'is' : 'are'} ${counted}; ${formatPerDay(site.throughputPerHour)} leave a day, and ${flow}. `,
+      zoneId: site.zone.id,
+    },
+  ];
+}
+
+function mind(rows: readonly FloorRow[]): Clause[] {
+  const partial = rows.some((row) => row.partial && row.zone.kind === 'site');
+  const warming = rows.filter((row) => row.warmingUp && row.zone.kind === 'area').length;
+  return [
+    ...(partial ? [{ text: 'The period reaches past what the data speak for. ' }] : []),
+    ...(warming > 0
+      ? [{ text: `At its start ${plural(warming, 'area')} still ${warming === 1 ? 'fills' : 'fill'} up from an empty log. ` }]
+      : []),
+  ];
+}

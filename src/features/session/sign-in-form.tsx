@@ -1,0 +1,74 @@
+import { useState } from 'react';
+import { Form } from 'react-aria-components';
+import { ApiError } from '../../api/api-error.ts';
+import { Button } from '../../ui/button.tsx';
+import { PanelHeading } from '../../ui/heading.tsx';
+import { ProblemNotice } from '../../ui/notice.tsx';
+import { TextField } from '../../ui/text-field.tsx';
+import { useSession, useSignIn } from './queries.ts';
+
+/** E-mail and password; on a demo, one account per role to fill in. */
+export function SignInForm({ onDone }: { onDone: () => void }) {
+  const { demoAccounts, demoPassword } = useSession();
+  const [email, setEmail] = useState('');
+  const [password, setPassword] = useState('');
+  const signIn = useSignIn();
+  return (
+    <div className="flex flex-col gap-8">
+      <Form
+        className="flex flex-col gap-4"
+        onSubmit={(event) => {
+          event.preventDefault();
+          signIn.mutate({ email, password }, { onSuccess: onDone });
+        }}
+      >
+        <TextField
+          label="E-mail"
+          type="email"
+          autoComplete="username"
+          isRequired
+          value={email}
+          onChange={setEmail}
+        />
+        <TextField
+          label="Password"
+          type="password"
+          autoComplete="current-password"
+          isRequired
+          value={password}
+          onChange={setPassword}
+        />
+        {signIn.error instanceof ApiError ? <ProblemNotice problem={signIn.error.problem} /> : null}
+        <Button type="submit" kind="main" isDisabled={signIn.isPending}>
+          {signIn.isPending ? 'Signing in …' : 'Sign in'}
+        </Button>
+      </Form>
+      {demoAccounts.length > 0 ? (
+        <section>
+          <PanelHeading>Accounts of this demo</PanelHeading>
+          <ul className="mt-2 flex flex-col gap-1">
+            {demoAccounts.map((account) => (
+              <li key={account.email} className="flex flex-wrap items-baseline justify-between gap-2">
+                <span>
+                  {account.email}{' '}
+                  <span className="text-soft">
+                    {account.role}, {account.organisation}
+                  </span>
+                </span>
+                <Button
+                  onPress={() => {
+                    setEmail(account.email);
+                    setPassword(demoPassword ?? '');
+                  }}
+                  aria-label={`Fill in ${account.email}`}
+                >
+                  Fill in
+                </Button>
+              </li>
+            ))}
+          </ul>
+        </section>
+      ) : null}
+    </div>
+  );
+}
