@@ -1,0 +1,63 @@
+import { useQuery } from '@tanstack/react-query';
+import { Link } from 'react-router-dom';
+import { dayMs } from '../../shared/local-time.ts';
+import { ApiError } from '../api/api-error.ts';
+import { paths } from '../app/paths.ts';
+import { FloorTable } from '../features/floor/floor-table.tsx';
+import { floorQuery } from '../features/floor/queries.ts';
+import { floorSentence } from '../features/floor/sentence.ts';
+import { usePeriod } from '../features/period/use-period.ts';
+import { EmptyState } from '../ui/empty-state.tsx';
+import { PageHeading, Sentence } from '../ui/heading.tsx';
+import { Loading } from '../ui/loading.tsx';
+import { ProblemNotice } from '../ui/notice.tsx';
+import { useSiteOfPage, useTitle } from './use-page.ts';
+
+export function Component() {
+  useTitle('Floor');
+  const site = useSiteOfPage();
+  const { period, unit, search } = usePeriod(site);
+  const floor = useQuery(floorQuery(site.id, { ...period, unit }));
+  const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
+  if (site.dataUntil === null)
+    return (
+      <>
+        <PageHeading>Floor</PageHeading>
+        <EmptyState title="There are no data yet.">
+          <Link to={paths.intake(site.id) + search}>Upload an export</Link> with a row for each job
+          at each area: its start and its finish are enough.
+        </EmptyState>
+      </>
+    );
+  return (
+    <div className="flex flex-col gap-5">
+      <PageHeading>Floor</PageHeading>
+      {floor.error instanceof ApiError ? <ProblemNotice problem={floor.error.problem} /> : null}
+      {floor.data ? (
+        <>
+          <Sentence>
+            {floorSentence(floor.data.rows, unit).map((clause) =>
+              clause.zoneId === undefined ? (
+                <span key={clause.text}>{clause.text}</span>
+              ) : (
+                <Link key={clause.text} to={linkTo(clause.zoneId)}>
+                  {clause.text}
+                </Link>
+              ),
+            )}
+          </Sentence>
+          <FloorTable
+            rows={floor.data.rows}
+            days={(Date.parse(floor.data.to) - Date.parse(floor.data.from)) / dayMs}
+            linkTo={linkTo}
+          />
+          {floor.data.approximate ? (
+            <p className="text-soft">Percentiles are read from bins and right within 1 %.</p>
+          ) : null}
+        </>
+      ) : floor.isPending ? (
+        <Loading what="the areas" />
+      ) : null}
+    </div>
+  );
+}

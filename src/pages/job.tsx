@@ -1,0 +1,61 @@
+import { useSuspenseQuery } from '@tanstack/react-query';
+import { Link, useParams } from 'react-router-dom';
+import type { JobRecord } from '../../shared/contracts/jobs.ts';
+import { paths } from '../app/paths.ts';
+import { JobRecords } from '../features/jobs/job-records.tsx';
+import { jobQuery } from '../features/jobs/queries.ts';
+import { usePeriod } from '../features/period/use-period.ts';
+import { formatDuration, formatMoment, plural } from '../lib/format.ts';
+import { Breadcrumbs } from '../ui/breadcrumbs.tsx';
+import { PageHeading, PanelHeading, Sentence } from '../ui/heading.tsx';
+import { useSiteOfPage, useTitle } from './use-page.ts';
+
+export function Component() {
+  const site = useSiteOfPage();
+  const { jobKey = '' } = useParams();
+  useTitle(jobKey);
+  const { search } = usePeriod(site);
+  const job = useSuspenseQuery(jobQuery(site.id, jobKey)).data;
+  return (
+    <div className="flex flex-col gap-5">
+      <Breadcrumbs links={[{ to: paths.floor(site.id) + search, label: 'Floor' }]} here={jobKey} />
+      <PageHeading>{jobKey}</PageHeading>
+      <Sentence>{jobSentence(job.records, site.timeZone)}</Sentence>
+      <section>
+        <PanelHeading>Its way, in order</PanelHeading>
+        <JobRecords
+          records={job.records}
+          timeZone={site.timeZone}
+          rowLink={(uploadId, line) => paths.row(site.id, uploadId, line) + search}
+        />
+      </section>
+      <section>
+        <PanelHeading>Its stays in zones of several areas</PanelHeading>
+        <ul>
+          {job.stays
+            .filter((stay) => stay.kind !== 'area')
+            .map((stay) => (
+              <li key={`${stay.zoneId} ${stay.entered}`} className="border-b border-hair py-2">
+                <Link to={paths.zone(site.id, stay.zoneId) + search}>
+                  {stay.kind === 'site' ? 'Whole site' : stay.zoneName}
+                </Link>
+                : from {formatMoment(stay.entered, site.timeZone)}
+                {stay.left === null
+                  ? ', still inside'
+                  : ` to ${formatMoment(stay.left, site.timeZone)}, ${formatDuration(stay.flowSeconds)}`}
+              </li>
+            ))}
+        </ul>
+      </section>
+    </div>
+  );
+}
+
+function jobSentence(records: readonly JobRecord[], timeZone: string): string {
+  const open = records.find((record) => record.left === null && record.entered !== null);
+  const areas = new Set(records.map((record) => record.areaId)).size;
+  const where = open
+    ? `It is in ${open.areaName} since ${formatMoment(open.entered, timeZone)}.`
+    : `It was last seen ${formatMoment(records.at(-1)?.left ?? null, timeZone)}.`;
+  return `${plural(records.length, 'record')} in ${plural(areas, 'area')}. ${where}`;
+}
