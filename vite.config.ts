@@ -29,7 +29,11 @@ export default defineConfig({
       project('unit', 'unit'),
       // The same in a zone off by three quarters of an hour: nothing may depend on the machine's zone.
       project('unit-elsewhere', 'unit', { env: { TZ: 'Pacific/Chatham' } }),
-      project('reference', 'reference', { ...withDatabase, testTimeout: 60_000, hookTimeout: 60_000 }),
+      project('reference', 'reference', {
+        ...withDatabase,
+        testTimeout: 60_000,
+        hookTimeout: 60_000,
+      }),
       project('integration', 'integration', {
         ...withDatabase,
         testTimeout: 60_000,

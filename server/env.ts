@@ -36,9 +36,7 @@ const settings = {
     .max(10, 'Use at most 10.')
     .default(0),
   WEIRMARK_DEV: flag(false),
-  LOG_LEVEL: z
-    .enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent'])
-    .default('info'),
+  LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
 } as const;
 
 const envSchema = z.object(settings);
@@ -48,12 +46,15 @@ export type Env = z.infer<typeof envSchema>;
 export const settingPurposes: Record<keyof typeof settings, string> = {
   HOST: 'address to listen on',
   PORT: 'port to listen on',
-  DATABASE_URL: 'a given PostgreSQL server, under the role that owns the schema; a local one is made without it',
-  DATABASE_APP_URL: 'the role for requests and jobs, where the owner may not create roles; it must be granted weirmark_app',
+  DATABASE_URL:
+    'a given PostgreSQL server, under the role that owns the schema; a local one is made without it',
+  DATABASE_APP_URL:
+    'the role for requests and jobs, where the owner may not create roles; it must be granted weirmark_app',
   WEIRMARK_DATA_DIR: 'where the local PostgreSQL keeps its data',
   WEIRMARK_DEMO: '1 makes the demo organisations and accounts in an empty database, 0 starts empty',
   WEIRMARK_UPLOAD_LIMIT_MB: 'largest file that is taken in, in megabytes',
-  WEIRMARK_ORIGIN: 'origin under which people reach the server, where it differs from the address it listens on',
+  WEIRMARK_ORIGIN:
+    'origin under which people reach the server, where it differs from the address it listens on',
   WEIRMARK_TRUST_PROXY: 'number of proxies in front whose forwarded addresses are believed',
   WEIRMARK_DEV: '1 serves the client with live reload',
   LOG_LEVEL: 'fatal, error, warn, info, debug, trace or silent',

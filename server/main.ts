@@ -57,11 +57,7 @@ async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
   if (env.WEIRMARK_DEMO) await loadDemo(db, systemClock);
   const { gate, token } = await createFirstAdminGate(migrating, db);
   await discardUnfinishedReceipts(db, new Date(Date.now() - unfinishedAfterMs));
-  const worker = await startWorker(
-    migrated.applicationUrl,
-    { db, clock: systemClock, log },
-    log,
-  );
+  const worker = await startWorker(migrated.applicationUrl, { db, clock: systemClock, log }, log);
   stops.push(() => worker.stop());
   const client = env.WEIRMARK_DEV ? await developmentClient(stops) : serveClient(clientFolder);
   const app = buildApp(
@@ -89,7 +85,8 @@ async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
 /** A file still arriving after so long was broken off with the server that took it. */
 const unfinishedAfterMs = 6 * 3_600_000;
 
-const randomKey = () => Buffer.from(crypto.getRandomValues(new Uint8Array(32))).toString('base64url');
+const randomKey = () =>
+  Buffer.from(crypto.getRandomValues(new Uint8Array(32))).toString('base64url');
 
 async function localDatabase(env: Env, stops: Stop[]): Promise<string> {
   const local = await startEmbedded({

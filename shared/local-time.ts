@@ -183,12 +183,7 @@ function stepMidnight(clock: number, step: 'day' | 'week'): number {
  * Borders of the local steps that cover [from, to), widened outwards to whole steps: n steps have n + 1
  * borders. Days of 23 and 25 hours, and local hours of 30 or 90 minutes, keep their true length.
  */
-export function stepBorders(
-  rules: ZoneRules,
-  step: LocalStep,
-  from: number,
-  to: number,
-): number[] {
+export function stepBorders(rules: ZoneRules, step: LocalStep, from: number, to: number): number[] {
   return step === 'hour' ? hourBorders(rules, from, to) : dayBorders(rules, step, from, to);
 }
 

@@ -33,8 +33,7 @@ export async function createFirstAdminGate(
   const isOpen = async () => !(await hasOrganisation(db));
   const gate = {
     isOpen,
-    matches: async (given: string) =>
-      timingSafeEqual(digest(given), expected) && (await isOpen()),
+    matches: async (given: string) => timingSafeEqual(digest(given), expected) && (await isOpen()),
   };
   return { gate, token };
 }

@@ -24,7 +24,9 @@ export async function applicationUrl(migrating: Database, migratingUrl: string):
     () => `weirmark_app_${randomBytes(6).toString('hex')}`,
   );
   try {
-    await migrating.execute(sql`/* application role */ select weirmark_login(${login}, ${password})`);
+    await migrating.execute(
+      sql`/* application role */ select weirmark_login(${login}, ${password})`,
+    );
   } catch (cause) {
     throw new Error(
       'The database role in DATABASE_URL may not create roles. Create a login role, grant it weirmark_app, and give its address in DATABASE_APP_URL.',

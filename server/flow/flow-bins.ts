@@ -64,9 +64,7 @@ export async function readBinnedFlowTimes(
       from of_day group by zone_id, place
     )
     select * from summed join gathered using (zone_id, place)`);
-  const found = new Map(
-    zoneIds.map((zoneId) => [zoneId, borders.slice(1).map(() => noFlowTimes)]),
-  );
+  const found = new Map(zoneIds.map((zoneId) => [zoneId, borders.slice(1).map(() => noFlowTimes)]));
   for (const row of z.array(binsRow).parse(rows)) {
     const steps = found.get(row.zone_id);
     if (!steps) continue;

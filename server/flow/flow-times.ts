@@ -68,9 +68,7 @@ export async function readFlowTimes(
       avg(process_microseconds) / 1000000.0 as process_mean
     from departed
     group by zone_id, place`);
-  const found = new Map(
-    zoneIds.map((zoneId) => [zoneId, borders.slice(1).map(() => noFlowTimes)]),
-  );
+  const found = new Map(zoneIds.map((zoneId) => [zoneId, borders.slice(1).map(() => noFlowTimes)]));
   for (const row of z.array(flowRow).parse(rows)) {
     const steps = found.get(row.zone_id);
     if (!steps) continue;

@@ -130,5 +130,8 @@ export async function readJobKeys(
     where organisation_id = ${organisationId} and site_id = ${siteId}
       and job_key >= ${begins} and job_key < ${begins}::text || chr(1114111) collate "C"
     order by job_key limit ${limit}`);
-  return z.array(z.object({ job_key: z.string() })).parse(rows).map((row) => row.job_key);
+  return z
+    .array(z.object({ job_key: z.string() }))
+    .parse(rows)
+    .map((row) => row.job_key);
 }

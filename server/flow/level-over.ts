@@ -30,9 +30,7 @@ export async function readLevelOver(
     ...(wholeFrom === period.from
       ? []
       : await readLevelChanges(reader, zoneId, measure, { from: period.from, to: cutStart.to })),
-    ...(whole.from < whole.to
-      ? await readWhole(reader, zoneId, measure, whole)
-      : []),
+    ...(whole.from < whole.to ? await readWhole(reader, zoneId, measure, whole) : []),
     ...(await readLevelChanges(reader, zoneId, measure, cutEnd)),
   ];
   const level = before.reduce((sum, change) => sum + change.ups - change.downs, base);

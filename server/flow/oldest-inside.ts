@@ -28,5 +28,10 @@ export async function readOldestInside(
       limit 1
     ) as found
     group by asked.zone_id`);
-  return new Map(z.array(oldestRow).parse(rows).map((row) => [row.zone_id, row.oldest]));
+  return new Map(
+    z
+      .array(oldestRow)
+      .parse(rows)
+      .map((row) => [row.zone_id, row.oldest]),
+  );
 }

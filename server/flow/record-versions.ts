@@ -33,7 +33,11 @@ function tellsOf(row: ToldRow, record: RecordRow): boolean {
     return row.record_key === record.record_key;
   if (row.area_id !== record.area_id) return false;
   if (about(row) === about(record)) return true;
-  return row.started === null && row.arrived?.getTime() === record.arrived?.getTime() && row.arrived !== null;
+  return (
+    row.started === null &&
+    row.arrived?.getTime() === record.arrived?.getTime() &&
+    row.arrived !== null
+  );
 }
 
 function outcomeOf(

@@ -80,7 +80,10 @@ function parsed<Schema extends z.ZodType>(
     message: issue.message,
   }));
   const named = errors.map((error) => error.field).join(', ');
-  throw invalidInput(`Some of the ${where} could not be used: ${named}. Nothing was changed.`, errors);
+  throw invalidInput(
+    `Some of the ${where} could not be used: ${named}. Nothing was changed.`,
+    errors,
+  );
 }
 
 function send(contract: Contract, res: Response, answer: unknown): void {

@@ -23,7 +23,12 @@ export function inDerivation<Result>(
 ): Promise<Result> {
   return withTenant(connection, organisationId, async (tx) => {
     await tx.execute(sql`select set_config('work_mem', ${workMemory}, true)`);
-    return work({ tx, organisationId, siteId, ...(await readSettings(tx, organisationId, siteId)) });
+    return work({
+      tx,
+      organisationId,
+      siteId,
+      ...(await readSettings(tx, organisationId, siteId)),
+    });
   });
 }
 

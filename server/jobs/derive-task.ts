@@ -34,11 +34,7 @@ export async function deriveRequestedZone(task: SiteTask, zoneId: number): Promi
       .update(zone)
       .set({ state: 'ready' })
       .where(
-        and(
-          eq(zone.organisationId, organisationId),
-          eq(zone.siteId, siteId),
-          eq(zone.id, zoneId),
-        ),
+        and(eq(zone.organisationId, organisationId), eq(zone.siteId, siteId), eq(zone.id, zoneId)),
       );
   });
 }

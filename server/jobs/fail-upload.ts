@@ -11,11 +11,7 @@ export const attemptLimit = 5;
  * Ends an upload that could not be taken in, with a code and a sentence. A fault of our own is logged
  * and told as such; a lost database is thrown on, so that the work is done again.
  */
-export async function failUpload(
-  task: SiteTask,
-  uploadId: number,
-  error: unknown,
-): Promise<void> {
+export async function failUpload(task: SiteTask, uploadId: number, error: unknown): Promise<void> {
   if (isLostConnection(error)) throw error;
   const failure =
     error instanceof IntakeFailure

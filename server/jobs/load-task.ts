@@ -106,7 +106,8 @@ async function keepProgress(
   uploadId: number,
   progress: { rows: number; bytes: number },
 ): Promise<boolean> {
-  if (task.signal.aborted) throw new Error('The server is stopping; the upload is read again later.');
+  if (task.signal.aborted)
+    throw new Error('The server is stopping; the upload is read again later.');
   const [row] = await withTenant(task.db, task.organisationId, (tx) =>
     tx
       .update(upload)
@@ -125,7 +126,9 @@ async function cancelledByStop(
   uploadId: number,
   load: () => Promise<void>,
 ): Promise<void> {
-  const { rows } = await task.connection.execute(sql`/* own backend */ select pg_backend_pid() as pid`);
+  const { rows } = await task.connection.execute(
+    sql`/* own backend */ select pg_backend_pid() as pid`,
+  );
   const pid = z.number().parse(rows[0]?.pid);
   let asked = false;
   const watch = setInterval(() => {

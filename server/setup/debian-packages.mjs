@@ -21,7 +21,9 @@ export function installDebianPackages(packages, purpose) {
   const names = packages.join(' ');
   const byHand = `Install it by hand: apt-get install ${names}`;
   if (!existsSync('/usr/bin/apt-get'))
-    throw new SetupError(`${purpose} is missing, and this is not Debian. Install ${names} by hand.`);
+    throw new SetupError(
+      `${purpose} is missing, and this is not Debian. Install ${names} by hand.`,
+    );
   const asRoot = process.getuid?.() === 0;
   if (!asRoot && !run('sudo', ['-n', 'true']).ok)
     throw new SetupError(`${purpose} is missing, and only root may install it. ${byHand}`);

@@ -5,5 +5,7 @@ const oldest = 20;
 /** @throws SetupError where this Node is too old to run the product */
 export function checkNodeVersion() {
   if (Number(process.versions.node.split('.')[0]) < oldest)
-    throw new SetupError(`Weirmark needs Node ${oldest} or newer; this is ${process.versions.node}.`);
+    throw new SetupError(
+      `Weirmark needs Node ${oldest} or newer; this is ${process.versions.node}.`,
+    );
 }

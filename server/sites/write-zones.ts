@@ -97,7 +97,11 @@ export async function setLoopAreas(
     .select({ id: area.id })
     .from(area)
     .where(
-      and(eq(area.organisationId, organisationId), eq(area.siteId, siteId), inArray(area.id, wanted)),
+      and(
+        eq(area.organisationId, organisationId),
+        eq(area.siteId, siteId),
+        inArray(area.id, wanted),
+      ),
     );
   const unknown = wanted.filter((id) => !found.some((each) => each.id === id));
   if (unknown.length > 0)

@@ -54,7 +54,8 @@ export const readSeries = contract({
   name: 'readSeries',
   method: 'get',
   path: '/api/sites/:siteId/zones/:zoneId/series',
-  summary: 'Figures of a zone by local hours, days or ISO weeks; the steps widen the period outwards',
+  summary:
+    'Figures of a zone by local hours, days or ISO weeks; the steps widen the period outwards',
   action: 'figures.read',
   params: zoneParams,
   query: seriesQuery,

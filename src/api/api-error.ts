@@ -34,6 +34,7 @@ export const unreachable: Problem = {
   type: 'about:blank',
   title: 'The server cannot be reached',
   status: 0,
-  detail: 'There was no answer. What you see is what came last; check the connection and try again.',
+  detail:
+    'There was no answer. What you see is what came last; check the connection and try again.',
   code: 'unavailable',
 };

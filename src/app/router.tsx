@@ -28,7 +28,7 @@ export function createRouter(client: QueryClient) {
       },
       HydrateFallback: () => null,
       children: [
-        { index: true, loader: () => redirect(paths.sites) },
+        { index: true, element: null, loader: () => redirect(paths.sites) },
         { path: paths.signIn, lazy: () => import('../pages/sign-in.tsx') },
         { path: paths.firstAdmin, lazy: () => import('../pages/first-admin.tsx') },
         { path: paths.sites, loader: guard, lazy: () => import('../pages/sites.tsx') },
@@ -45,7 +45,11 @@ export function createRouter(client: QueryClient) {
         {
           errorElement: <ErrorPage />,
           children: [
-            { index: true, loader: ({ params }) => redirect(paths.floor(Number(params.siteId))) },
+            {
+              index: true,
+              element: null,
+              loader: ({ params }) => redirect(paths.floor(Number(params.siteId))),
+            },
             { path: 'floor', lazy: () => import('../pages/floor.tsx') },
             { path: 'intake', lazy: () => import('../pages/intake.tsx') },
             { path: 'zones/:zoneId', lazy: () => import('../pages/zone.tsx') },

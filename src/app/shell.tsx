@@ -1,4 +1,5 @@
-import { Suspense } from 'react';
+import { useQueryClient } from '@tanstack/react-query';
+import { Suspense, useEffect, type ReactNode } from 'react';
 import { Link, NavLink, Outlet, useParams } from 'react-router-dom';
 import { PeriodBar } from '../features/period/period-bar.tsx';
 import { usePeriod } from '../features/period/use-period.ts';
@@ -20,8 +21,9 @@ export function SiteShell() {
   const site = useSite(siteId);
   const { search } = usePeriod(site);
   const role = useRole(site.organisationId);
+  useFreshFigures(site);
   return (
-    <div className="min-h-dvh">
+    <div className="flex min-h-dvh flex-col">
       <SkipLink />
       <Header role={role}>
         <span>
@@ -36,7 +38,7 @@ export function SiteShell() {
         <JobSearch siteId={siteId} search={search} />
       </Header>
       <PeriodBar site={site} />
-      <div className="flex flex-col md:flex-row">
+      <div className="flex flex-1 flex-col md:flex-row">
         <Navigation site={site} search={search} />
         <main id="main" className="min-w-0 flex-1 bg-panel px-4 py-5 md:px-7">
           <OfflineNotice />
@@ -52,6 +54,14 @@ export function SiteShell() {
       </div>
     </div>
   );
+}
+
+/** What is shown of a site is asked for again once its figures have caught up. */
+function useFreshFigures({ id, busy }: Site): void {
+  const client = useQueryClient();
+  useEffect(() => {
+    if (!busy) void client.invalidateQueries({ queryKey: ['site', id] });
+  }, [client, id, busy]);
 }
 
 /** The frame of the screens that belong to no site. */
@@ -71,15 +81,12 @@ export function PlainShell() {
 }
 
 const SkipLink = () => (
-  <a
-    href="#main"
-    className="absolute -top-20 left-2 z-30 bg-ink px-3 py-2 text-panel focus:top-2"
-  >
+  <a href="#main" className="absolute -top-20 left-2 z-30 bg-ink px-3 py-2 text-panel focus:top-2">
     Skip to the content
   </a>
 );
 
-function Header({ role, children }: { role: string | null; children?: React.ReactNode }) {
+function Header({ role, children }: { role: string | null; children?: ReactNode }) {
   const { session } = useSession();
   return (
     <header className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 border-b border-hair px-4 py-3">

@@ -15,11 +15,25 @@ export function levelChart(
     190,
     ticks,
     [
-      Plot.rect(known, { x1: 'start', x2: 'end', y1: 0, y2: 'wipPeak', fill: 'var(--wm-mist)', inset: 0 }),
-      Plot.rect(known, { x1: 'start', x2: 'end', y1: 0, y2: line, fill: 'var(--wm-wash)', inset: 0 }),
+      Plot.rect(known, {
+        x1: 'start',
+        x2: 'end',
+        y1: 0,
+        y2: 'wipPeak',
+        fill: 'var(--wm-mist)',
+        shapeRendering: 'crispEdges',
+      }),
+      Plot.rect(known, {
+        x1: 'start',
+        x2: 'end',
+        y1: 0,
+        y2: line,
+        fill: 'var(--wm-wash)',
+        shapeRendering: 'crispEdges',
+      }),
       Plot.rect(
         known.filter((point) => point.inProcessMean !== null),
-        { x1: 'start', x2: 'end', y1: 0, y2: 'inProcessMean', fill: 'var(--wm-deep)', inset: 0 },
+        { x1: 'start', x2: 'end', y1: 0, y2: 'inProcessMean', fill: 'var(--wm-deep)', shapeRendering: 'crispEdges' },
       ),
       Plot.line(edges(points, line), {
         x: 'at',

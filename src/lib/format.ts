@@ -84,11 +84,14 @@ export function formatMoment(at: string | number | Date | null, timeZone: string
   return `${formatDay(at, timeZone)}, ${partsIn(at, timeZone).time}`;
 }
 
-/** A period of days in the site's zone; its end, half-open, is told by the last day in it. */
+/** A period of days in the site's zone, by its first and last day: 2 to 29 Nov 2026. */
 export function formatPeriod(from: string, to: string, timeZone: string): string {
-  const last = new Date(Date.parse(to) - 1);
-  const [first, end] = [formatDay(from, timeZone), formatDay(last, timeZone)];
-  return first === end ? first : `${first} to ${end}`;
+  const first = partsIn(from, timeZone);
+  const last = partsIn(Date.parse(to) - 1, timeZone);
+  const end = formatDay(Date.parse(to) - 1, timeZone);
+  if (first.year !== last.year) return `${formatDay(from, timeZone)} to ${end}`;
+  if (first.month !== last.month) return `${first.day} ${months[first.month - 1] ?? ''} to ${end}`;
+  return first.day === last.day ? end : `${first.day} to ${end}`;
 }
 
 const units = ['B', 'kB', 'MB', 'GB', 'TB'];
@@ -107,6 +110,10 @@ export function formatBytes(bytes: number): string {
 /** 1 job, 2 jobs. */
 export const plural = (count: number, one: string, many = `${one}s`): string =>
   `${formatCount(count)} ${count === 1 ? one : many}`;
+
+/** 1 job, 2 units: a count in the unit of the figures. */
+export const inUnit = (count: number | null, unit: 'jobs' | 'units'): string =>
+  count === null ? unknown : plural(count, unit === 'jobs' ? 'job' : 'unit');
 
 /** Words in a row: a, b and c. */
 export function listed(words: readonly string[]): string {

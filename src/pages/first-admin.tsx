@@ -16,8 +16,8 @@ export function Component() {
       {awaitsFirstAdmin ? (
         <>
           <Sentence>
-            Nobody is here yet. Whoever holds the token from the server’s log makes the
-            organisation and becomes its admin.
+            Nobody is here yet. Whoever holds the token from the server’s log makes the organisation
+            and becomes its admin.
           </Sentence>
           <FirstAdminForm
             token={search.get('token') ?? ''}

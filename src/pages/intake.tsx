@@ -1,4 +1,5 @@
-import { useQuery } from '@tanstack/react-query';
+import { useQuery, useQueryClient } from '@tanstack/react-query';
+import { useEffect } from 'react';
 import { ApiError } from '../api/api-error.ts';
 import { useMay } from '../features/session/queries.ts';
 import { NewUpload } from '../features/uploads/new-upload.tsx';
@@ -16,6 +17,7 @@ export function Component() {
   const site = useSiteOfPage();
   const mayUpload = useMay('upload.create', site.organisationId);
   const uploads = useQuery(uploadsQuery(site.id));
+  useFreshSite(site.id, uploads.data?.some(isUnderWay) ?? false);
   const underWay = uploads.data?.filter(isUnderWay).length ?? 0;
   const loaded = uploads.data?.filter((upload) => upload.status === 'loaded').length ?? 0;
   return (
@@ -47,4 +49,12 @@ export function Component() {
       </section>
     </div>
   );
+}
+
+/** Once the last upload under way has ended, everything that is shown of the site is asked for again. */
+function useFreshSite(siteId: number, working: boolean): void {
+  const client = useQueryClient();
+  useEffect(() => {
+    void client.invalidateQueries({ queryKey: ['site', siteId] });
+  }, [client, siteId, working]);
 }

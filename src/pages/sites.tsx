@@ -32,7 +32,10 @@ export function Component() {
       ) : (
         <ul className="flex flex-col">
           {sites.map((site) => (
-            <li key={site.id} className="flex flex-wrap justify-between gap-4 border-b border-hair py-3">
+            <li
+              key={site.id}
+              className="flex flex-wrap justify-between gap-4 border-b border-hair py-3"
+            >
               <span>
                 <Link to={paths.floor(site.id)} className="font-bold">
                   {site.name}

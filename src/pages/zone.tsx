@@ -116,10 +116,7 @@ function useStep(period: Period): [Step, (step: Step) => void] {
 }
 
 /** The moment whose stays are listed: in the address, else the end of what is known of the period. */
-function useMoment(
-  summary: Summary | undefined,
-  site: Site,
-): [string | null, (at: Date) => void] {
+function useMoment(summary: Summary | undefined, site: Site): [string | null, (at: Date) => void] {
   const [search, setSearch] = useSearchParams();
   const setAt = (at: Date) =>
     setSearch((before) => {

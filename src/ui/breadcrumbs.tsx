@@ -1,6 +1,12 @@
 import { Link } from 'react-router-dom';
 
-export function Breadcrumbs({ links, here }: { links: readonly { to: string; label: string }[]; here: string }) {
+export function Breadcrumbs({
+  links,
+  here,
+}: {
+  links: readonly { to: string; label: string }[];
+  here: string;
+}) {
   return (
     <nav aria-label="Where you are" className="text-label text-soft">
       {links.map((link) => (

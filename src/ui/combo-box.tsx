@@ -36,7 +36,10 @@ export function ComboBox({
       <Label className="text-soft">{label}</Label>
       <div className="flex">
         <Input className="min-w-0 flex-1 border border-soft bg-white px-2 py-1.5 text-ink" />
-        <Button className="cursor-pointer border border-l-0 border-soft bg-white px-2" aria-label="Show the choices">
+        <Button
+          className="cursor-pointer border border-l-0 border-soft bg-white px-2"
+          aria-label="Show the choices"
+        >
           <svg width="10" height="6" viewBox="0 0 10 6" aria-hidden="true">
             <path d="M0 0l5 6 5-6z" fill="currentColor" />
           </svg>

@@ -1,7 +1,11 @@
 import type { ReactNode } from 'react';
 
 /** Labels with their figures, one under the other. */
-export function FigureList({ rows }: { rows: readonly (readonly [label: string, figure: ReactNode])[] }) {
+export function FigureList({
+  rows,
+}: {
+  rows: readonly (readonly [label: string, figure: ReactNode])[];
+}) {
   return (
     <dl className="flex flex-col">
       {rows.map(([label, figure]) => (

@@ -30,7 +30,11 @@ export function Notice({
 export function ProblemNotice({
   problem,
 }: {
-  problem: { title: string; detail: string; errors?: { field: string; message: string }[] | undefined };
+  problem: {
+    title: string;
+    detail: string;
+    errors?: { field: string; message: string }[] | undefined;
+  };
 }) {
   return (
     <Notice kind="error">

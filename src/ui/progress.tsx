@@ -1,7 +1,15 @@
 import { Label, ProgressBar } from 'react-aria-components';
 
 /** How far something has come, in words and as a gauge. */
-export function Progress({ label, share, words }: { label: string; share: number | null; words: string }) {
+export function Progress({
+  label,
+  share,
+  words,
+}: {
+  label: string;
+  share: number | null;
+  words: string;
+}) {
   return (
     <ProgressBar
       {...(share === null ? { isIndeterminate: true } : { value: Math.round(share * 100) })}

@@ -58,7 +58,10 @@ async function expectFigures(site: TestSite, rows: readonly LogRow[], timeZone: 
 
 type Expected = ReturnType<typeof oracleFigures>;
 
-function expectStep(actual: Series['points'][number] | Omit<Series['points'][number], 'start' | 'end'>, expected: Expected) {
+function expectStep(
+  actual: Series['points'][number] | Omit<Series['points'][number], 'start' | 'end'>,
+  expected: Expected,
+) {
   expect({
     wipStart: actual.wipStart,
     wipPeak: actual.wipPeak,

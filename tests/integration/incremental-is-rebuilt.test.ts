@@ -48,7 +48,10 @@ const timeZone = 'Europe/Dublin';
 const start = Date.parse('2026-10-23T00:00:00Z');
 /** A log cut into uploads, some rows of which come twice. */
 const uploads = fc
-  .tuple(logArbitrary(start), fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 24, maxLength: 24 }))
+  .tuple(
+    logArbitrary(start),
+    fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 24, maxLength: 24 }),
+  )
   .map(([rows, cuts]) =>
     [0, 1, 2].map((part) =>
       rows.filter((_, index) => cuts[index] === part || (cuts[index] === 3 && part > 0)),

@@ -78,7 +78,7 @@ export async function startTestApp(options: { demo?: boolean } = {}): Promise<Te
       return agent;
     },
     async settled() {
-      for (let seen; seen !== work; ) {
+      for (let seen; seen !== work;) {
         seen = work;
         await work;
       }

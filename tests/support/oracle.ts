@@ -31,7 +31,8 @@ export function oracleFigures(stays: readonly OracleStay[], from: number, to: nu
   ] as number[];
   const left = stays.filter((stay) => within(stay.left));
   const flows = left.map((stay) => ((stay.left ?? 0) - stay.entered) / 1000).sort((a, b) => a - b);
-  const weigh = (some: readonly OracleStay[]) => some.reduce((sum, stay) => sum + weightOf(stay), 0);
+  const weigh = (some: readonly OracleStay[]) =>
+    some.reduce((sum, stay) => sum + weightOf(stay), 0);
   return {
     wipStart: insideJustBefore(stays, from),
     wipEnd: insideJustBefore(stays, to),
@@ -40,7 +41,9 @@ export function oracleFigures(stays: readonly OracleStay[], from: number, to: nu
     wipPeak: Math.max(...moments.map((at) => insideAt(stays, at))),
     arrivals: weigh(stays.filter((stay) => within(stay.entered))),
     departures: weigh(left),
-    flowMeanSeconds: flows.length ? flows.reduce((sum, flow) => sum + flow, 0) / flows.length : null,
+    flowMeanSeconds: flows.length
+      ? flows.reduce((sum, flow) => sum + flow, 0) / flows.length
+      : null,
     flowP85Seconds: flows.length ? typeSeven(flows, 0.85) : null,
   };
 }
@@ -122,10 +125,7 @@ export function chain(
 }
 
 /** The stays of an area, and those of a zone of several areas by gaps and islands. */
-export function staysInZone(
-  jobs: readonly Chained[][],
-  areas: readonly string[],
-): OracleStay[] {
+export function staysInZone(jobs: readonly Chained[][], areas: readonly string[]): OracleStay[] {
   return jobs.flatMap((records) => {
     const stays: OracleStay[] = [];
     let open: Chained[] = [];

@@ -35,13 +35,15 @@ export function logArbitrary(start: number): fc.Arbitrary<LogRow[]> {
         finished: known.includes('f') ? finished : null,
       };
     });
-  return fc.uniqueArray(row, {
-    minLength: 1,
-    maxLength: 24,
-    // A row that knows only the arrival would belong to the record that began there.
-    selector: (each) =>
-      `${each.job} ${each.area} ${each.started ?? each.arrived ?? each.finished}`,
-  }).map(withoutSharedArrivals);
+  return fc
+    .uniqueArray(row, {
+      minLength: 1,
+      maxLength: 24,
+      // A row that knows only the arrival would belong to the record that began there.
+      selector: (each) =>
+        `${each.job} ${each.area} ${each.started ?? each.arrived ?? each.finished}`,
+    })
+    .map(withoutSharedArrivals);
 }
 
 function withoutSharedArrivals(rows: LogRow[]): LogRow[] {

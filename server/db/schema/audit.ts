@@ -1,12 +1,4 @@
-import {
-  bigint,
-  index,
-  integer,
-  jsonb,
-  pgTable,
-  primaryKey,
-  text,
-} from 'drizzle-orm/pg-core';
+import { bigint, index, integer, jsonb, pgTable, primaryKey, text } from 'drizzle-orm/pg-core';
 import { instant, tenantPolicy } from './columns.ts';
 
 /** Who did what to which thing, with its state before and after. Rows are only ever added. */

@@ -1,11 +1,4 @@
-import {
-  date,
-  integer,
-  numeric,
-  pgEnum,
-  pgTable,
-  primaryKey,
-} from 'drizzle-orm/pg-core';
+import { date, integer, numeric, pgEnum, pgTable, primaryKey } from 'drizzle-orm/pg-core';
 import { instant, tenantColumns, tenantPolicy } from './columns.ts';
 import { toZone } from './zones.ts';
 

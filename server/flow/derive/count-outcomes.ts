@@ -39,10 +39,7 @@ const each = (of: (column: SQL) => SQL, by: SQL): SQL =>
  * where it gives another value than was given last, completes where it gives what was blank, and is the
  * same otherwise. Needs `told_row`.
  */
-export async function countOutcomes(
-  { tx }: Derivation,
-  uploadId: number,
-): Promise<OutcomeCounts> {
+export async function countOutcomes({ tx }: Derivation, uploadId: number): Promise<OutcomeCounts> {
   const record = sql`first_upload, first_line, first_part`;
   const { rows } = await tx.execute(sql`/* count outcomes */
     with repeated as (

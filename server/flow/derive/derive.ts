@@ -162,7 +162,12 @@ async function finish(derivation: Derivation): Promise<void> {
 
 const spanRow = z.object({ first: z.coerce.date().nullable(), last: z.coerce.date().nullable() });
 
-async function gridOfHours({ tx, rules, organisationId, siteId }: Derivation): Promise<DayGrid | null> {
+async function gridOfHours({
+  tx,
+  rules,
+  organisationId,
+  siteId,
+}: Derivation): Promise<DayGrid | null> {
   const { rows } = await tx.execute(sql`/* span of hours */
     select min(hour) as first, max(hour) as last from level_hour
     where organisation_id = ${organisationId} and site_id = ${siteId}`);

@@ -44,26 +44,26 @@ export async function replaceAllFlowDays(
   const ofZones = sql`organisation_id = ${organisationId} and site_id = ${siteId}
     and zone_id = any(${sql.param(zoneIds)}::integer[])`;
   await tx.execute(sql`/* remove flow days */ delete from flow_day where ${ofZones}`);
-  await tx.execute(sql`/* insert flow days */ ${summed(
-    derivation,
-    sql`select * from zone_stay where ${ofZones} and left_at is not null`,
-    grid,
-  )}`);
+  await tx.execute(
+    sql`/* insert flow days */ ${summed(
+      derivation,
+      sql`select * from zone_stay where ${ofZones} and left_at is not null`,
+      grid,
+    )}`,
+  );
 }
 
 /** Derives the departures of the days named in `touched_day` (zone_id, starts, ends) afresh. */
-export async function replaceTouchedFlowDays(
-  derivation: Derivation,
-  grid: DayGrid,
-): Promise<void> {
+export async function replaceTouchedFlowDays(derivation: Derivation, grid: DayGrid): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
   await tx.execute(sql`/* remove touched flow days */
     delete from flow_day using touched_day
     where organisation_id = ${organisationId} and site_id = ${siteId}
       and flow_day.zone_id = touched_day.zone_id and flow_day.starts = touched_day.starts`);
-  await tx.execute(sql`/* insert touched flow days */ ${summed(
-    derivation,
-    sql`
+  await tx.execute(
+    sql`/* insert touched flow days */ ${summed(
+      derivation,
+      sql`
       select found.*
       from touched_day
       cross join (${lengthReaches}) as length_reach
@@ -76,6 +76,7 @@ export async function replaceTouchedFlowDays(
           and left_at >= touched_day.starts and left_at < touched_day.ends
         offset 0
       ) as found`,
-    grid,
-  )}`);
+      grid,
+    )}`,
+  );
 }

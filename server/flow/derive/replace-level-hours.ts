@@ -96,14 +96,16 @@ export async function replaceAllLevelHours(
       delete from level_hour where ${ofSite} and zone_id = ${id}`);
     for (const { measure, view, up, down, weight, inUnits } of sources) {
       if (inUnits && !hasQuantities) continue;
-      await tx.execute(sql`/* insert level hours */ ${insertHours(
-        derivation,
-        measure,
-        sql`
+      await tx.execute(
+        sql`/* insert level hours */ ${insertHours(
+          derivation,
+          measure,
+          sql`
           select zone_id, ${up} as up_at, ${down} as down_at, ${weight} as weight
           from ${view} where ${ofSite} and zone_id = ${id}`,
-        sql`true`,
-      )}`);
+          sql`true`,
+        )}`,
+      );
     }
   }
 }
@@ -120,12 +122,14 @@ export async function replaceTouchedLevelHours(derivation: Derivation): Promise<
       and level_hour.zone_id = touched_hour.zone_id and level_hour.hour = touched_hour.hour`);
   for (const source of sources) {
     await findStaysNearTouchedHours(derivation, source);
-    await tx.execute(sql`/* insert touched level hours */ ${insertHours(
-      derivation,
-      source.measure,
-      sql`select * from stay_near_touched_hour`,
-      sql`(zone_id, hour) in (select zone_id, hour from touched_hour)`,
-    )}`);
+    await tx.execute(
+      sql`/* insert touched level hours */ ${insertHours(
+        derivation,
+        source.measure,
+        sql`select * from stay_near_touched_hour`,
+        sql`(zone_id, hour) in (select zone_id, hour from touched_hour)`,
+      )}`,
+    );
   }
 }
 

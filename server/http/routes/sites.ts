@@ -127,10 +127,6 @@ async function renameSiteZone(
     .update(zone)
     .set({ name })
     .where(
-      and(
-        eq(zone.organisationId, organisationId),
-        eq(zone.siteId, siteId),
-        eq(zone.kind, 'site'),
-      ),
+      and(eq(zone.organisationId, organisationId), eq(zone.siteId, siteId), eq(zone.kind, 'site')),
     );
 }

@@ -1,5 +1,5 @@
 import type { FloorRow } from '../../../shared/contracts/figures.ts';
-import { formatCount, formatDuration, formatPerDay, plural } from '../../lib/format.ts';
+import { formatCount, formatDuration, formatPerDay, inUnit, plural } from '../../lib/format.ts';
 
 /** A piece of the sentence; with a zone it links to that zone. */
 export interface Clause {
@@ -20,12 +20,7 @@ export function floorSentence(rows: readonly FloorRow[], unit: 'jobs' | 'units')
   const site = rows.find((row) => row.zone.kind === 'site');
   const areas = rows.filter((row) => row.zone.kind === 'area' && row.wipMean !== null);
   if (!site || site.wipMean === null || areas.length === 0) return [];
-  return [
-    ...unbalanced(rows),
-    ...grown(areas, unit),
-    ...whole(site, unit),
-    ...mind(rows),
-  ];
+  return [...unbalanced(rows), ...grown(areas, unit), ...whole(site, unit), ...mind(rows)];
 }
 
 function unbalanced(rows: readonly FloorRow[]): Clause[] {
@@ -37,13 +32,13 @@ function unbalanced(rows: readonly FloorRow[]): Clause[] {
     }));
 }
 
-function grown(areas: readonly FloorRow[], unit: string): Clause[] {
+function grown(areas: readonly FloorRow[], unit: 'jobs' | 'units'): Clause[] {
   const risen = areas
     .filter((row) => growth(row) >= growthWorthTelling(row))
     .sort((one, other) => growth(other) - growth(one));
   if (risen.length === 0) return [{ text: 'No area holds much more now than at the start. ' }];
   return risen.slice(0, 3).map((row) => ({
-    text: `${row.zone.name} holds ${formatCount(row.wipEnd)} ${unit}, ${formatCount(growth(row))} more than at the start: ${formatCount(row.arrivals)} came and ${formatCount(row.departures)} left. `,
+    text: `${row.zone.name} holds ${inUnit(row.wipEnd, unit)}, ${formatCount(growth(row))} more than at the start: ${formatCount(row.arrivals)} came and ${formatCount(row.departures)} left. `,
     zoneId: row.zone.id,
   }));
 }
@@ -54,11 +49,9 @@ function whole(site: FloorRow, unit: 'jobs' | 'units'): Clause[] {
     site.flowP50Seconds === null
       ? 'none has left in this period'
       : `half of those that left took at most ${formatDuration(site.flowP50Seconds)}`;
-  const counted =
-    unit === 'jobs' ? plural(inside, 'job') : `${formatCount(inside)} ${inside === 1 ? 'unit' : 'units'}`;
   return [
     {
-      text: `On the whole site ${inside === 1 ? 'is' : 'are'} ${counted}; ${formatPerDay(site.throughputPerHour)} leave a day, and ${flow}. `,
+      text: `On the whole site ${inside === 1 ? 'is' : 'are'} ${inUnit(inside, unit)}; ${formatPerDay(site.throughputPerHour)} leave a day, and ${flow}. `,
       zoneId: site.zone.id,
     },
   ];
@@ -70,7 +63,11 @@ function mind(rows: readonly FloorRow[]): Clause[] {
   return [
     ...(partial ? [{ text: 'The period reaches past what the data speak for. ' }] : []),
     ...(warming > 0
-      ? [{ text: `At its start ${plural(warming, 'area')} still ${warming === 1 ? 'fills' : 'fill'} up from an empty log. ` }]
+      ? [
+          {
+            text: `At its start ${plural(warming, 'area')} still ${warming === 1 ? 'fills' : 'fill'} up from an empty log. `,
+          },
+        ]
       : []),
   ];
 }

@@ -8,7 +8,13 @@ import { useFirstAdmin } from './queries.ts';
 
 /** The first organisation and its admin, for whoever holds the token from the server's log. */
 export function FirstAdminForm({ token, onDone }: { token: string; onDone: () => void }) {
-  const [given, setGiven] = useState({ token, organisation: '', name: '', email: '', password: '' });
+  const [given, setGiven] = useState({
+    token,
+    organisation: '',
+    name: '',
+    email: '',
+    password: '',
+  });
   const create = useFirstAdmin();
   const field = (name: keyof typeof given) => ({
     value: given[name],

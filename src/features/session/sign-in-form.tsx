@@ -48,7 +48,10 @@ export function SignInForm({ onDone }: { onDone: () => void }) {
           <PanelHeading>Accounts of this demo</PanelHeading>
           <ul className="mt-2 flex flex-col gap-1">
             {demoAccounts.map((account) => (
-              <li key={account.email} className="flex flex-wrap items-baseline justify-between gap-2">
+              <li
+                key={account.email}
+                className="flex flex-wrap items-baseline justify-between gap-2"
+              >
                 <span>
                   {account.email}{' '}
                   <span className="text-soft">

@@ -27,10 +27,7 @@ export function NewSiteForm({
       className="flex max-w-md flex-col gap-4"
       onSubmit={(event) => {
         event.preventDefault();
-        create.mutate(
-          { name, timeZone, organisationId },
-          { onSuccess: (site) => onMade(site.id) },
-        );
+        create.mutate({ name, timeZone, organisationId }, { onSuccess: (site) => onMade(site.id) });
       }}
     >
       {organisations.length > 1 ? (

@@ -31,15 +31,7 @@ export function NewUpload({ site }: { site: Site }) {
   );
 }
 
-function PreparedUpload({
-  site,
-  file,
-  onDone,
-}: {
-  site: Site;
-  file: File;
-  onDone: () => void;
-}) {
+function PreparedUpload({ site, file, onDone }: { site: Site; file: File; onDone: () => void }) {
   const [changed, setChanged] = useState<PlanDraft | null>(null);
   const guess = useQuery(previewQuery(site.id, file, null));
   const plan = changed ? wholePlan(changed) : (guess.data?.plan ?? null);

@@ -8,13 +8,7 @@ type Row = UploadPreview['rows'][number];
 const shownRows = 20;
 
 /** The first rows of the file as they would be read. */
-export function PreviewTable({
-  rows,
-  timeZone,
-}: {
-  rows: readonly Row[];
-  timeZone: string;
-}) {
+export function PreviewTable({ rows, timeZone }: { rows: readonly Row[]; timeZone: string }) {
   const columns: Column<Row>[] = [
     { id: 'line', header: 'line', figure: true, value: (row) => row.line },
     {

@@ -57,7 +57,9 @@ export function UploadItem({
               words={`${formatCount(upload.progress.rows)} rows, ${formatBytes(upload.progress.bytes)} of ${formatBytes(upload.progress.bytesTotal)}`}
             />
           </div>
-          {mayChange ? <Button onPress={() => stop.mutate(upload.id)}>Stop this upload</Button> : null}
+          {mayChange ? (
+            <Button onPress={() => stop.mutate(upload.id)}>Stop this upload</Button>
+          ) : null}
         </div>
       ) : null}
       {upload.errorDetail ? <Notice kind="error">{upload.errorDetail}</Notice> : null}

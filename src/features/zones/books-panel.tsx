@@ -1,5 +1,5 @@
 import type { Summary } from '../../../shared/contracts/figures.ts';
-import { formatCount } from '../../lib/format.ts';
+import { formatCount, inUnit } from '../../lib/format.ts';
 import { FigureList } from '../../ui/figure-list.tsx';
 import { PanelHeading } from '../../ui/heading.tsx';
 
@@ -15,7 +15,7 @@ export function BooksPanel({ summary }: { summary: Summary }) {
             `${formatCount(wipStart)} + ${formatCount(arrivals)} in − ${formatCount(departures)} out`,
             formatCount(wipStart + arrivals - departures),
           ],
-          ['counted inside at the end', `${formatCount(wipEnd)} ${summary.unit}`],
+          ['counted inside at the end', inUnit(wipEnd, summary.unit)],
           ['the books', balance ? 'balance' : 'do not balance'],
         ]}
       />

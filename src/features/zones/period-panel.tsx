@@ -1,5 +1,11 @@
 import type { Summary } from '../../../shared/contracts/figures.ts';
-import { formatCount, formatDuration, formatNumber, formatShare } from '../../lib/format.ts';
+import {
+  formatCount,
+  formatDuration,
+  formatNumber,
+  formatShare,
+  inUnit,
+} from '../../lib/format.ts';
 import { FigureList } from '../../ui/figure-list.tsx';
 import { PanelHeading } from '../../ui/heading.tsx';
 
@@ -16,7 +22,7 @@ export function PeriodPanel({ summary }: { summary: Summary }) {
       <FigureList
         rows={[
           ['WIP mean', `${formatNumber(summary.wipMean, 1)} ${summary.unit}`],
-          ['WIP peak', `${formatCount(summary.wipPeak)} ${summary.unit}`],
+          ['WIP peak', inUnit(summary.wipPeak, summary.unit)],
           ['throughput', `${formatNumber(summary.throughputPerHour, 2)} / h`],
           ['flow time, mean', formatDuration(flow)],
           few

@@ -27,7 +27,9 @@ export function SeriesTable({
     figure('flowP85Seconds', 'P85', formatDuration),
     figure('flowP95Seconds', 'P95', formatDuration),
   ];
-  return <DataTable label="Figures by step" columns={columns} rows={points} fileName="series.csv" />;
+  return (
+    <DataTable label="Figures by step" columns={columns} rows={points} fileName="series.csv" />
+  );
 }
 
 type Name = Exclude<keyof SeriesPoint, 'start' | 'end'>;

@@ -1,6 +1,12 @@
 import type { Summary } from '../../../shared/contracts/figures.ts';
 import type { Zone } from '../../../shared/contracts/zones.ts';
-import { formatCount, formatDuration, formatMoment, formatNumber } from '../../lib/format.ts';
+import {
+  formatCount,
+  formatDuration,
+  formatMoment,
+  formatNumber,
+  inUnit,
+} from '../../lib/format.ts';
 import { fewDepartures } from './period-panel.tsx';
 
 /** What a zone's figures say, in words, from the same figures. */
@@ -18,7 +24,7 @@ function level(zone: Zone, summary: Summary): string {
     change === 0
       ? 'as many as at the start'
       : `${formatCount(Math.abs(change))} ${change > 0 ? 'more' : 'fewer'} than at the start`;
-  return `${capital(nameOf(zone))} holds ${formatCount(summary.wipEnd)} ${summary.unit}, ${than}; on average ${formatNumber(summary.wipMean, 1)} were inside.`;
+  return `${capital(nameOf(zone))} holds ${inUnit(summary.wipEnd, summary.unit)}, ${than}; on average ${formatNumber(summary.wipMean, 1)} were inside.`;
 }
 
 function flow(summary: Summary): string {
@@ -32,7 +38,9 @@ function flow(summary: Summary): string {
 function minding(summary: Summary, timeZone: string): string[] {
   return [
     ...(summary.partial && summary.dataUntil
-      ? [`The data speak until ${formatMoment(summary.dataUntil, timeZone)}; after that the level is kept.`]
+      ? [
+          `The data speak until ${formatMoment(summary.dataUntil, timeZone)}; after that the level is kept.`,
+        ]
       : []),
     ...(summary.warmingUp ? ['At its start the zone still fills up from an empty log.'] : []),
     ...(summary.approximate ? ['Percentiles are within 1 %.'] : []),
