@@ -12,7 +12,6 @@ import { migrateDatabase } from './db/migrate.ts';
 import { readSecret } from './db/secrets.ts';
 import { loadDemo } from './demo/load-demo.ts';
 import { readEnv, type Env } from './env.ts';
-import { discardUnfinishedReceipts } from './intake/discard-receipts.ts';
 import { startWorker } from './jobs/queue.ts';
 import { createLog, type Logger } from './log.ts';
 import { developmentClient } from './development-client.ts';
@@ -56,7 +55,6 @@ async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
   const secret = await readSecret(migrating, 'session-key', randomKey);
   if (env.WEIRMARK_DEMO) await loadDemo(db, systemClock);
   const { gate, token } = await createFirstAdminGate(migrating, db);
-  await discardUnfinishedReceipts(db, new Date(Date.now() - unfinishedAfterMs));
   const worker = await startWorker(migrated.applicationUrl, { db, clock: systemClock, log }, log);
   stops.push(() => worker.stop());
   const client = env.WEIRMARK_DEV ? await developmentClient(stops) : serveClient(clientFolder);
@@ -75,15 +73,14 @@ async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
     client,
   );
   const server = createServer(app);
+  // A large file over a slow line takes as long as it takes; headers still have to come in time.
+  server.requestTimeout = 0;
   stops.push(() => close(server));
   const origin = await listen(server, env);
   await answersHealth(origin);
   if (await gate.isOpen()) say(`Make the first admin at ${origin}/first-admin?token=${token}`);
   say(`Weirmark is ready at ${origin}`);
 }
-
-/** A file still arriving after so long was broken off with the server that took it. */
-const unfinishedAfterMs = 6 * 3_600_000;
 
 const randomKey = () =>
   Buffer.from(crypto.getRandomValues(new Uint8Array(32))).toString('base64url');

@@ -1,5 +1,6 @@
 import PgBoss from 'pg-boss';
 import { z } from 'zod';
+import { discardUnfinishedReceipts } from '../intake/discard-receipts.ts';
 import type { Logger } from '../log.ts';
 import type { SiteQueue } from './queues.ts';
 import { findSitesWithWork } from './sites-with-work.ts';
@@ -8,6 +9,8 @@ import { workOnSite, type SiteWork } from './site-work.ts';
 /** How many sites are worked on at once by one server process. */
 const sitesAtOnce = 2;
 const sweepEveryMs = 30_000;
+/** A file still arriving after so long was broken off with the server that took it. */
+const unfinishedAfterMs = 6 * 3_600_000;
 const siteJob = z.object({ organisationId: z.number(), siteId: z.number() });
 
 export interface Worker extends SiteQueue {
@@ -43,6 +46,8 @@ export async function startWorker(url: string, work: SiteWork, log: Logger): Pro
     for (const id of workerIds) boss.notifyWorker(id);
   };
   const sweep = async () => {
+    const broken = new Date(work.clock.now().getTime() - unfinishedAfterMs);
+    await discardUnfinishedReceipts(work.db, broken);
     for (const site of await findSitesWithWork(work.db))
       await wake(site.organisationId, site.siteId);
   };
