@@ -1,4 +1,4 @@
-import { Link, useNavigate, useSearchParams } from 'react-router-dom';
+import { Link, Navigate, useSearchParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
 import { FirstAdminForm } from '../features/session/first-admin-form.tsx';
 import { useSession } from '../features/session/queries.ts';
@@ -7,9 +7,9 @@ import { useTitle } from './use-page.ts';
 
 export function Component() {
   useTitle('First admin');
-  const { awaitsFirstAdmin } = useSession();
+  const { awaitsFirstAdmin, session } = useSession();
   const [search] = useSearchParams();
-  const navigate = useNavigate();
+  if (session) return <Navigate to={paths.sites} replace />;
   return (
     <div className="mx-auto flex max-w-md flex-col gap-6">
       <PageHeading>First admin</PageHeading>
@@ -19,10 +19,7 @@ export function Component() {
             Nobody is here yet. Whoever holds the token from the server’s log makes the organisation
             and becomes its admin.
           </Sentence>
-          <FirstAdminForm
-            token={search.get('token') ?? ''}
-            onDone={() => void navigate(paths.sites)}
-          />
+          <FirstAdminForm token={search.get('token') ?? ''} />
         </>
       ) : (
         <Sentence>

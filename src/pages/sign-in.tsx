@@ -1,4 +1,4 @@
-import { Navigate, useNavigate, useSearchParams } from 'react-router-dom';
+import { Navigate, useSearchParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
 import { useSession } from '../features/session/queries.ts';
 import { SignInForm } from '../features/session/sign-in-form.tsx';
@@ -9,7 +9,6 @@ export function Component() {
   useTitle('Sign in');
   const { session, awaitsFirstAdmin } = useSession();
   const [search] = useSearchParams();
-  const navigate = useNavigate();
   const asked = search.get('to') ?? paths.sites;
   // Only an address of our own: never one of another site.
   const to = asked.startsWith('/') && !asked.startsWith('//') ? asked : paths.sites;
@@ -21,7 +20,7 @@ export function Component() {
       <Sentence>
         See how much work sits where, how fast it moves, and whether the figures can be trusted.
       </Sentence>
-      <SignInForm onDone={() => void navigate(to, { replace: true })} />
+      <SignInForm />
     </div>
   );
 }

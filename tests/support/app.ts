@@ -1,7 +1,7 @@
 import type { Express } from 'express';
 import { pino } from 'pino';
 import request from 'supertest';
-import { buildApp } from '../../server/app.ts';
+import { buildApp, serveClient } from '../../server/app.ts';
 import { createFirstAdminGate } from '../../server/auth/first-admin.ts';
 import { createSignInThrottle } from '../../server/auth/throttle.ts';
 import type { Clock } from '../../server/clock.ts';
@@ -41,7 +41,9 @@ function testClock(start: Date): TestClock {
 /** Fixed, so that what depends on the day of the run shows. */
 export const testNow = new Date('2026-11-30T12:00:00Z');
 
-export async function startTestApp(options: { demo?: boolean } = {}): Promise<TestApp> {
+export async function startTestApp(
+  options: { demo?: boolean; clientFolder?: string } = {},
+): Promise<TestApp> {
   const database = await cloneDatabase();
   const db = connect(database.applicationUrl, { max: 8 });
   const migrating = connect(database.migratingUrl, { max: 2 });
@@ -50,7 +52,7 @@ export async function startTestApp(options: { demo?: boolean } = {}): Promise<Te
   if (options.demo !== false) await loadDemo(db, clock);
   const { gate, token } = await createFirstAdminGate(migrating, db);
   let work: Promise<unknown> = Promise.resolve();
-  const app = buildApp({
+  const dependencies = {
     db,
     clock,
     log,
@@ -58,14 +60,16 @@ export async function startTestApp(options: { demo?: boolean } = {}): Promise<Te
     sessionKey: Buffer.alloc(32, 7),
     throttle: createSignInThrottle(db),
     queue: {
-      wake: (organisationId, siteId) => {
+      wake: (organisationId: number, siteId: number) => {
         work = work.then(() => workOnSite({ db, clock, log }, organisationId, siteId));
         return Promise.resolve();
       },
     },
     firstAdmin: gate,
     checkAnswers: true,
-  });
+  };
+  const client = options.clientFolder === undefined ? undefined : serveClient(options.clientFolder);
+  const app = buildApp(dependencies, client);
   return {
     app,
     db,

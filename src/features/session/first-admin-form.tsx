@@ -7,7 +7,7 @@ import { TextField } from '../../ui/text-field.tsx';
 import { useFirstAdmin } from './queries.ts';
 
 /** The first organisation and its admin, for whoever holds the token from the server's log. */
-export function FirstAdminForm({ token, onDone }: { token: string; onDone: () => void }) {
+export function FirstAdminForm({ token }: { token: string }) {
   const [given, setGiven] = useState({
     token,
     organisation: '',
@@ -26,7 +26,7 @@ export function FirstAdminForm({ token, onDone }: { token: string; onDone: () =>
       className="flex flex-col gap-4"
       onSubmit={(event) => {
         event.preventDefault();
-        create.mutate(given, { onSuccess: onDone });
+        create.mutate(given);
       }}
     >
       <TextField label="Token from the server's log" {...field('token')} />

@@ -8,7 +8,7 @@ import { TextField } from '../../ui/text-field.tsx';
 import { useSession, useSignIn } from './queries.ts';
 
 /** E-mail and password; on a demo, one account per role to fill in. */
-export function SignInForm({ onDone }: { onDone: () => void }) {
+export function SignInForm() {
   const { demoAccounts, demoPassword } = useSession();
   const [email, setEmail] = useState('');
   const [password, setPassword] = useState('');
@@ -19,7 +19,7 @@ export function SignInForm({ onDone }: { onDone: () => void }) {
         className="flex flex-col gap-4"
         onSubmit={(event) => {
           event.preventDefault();
-          signIn.mutate({ email, password }, { onSuccess: onDone });
+          signIn.mutate({ email, password });
         }}
       >
         <TextField

@@ -68,7 +68,7 @@ export function UploadItem({
       ) : null}
       <div className="flex flex-wrap items-center gap-4">
         {upload.account.refused > 0 ? (
-          <a href={refused} download={`refused-${upload.id}.csv`}>
+          <a href={refused} download>
             Download the refused rows
           </a>
         ) : null}
