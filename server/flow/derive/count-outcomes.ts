@@ -39,7 +39,10 @@ const each = (of: (column: SQL) => SQL, by: SQL): SQL =>
  * where it gives another value than was given last, completes where it gives what was blank, and is the
  * same otherwise. Needs `told_row`.
  */
-export async function countOutcomes({ tx }: Derivation, uploadId: number): Promise<OutcomeCounts> {
+export async function countOutcomes(
+  { tx, organisationId, siteId }: Derivation,
+  uploadId: number,
+): Promise<OutcomeCounts> {
   const record = sql`first_upload, first_line, first_part`;
   const { rows } = await tx.execute(sql`/* count outcomes */
     with repeated as (
@@ -48,7 +51,7 @@ export async function countOutcomes({ tx }: Derivation, uploadId: number): Promi
         (${each((column) => column, sql`, `)}) is not distinct from (
           ${each((column) => sql`lag(${column}) over in_order`, sql`, `)}
         ) as repeats
-      from told_row where versions > 1
+      from told_row
       window in_order as (partition by ${record} order by version)
     ),
     telling as (
@@ -76,8 +79,15 @@ export async function countOutcomes({ tx }: Derivation, uploadId: number): Promi
       from repeated join telling using (${record})
     ),
     told as (
-      select count(*) filter (where version = 1) as new, count(*) as total
-      from told_row where upload_id = ${uploadId}
+      select
+        (
+          select count(*) from upload_row
+          where organisation_id = ${organisationId} and site_id = ${siteId}
+            and upload_id = ${uploadId}
+        ) as total,
+        (
+          select count(*) from told_row where upload_id = ${uploadId} and version > 1
+        ) as retelling
     ),
     judged as (
       select
@@ -86,7 +96,8 @@ export async function countOutcomes({ tx }: Derivation, uploadId: number): Promi
       from compared where upload_id = ${uploadId} and version > 1
     )
     select
-      new, completing, correcting, total - new - completing - correcting as same
+      total - retelling as new, completing, correcting,
+      retelling - completing - correcting as same
     from told cross join judged`);
   return outcomeRow.parse(rows[0]);
 }

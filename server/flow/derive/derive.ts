@@ -1,13 +1,14 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
+import { stepBorders } from '../../../shared/local-time.ts';
 import type { Derivation } from './derivation.ts';
 import { dayGrid, type DayGrid } from './local-grid.ts';
 import { mergeRecords } from './merge-records.ts';
 import { refreshWarmUp, refreshZones } from './refresh-zones.ts';
-import { replaceAllFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
+import { replaceFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
 import { replaceLevelDays } from './replace-level-days.ts';
 import {
-  replaceAllLevelHours,
+  replaceLevelHours,
   replaceTouchedLevelHours,
   type DerivedZone,
 } from './replace-level-hours.ts';
@@ -36,11 +37,13 @@ export async function deriveFromToldRows(derivation: Derivation): Promise<void> 
   await mergeRecords(derivation);
   await findChangedJobs(derivation);
   await createTouchedHours(derivation);
+  // Where most jobs changed, finding the hours to make would cost more than making all from the first on.
   const mostly = await isMostOfSite(derivation);
+  const first = mostly ? await firstChange(derivation) : null;
   if (!mostly) await touchHoursOfChangedJobs(derivation);
   await replaceRecords(derivation);
   await replaceStays(derivation, sql`select job_key from changed_job`);
-  if (mostly) await deriveAllLevels(derivation, await readZones(derivation));
+  if (mostly) await deriveLevelsFrom(derivation, await readZones(derivation), unitsChanged, first);
   else await deriveTouchedLevels(derivation, unitsChanged);
   await finish(derivation);
 }
@@ -56,7 +59,7 @@ export async function rebuildSite(derivation: Derivation): Promise<void> {
   await tx.execute(sql`create temp table changed_job on commit drop as select * from touched_job`);
   await replaceRecords(derivation);
   await replaceStays(derivation, sql`select job_key from changed_job`);
-  await deriveAllLevels(derivation, await readZones(derivation));
+  await deriveLevels(derivation, await readZones(derivation), -Infinity);
   await finish(derivation);
 }
 
@@ -70,9 +73,10 @@ export async function deriveZone(derivation: Derivation, zoneId: number): Promis
     zoneId,
   );
   const zones = await readZones(derivation);
-  await deriveAllLevels(
+  await deriveLevels(
     derivation,
     zones.filter((zone) => zone.id === zoneId),
+    -Infinity,
   );
   await finish(derivation);
 }
@@ -113,35 +117,61 @@ async function readZones({ tx, organisationId, siteId }: Derivation): Promise<De
     .map((row) => ({ id: row.id, hasQuantities: row.has_quantities }));
 }
 
-async function deriveAllLevels(
+/** The first moment at which a changed job comes, starts or leaves anywhere, as it stood or as it is merged. */
+async function firstChange({ tx, organisationId, siteId }: Derivation): Promise<number | null> {
+  const { rows } = await tx.execute(sql`/* first change */
+    select least(
+      (select min(least(arrived, started, finished, entered)) from merged_record),
+      (
+        select min(least(arrived, started, finished, entered))
+        from record join changed_job using (job_key)
+        where organisation_id = ${organisationId} and site_id = ${siteId}
+      )
+    ) as first`);
+  return z.object({ first: z.coerce.date().nullable() }).parse(rows[0]).first?.getTime() ?? null;
+}
+
+/** Levels from the first change on; from the beginning for zones whose levels in units come or go. */
+async function deriveLevelsFrom(
   derivation: Derivation,
   zones: readonly DerivedZone[],
+  unitsChanged: readonly number[],
+  first: number | null,
 ): Promise<void> {
-  await replaceAllLevelHours(derivation, zones);
+  const whole = zones.filter((zone) => unitsChanged.includes(zone.id));
+  if (whole.length > 0) await deriveLevels(derivation, whole, -Infinity);
+  if (first === null) return;
+  const others = zones.filter((zone) => !unitsChanged.includes(zone.id));
+  await deriveLevels(derivation, others, startOfDay(derivation, first));
+}
+
+/** Hours, days and departures of the given zones from the local day that begins at `from` on. */
+async function deriveLevels(
+  derivation: Derivation,
+  zones: readonly DerivedZone[],
+  from: number,
+): Promise<void> {
+  if (zones.length === 0) return;
+  await replaceLevelHours(derivation, zones, from);
   const grid = await gridOfHours(derivation);
   const ids = zones.map((zone) => zone.id);
   if (!grid) return removeDays(derivation, ids);
-  await replaceLevelDays(derivation, new Map(ids.map((id) => [id, -Infinity])), grid);
-  await replaceAllFlowDays(derivation, ids, grid);
+  await replaceLevelDays(derivation, new Map(ids.map((id) => [id, from])), grid);
+  await replaceFlowDays(derivation, ids, grid, from);
 }
+
+const startOfDay = ({ rules }: Derivation, at: number): number =>
+  stepBorders(rules, 'day', at, at + 1)[0] ?? at;
 
 async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[]): Promise<void> {
   await touchHoursOfChangedJobs(derivation);
   const touched = await readTouchedZones(derivation);
-  const whole = new Set([
-    ...unitsChanged,
-    ...touched.filter((zone) => zone.mostly).map((zone) => zone.zoneId),
-  ]);
-  if (whole.size > 0) {
-    await derivation.tx.execute(sql`/* leave whole zones to the other way */
-      delete from touched_hour where zone_id = any(${sql.param([...whole])}::integer[])`);
-    const zones = await readZones(derivation);
-    await deriveAllLevels(
-      derivation,
-      zones.filter((zone) => whole.has(zone.id)),
-    );
-  }
-  const parts = touched.filter((zone) => !whole.has(zone.zoneId));
+  const from = new Map(
+    touched.filter((zone) => zone.mostly).map((zone) => [zone.zoneId, zone.from]),
+  );
+  for (const zoneId of unitsChanged) from.set(zoneId, -Infinity);
+  if (from.size > 0) await deriveZonesFrom(derivation, from);
+  const parts = touched.filter((zone) => !from.has(zone.zoneId));
   if (parts.length === 0) return;
   const grid = await gridOfTouchedHours(derivation);
   if (!grid) return;
@@ -150,6 +180,19 @@ async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[
   await replaceTouchedFlowDays(derivation, grid);
   const wide = (await gridOfHours(derivation)) ?? grid;
   await replaceLevelDays(derivation, new Map(parts.map((zone) => [zone.zoneId, zone.from])), wide);
+}
+
+/** Zones of which so many hours are touched that all from the first on are made. */
+async function deriveZonesFrom(
+  derivation: Derivation,
+  from: ReadonlyMap<number, number>,
+): Promise<void> {
+  await derivation.tx.execute(sql`/* leave these zones to the other way */
+    delete from touched_hour where zone_id = any(${sql.param([...from.keys()])}::integer[])`);
+  for (const zone of await readZones(derivation)) {
+    const begins = from.get(zone.id);
+    if (begins !== undefined) await deriveLevels(derivation, [zone], begins);
+  }
 }
 
 async function finish(derivation: Derivation): Promise<void> {

@@ -1,5 +1,6 @@
 import { sql } from 'drizzle-orm';
 import type { Derivation } from './derivation.ts';
+import { keyedRows } from './told-rows.ts';
 
 /**
  * Temporary table `merged_record`: the records of the touched jobs as they now stand, in the columns of
@@ -11,13 +12,13 @@ export async function mergeRecords(derivation: Derivation): Promise<void> {
   await chainRecords(derivation);
 }
 
-/** Temporary table `folded_record`: one row for all rows that tell of the same record. */
+/** Temporary table `folded_record`: one row for all rows that tell of the same record, where there are several. */
 async function foldVersions({ tx }: Derivation): Promise<void> {
   await tx.execute(sql`drop table if exists folded_record`);
   await tx.execute(sql`/* fold versions */
     create temp table folded_record on commit drop as
     with in_order as (
-      select * from told_row where versions > 1
+      select * from told_row
       order by first_upload, first_line, first_part, version
     ),
     last_given as (
@@ -83,12 +84,6 @@ async function foldVersions({ tx }: Derivation): Promise<void> {
       job_key, area_id, arrived, started, finished,
       record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
       upload_id, line, part
-    from told_row where versions = 1
-    union all
-    select
-      job_key, area_id, arrived, started, finished,
-      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
-      upload_id, line, part
     from folded join source using (first_upload, first_line, first_part)`);
 }
 
@@ -102,8 +97,26 @@ async function chainRecords(derivation: Derivation): Promise<void> {
   await tx.execute(sql`drop table if exists merged_record`);
   await tx.execute(sql`/* chain records */
     create temp table merged_record on commit drop as
-    with placed as (
-      select *, coalesce(started, arrived, finished) as about from folded_record
+    with ${keyedRows(derivation)},
+    every_record as (
+      select
+        job_key, area_id, arrived, started, finished,
+        record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+        upload_id, line, part
+      from keyed
+      where not exists (
+        select from retold
+        where retold.job_key = keyed.job_key
+          and retold.area_id = keyed.area_id
+          and retold.about = keyed.about
+          and keyed.record_key is null
+      )
+      and not exists (select from retold where retold.record_key = keyed.record_key)
+      union all
+      select * from folded_record
+    ),
+    placed as (
+      select *, coalesce(started, arrived, finished) as about from every_record
     ),
     judged as (
       select

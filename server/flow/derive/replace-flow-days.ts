@@ -1,5 +1,6 @@
 import { sql, type SQL } from 'drizzle-orm';
 import { binRatio, zeroBin } from '../../methods/binned-percentile.ts';
+import { instantValue } from '../instant-value.ts';
 import { lengthReaches } from '../length-reach.ts';
 import type { Derivation } from './derivation.ts';
 import { dayGridRow, type DayGrid } from './local-grid.ts';
@@ -34,23 +35,24 @@ const summed = ({ organisationId, siteId }: Derivation, departures: SQL, grid: D
   from binned
   group by zone_id, place`;
 
-/** Derives the departures of every day of the given zones afresh. */
-export async function replaceAllFlowDays(
+/** Derives the departures of every day of the given zones afresh, from the day that begins at `from` on. */
+export async function replaceFlowDays(
   derivation: Derivation,
   zoneIds: readonly number[],
   grid: DayGrid,
+  from: number,
 ): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
+  const begins = sql`${instantValue(from)}::timestamptz`;
   const ofZones = sql`organisation_id = ${organisationId} and site_id = ${siteId}
     and zone_id = any(${sql.param(zoneIds)}::integer[])`;
-  await tx.execute(sql`/* remove flow days */ delete from flow_day where ${ofZones}`);
-  await tx.execute(
-    sql`/* insert flow days */ ${summed(
-      derivation,
-      sql`select * from zone_stay where ${ofZones} and left_at is not null`,
-      grid,
-    )}`,
-  );
+  await tx.execute(sql`/* remove flow days */
+    delete from flow_day where ${ofZones} and starts >= ${begins}`);
+  await tx.execute(sql`/* insert flow days */ ${summed(
+    derivation,
+    sql`select * from zone_stay where ${ofZones} and left_at is not null and left_at >= ${begins}`,
+    grid,
+  )}`);
 }
 
 /** Derives the departures of the days named in `touched_day` (zone_id, starts, ends) afresh. */

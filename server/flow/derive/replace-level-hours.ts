@@ -1,4 +1,5 @@
 import { sql, type SQL } from 'drizzle-orm';
+import { instantValue } from '../instant-value.ts';
 import { lengthReaches } from '../length-reach.ts';
 import type { Measure } from '../level-blocks.ts';
 import type { Derivation } from './derivation.ts';
@@ -24,7 +25,8 @@ interface MeasureSource {
   inUnits: boolean;
 }
 
-const one = sql`1::bigint`;
+// A sum of integers in a window is an integer; of longer ones it would be an exact decimal, and slow.
+const one = sql`1::integer`;
 const quantity = sql`coalesce(quantity, 1)`;
 const stays = { view: sql`zone_stay`, up: sql`entered`, down: sql`left_at` };
 const processes = { view: sql`zone_process`, up: sql`process_from`, down: sql`process_to` };
@@ -84,28 +86,32 @@ const insertHours = (
     group by zone_id, hour`;
 };
 
-/** Derives every hour of the given zones afresh, a zone at a time: short sorts stay in memory. */
-export async function replaceAllLevelHours(
+/**
+ * Derives every hour of the given zones afresh from one local hour on (or from the beginning), a zone at a
+ * time: short sorts stay in memory.
+ */
+export async function replaceLevelHours(
   derivation: Derivation,
   zones: readonly DerivedZone[],
+  from: number,
 ): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  const begins = sql`${instantValue(from)}::timestamptz`;
   for (const { id, hasQuantities } of zones) {
     await tx.execute(sql`/* remove level hours */
-      delete from level_hour where ${ofSite} and zone_id = ${id}`);
+      delete from level_hour where ${ofSite} and zone_id = ${id} and hour >= ${begins}`);
     for (const { measure, view, up, down, weight, inUnits } of sources) {
       if (inUnits && !hasQuantities) continue;
-      await tx.execute(
-        sql`/* insert level hours */ ${insertHours(
-          derivation,
-          measure,
-          sql`
+      await tx.execute(sql`/* insert level hours */ ${insertHours(
+        derivation,
+        measure,
+        sql`
           select zone_id, ${up} as up_at, ${down} as down_at, ${weight} as weight
-          from ${view} where ${ofSite} and zone_id = ${id}`,
-          sql`true`,
-        )}`,
-      );
+          from ${view}
+          where ${ofSite} and zone_id = ${id} and (left_at is null or left_at >= ${begins})`,
+        sql`at >= ${begins}`,
+      )}`);
     }
   }
 }

@@ -49,7 +49,10 @@ export async function replaceStays(
       group by zone_id, counts_from
     ),
     seen as (
-      select record.*, spanning.zone_id, spanning.counts_from, spanned.area_id is not null as inside
+      select
+        record.job_key, record.ordinal, record.pass, record.entered, record.started,
+        record.left_at, record.finish_inferred, record.quantity, record.upload_id, record.line,
+        spanning.zone_id, spanning.counts_from, spanned.area_id is not null as inside
       from record
       cross join spanning
       left join spanned
@@ -109,6 +112,5 @@ export async function replaceStays(
       process_microseconds, process_from, process_to,
       quantity, finish_inferred, upload_id, line
     from whole
-    where entered is not null
-    order by job_key, zone_id`);
+    where entered is not null`);
 }

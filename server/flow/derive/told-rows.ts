@@ -1,4 +1,4 @@
-import { sql } from 'drizzle-orm';
+import { sql, type SQL } from 'drizzle-orm';
 import type { Derivation } from './derivation.ts';
 
 /** Gathers in temporary table `touched_job` every job of the site, for a rebuild. */
@@ -23,57 +23,77 @@ export async function createTouchedJobs(tx: Derivation['tx']): Promise<void> {
 }
 
 /**
- * Temporary table `told_row`: every row ever told of the touched jobs, with the record that it tells of.
- * Rows tell of the same record by their record id where they have one, else by job, area and start
- * (arrival, else finish, where there is none). A row that knows only the arrival belongs to the record
- * that began there. A record is named by its first row; `version` counts its rows in order of receipt.
+ * Gathers what was ever told of the touched jobs. Rows tell of the same record by their record id where
+ * they have one, else by job, area and start (arrival, else finish, where there is none). A row that knows
+ * only the arrival belongs to the record that began there.
+ *
+ * Most records are told of once. Temporary table `retold` names the others, and `told_row` has all their
+ * rows, each record named by its first row, `version` counting its rows in order of receipt.
  */
-export async function gatherToldRows({ tx, organisationId, siteId }: Derivation): Promise<void> {
-  await tx.execute(sql`drop table if exists told_row`);
-  await tx.execute(sql`/* told rows */
+export async function gatherToldRows(derivation: Derivation): Promise<void> {
+  const { tx } = derivation;
+  await tx.execute(sql`drop table if exists retold, told_row`);
+  await tx.execute(sql`/* records told of more than once */
+    create temp table retold on commit drop as
+    with ${keyedRows(derivation)}
+    select job_key, area_id, about, null::text as record_key
+    from keyed where record_key is null
+    group by job_key, area_id, about having count(*) > 1
+    union all
+    select null, null, null, record_key
+    from keyed where record_key is not null
+    group by record_key having count(*) > 1`);
+  await tx.execute(sql`analyze retold`);
+  await tx.execute(sql`/* told rows of records told of more than once */
     create temp table told_row on commit drop as
-    with told as (
-      select told.*
-      from upload_row as told join touched_job using (job_key)
-      where organisation_id = ${organisationId} and site_id = ${siteId}
-    ),
-    keyed as (
-      select
-        told.*,
-        coalesce(
-          started,
-          case when arrived is not null
-            then min(started) over (partition by job_key, area_id, arrived)
-          end,
-          arrived,
-          finished
-        ) as about
-      from told
+    with ${keyedRows(derivation)},
+    repeated as (
+      select keyed.* from keyed join retold
+        on retold.job_key = keyed.job_key
+        and retold.area_id = keyed.area_id
+        and retold.about = keyed.about
+      where keyed.record_key is null
+      union all
+      select keyed.* from keyed join retold on retold.record_key = keyed.record_key
     )
     select
-      keyed.*,
+      repeated.*,
       row_number() over same_record as version,
-      count(*) over (
-        same_record rows between unbounded preceding and unbounded following
-      ) as versions,
       first_value(upload_id) over same_record as first_upload,
       first_value(line) over same_record as first_line,
       first_value(part) over same_record as first_part
-    from keyed where record_key is null
+    from repeated
     window same_record as (
-      partition by job_key, area_id, about order by upload_id, line, part
-    )
-    union all
-    select
-      keyed.*,
-      row_number() over same_record,
-      count(*) over (
-        same_record rows between unbounded preceding and unbounded following
-      ),
-      first_value(upload_id) over same_record,
-      first_value(line) over same_record,
-      first_value(part) over same_record
-    from keyed where record_key is not null
-    window same_record as (partition by record_key order by upload_id, line, part)`);
+      partition by
+        record_key,
+        case when record_key is null then job_key end,
+        case when record_key is null then area_id end,
+        case when record_key is null then about end
+      order by upload_id, line, part
+    )`);
   await tx.execute(sql`analyze told_row`);
 }
+
+/** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. */
+export const keyedRows = ({ organisationId, siteId }: Derivation): SQL => sql`
+  told as (
+    select told.*
+    from upload_row as told join touched_job using (job_key)
+    where organisation_id = ${organisationId} and site_id = ${siteId}
+  ),
+  begun as (
+    select job_key, area_id, arrived, min(started) as started
+    from told where arrived is not null and started is not null
+    group by job_key, area_id, arrived
+  ),
+  keyed as (
+    select
+      told.*,
+      coalesce(told.started, begun.started, told.arrived, told.finished) as about
+    from told
+    left join begun
+      on told.started is null
+      and begun.job_key = told.job_key
+      and begun.area_id = told.area_id
+      and begun.arrived = told.arrived
+  )`;

@@ -52,7 +52,7 @@ export interface TouchedZone {
   zoneId: number;
   /** First moment of the first day that has a touched hour. */
   from: number;
-  /** Whether so many hours are touched that deriving all of them costs less. */
+  /** Whether so many hours are touched that deriving all from there on costs less. */
   mostly: boolean;
 }
 
@@ -69,6 +69,7 @@ export async function readTouchedZones(derivation: Derivation): Promise<TouchedZ
         select count(*) from level_hour
         where organisation_id = ${organisationId} and site_id = ${siteId}
           and level_hour.zone_id = touched.zone_id and measure = 'inside_jobs'
+          and hour >= first_hour
       ) as standing
     from touched`);
   return z
