@@ -51,11 +51,7 @@ async function rebuildAll(db: Database): Promise<boolean> {
   return same;
 }
 
-async function rebuildOne(
-  db: Database,
-  organisationId: number,
-  siteId: number,
-): Promise<string[]> {
+async function rebuildOne(db: Database, organisationId: number, siteId: number): Promise<string[]> {
   return inDerivation(db, organisationId, siteId, async (derivation) => {
     const before = await readDerived(derivation.tx, organisationId, siteId);
     await rebuildSite(derivation);

@@ -33,7 +33,14 @@ export function levelChart(
       }),
       Plot.rect(
         known.filter((point) => point.inProcessMean !== null),
-        { x1: 'start', x2: 'end', y1: 0, y2: 'inProcessMean', fill: 'var(--wm-deep)', shapeRendering: 'crispEdges' },
+        {
+          x1: 'start',
+          x2: 'end',
+          y1: 0,
+          y2: 'inProcessMean',
+          fill: 'var(--wm-deep)',
+          shapeRendering: 'crispEdges',
+        },
       ),
       Plot.line(edges(points, line), {
         x: 'at',

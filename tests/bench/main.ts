@@ -46,7 +46,11 @@ try {
   const migrating = connect(cluster.migratingUrl, { max: 2 });
   const db = connect(applicationUrl, { max: 2 });
   const server = await BenchServer.start(cluster.migratingUrl);
-  stops.push(() => server.stop(), () => db.$client.end(), () => migrating.$client.end());
+  stops.push(
+    () => server.stop(),
+    () => db.$client.end(),
+    () => migrating.$client.end(),
+  );
 
   say(`Writing simulated logs of ${size / million} M rows …`);
   const small = await logFile('S', 100_000, 1);

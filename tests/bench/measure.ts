@@ -34,7 +34,8 @@ const shown = (value: number) =>
 
 /** Prints a bar with its figure. @returns whether it was met */
 export function report({ what, value, unit, atMost, atLeast }: Bar): boolean {
-  const met = (atMost === undefined || value <= atMost) && (atLeast === undefined || value >= atLeast);
+  const met =
+    (atMost === undefined || value <= atMost) && (atLeast === undefined || value >= atLeast);
   const bar =
     atMost === undefined
       ? atLeast === undefined

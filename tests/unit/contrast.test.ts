@@ -15,7 +15,10 @@ function tokensOf(selector: string): Record<string, string> {
   );
 }
 
-const themes = { light: tokensOf(":root,\n[data-theme='light']"), dark: tokensOf("[data-theme='dark'] {") };
+const themes = {
+  light: tokensOf(":root,\n[data-theme='light']"),
+  dark: tokensOf("[data-theme='dark'] {"),
+};
 
 function luminance(hex: string): number {
   const [red = 0, green = 0, blue = 0] = [1, 3, 5]

@@ -34,9 +34,12 @@ describe('a length of time', () => {
 
 describe('figures', () => {
   it('that are not known are a dash', () => {
-    expect([formatCount(null), formatNumber(null, 1), formatPerDay(null), formatShare(null)]).toEqual(
-      Array(4).fill(unknown),
-    );
+    expect([
+      formatCount(null),
+      formatNumber(null, 1),
+      formatPerDay(null),
+      formatShare(null),
+    ]).toEqual(Array(4).fill(unknown));
   });
 
   it('that round to zero have no sign', () => {

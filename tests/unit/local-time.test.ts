@@ -61,7 +61,12 @@ describe('an ISO week', () => {
 describe('local hours', () => {
   it('divide a day of 25 hours into 25', () => {
     const rules = zoneRules('Europe/Dublin');
-    const [from = 0, to = 0] = stepBorders(rules, 'day', at('2026-10-25T12:00Z'), at('2026-10-25T13:00Z'));
+    const [from = 0, to = 0] = stepBorders(
+      rules,
+      'day',
+      at('2026-10-25T12:00Z'),
+      at('2026-10-25T13:00Z'),
+    );
     expect(hours(stepBorders(rules, 'hour', from, to))).toEqual(Array(25).fill(1));
   });
 

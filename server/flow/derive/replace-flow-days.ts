@@ -48,11 +48,13 @@ export async function replaceFlowDays(
     and zone_id = any(${sql.param(zoneIds)}::integer[])`;
   await tx.execute(sql`/* remove flow days */
     delete from flow_day where ${ofZones} and starts >= ${begins}`);
-  await tx.execute(sql`/* insert flow days */ ${summed(
-    derivation,
-    sql`select * from zone_stay where ${ofZones} and left_at is not null and left_at >= ${begins}`,
-    grid,
-  )}`);
+  await tx.execute(
+    sql`/* insert flow days */ ${summed(
+      derivation,
+      sql`select * from zone_stay where ${ofZones} and left_at is not null and left_at >= ${begins}`,
+      grid,
+    )}`,
+  );
 }
 
 /** Derives the departures of the days named in `touched_day` (zone_id, starts, ends) afresh. */

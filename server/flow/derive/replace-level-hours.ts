@@ -103,15 +103,17 @@ export async function replaceLevelHours(
       delete from level_hour where ${ofSite} and zone_id = ${id} and hour >= ${begins}`);
     for (const { measure, view, up, down, weight, inUnits } of sources) {
       if (inUnits && !hasQuantities) continue;
-      await tx.execute(sql`/* insert level hours */ ${insertHours(
-        derivation,
-        measure,
-        sql`
+      await tx.execute(
+        sql`/* insert level hours */ ${insertHours(
+          derivation,
+          measure,
+          sql`
           select zone_id, ${up} as up_at, ${down} as down_at, ${weight} as weight
           from ${view}
           where ${ofSite} and zone_id = ${id} and (left_at is null or left_at >= ${begins})`,
-        sql`at >= ${begins}`,
-      )}`);
+          sql`at >= ${begins}`,
+        )}`,
+      );
     }
   }
 }
