@@ -43,6 +43,23 @@ CREATE TABLE "flow_day" (
 );
 --> statement-breakpoint
 ALTER TABLE "flow_day" ENABLE ROW LEVEL SECURITY;--> statement-breakpoint
+CREATE TABLE "flow_month" (
+	"organisation_id" integer NOT NULL,
+	"site_id" integer NOT NULL,
+	"zone_id" integer NOT NULL,
+	"month" date NOT NULL,
+	"departures" integer NOT NULL,
+	"flow_microseconds" numeric NOT NULL,
+	"queue_known" integer NOT NULL,
+	"queue_microseconds" numeric NOT NULL,
+	"process_known" integer NOT NULL,
+	"process_microseconds" numeric NOT NULL,
+	"bins" integer[] NOT NULL,
+	"counts" integer[] NOT NULL,
+	CONSTRAINT "flow_month_organisation_id_site_id_zone_id_month_pk" PRIMARY KEY("organisation_id","site_id","zone_id","month")
+);
+--> statement-breakpoint
+ALTER TABLE "flow_month" ENABLE ROW LEVEL SECURITY;--> statement-breakpoint
 CREATE TABLE "level_day" (
 	"organisation_id" integer NOT NULL,
 	"site_id" integer NOT NULL,
@@ -410,6 +427,7 @@ CREATE TABLE "zone_fact" (
 --> statement-breakpoint
 ALTER TABLE "zone_fact" ENABLE ROW LEVEL SECURITY;--> statement-breakpoint
 ALTER TABLE "flow_day" ADD CONSTRAINT "flow_day_organisation_id_site_id_zone_id_zone_organisation_id_site_id_id_fk" FOREIGN KEY ("organisation_id","site_id","zone_id") REFERENCES "public"."zone"("organisation_id","site_id","id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "flow_month" ADD CONSTRAINT "flow_month_organisation_id_site_id_zone_id_zone_organisation_id_site_id_id_fk" FOREIGN KEY ("organisation_id","site_id","zone_id") REFERENCES "public"."zone"("organisation_id","site_id","id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "level_day" ADD CONSTRAINT "level_day_organisation_id_site_id_zone_id_zone_organisation_id_site_id_id_fk" FOREIGN KEY ("organisation_id","site_id","zone_id") REFERENCES "public"."zone"("organisation_id","site_id","id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "level_hour" ADD CONSTRAINT "level_hour_organisation_id_site_id_zone_id_zone_organisation_id_site_id_id_fk" FOREIGN KEY ("organisation_id","site_id","zone_id") REFERENCES "public"."zone"("organisation_id","site_id","id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "access_key" ADD CONSTRAINT "access_key_organisation_id_organisation_id_fk" FOREIGN KEY ("organisation_id") REFERENCES "public"."organisation"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
@@ -446,6 +464,7 @@ CREATE INDEX "upload_row_of_upload" ON "upload_row" USING brin ("site_id","uploa
 CREATE INDEX "upload_row_by_record_key" ON "upload_row" USING btree ("organisation_id","site_id","record_key") WHERE record_key is not null;--> statement-breakpoint
 CREATE POLICY "of_the_organisation" ON "audit_entry" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint
 CREATE POLICY "of_the_organisation" ON "flow_day" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint
+CREATE POLICY "of_the_organisation" ON "flow_month" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint
 CREATE POLICY "of_the_organisation" ON "level_day" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint
 CREATE POLICY "of_the_organisation" ON "level_hour" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint
 CREATE POLICY "of_the_organisation" ON "record" AS PERMISSIVE FOR ALL TO public USING (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer)) WITH CHECK (organisation_id = (select nullif(current_setting('weirmark.organisation_id', true), '')::integer));--> statement-breakpoint

@@ -15,7 +15,7 @@ grant select, insert, update, delete on
   organisation, person, membership, session, access_key, sign_in_throttle, site_directory,
   site, shift, closure, zone, area, area_spelling, zone_area, zone_fact, cap,
   upload, upload_chunk, upload_area, upload_row, refused_row, column_plan,
-  record, stay, level_hour, level_day, flow_day
+  record, stay, level_hour, level_day, flow_day, flow_month
 to weirmark_app;--> statement-breakpoint
 grant select, insert on audit_entry to weirmark_app;--> statement-breakpoint
 grant usage on all sequences in schema public to weirmark_app;--> statement-breakpoint

@@ -7,7 +7,15 @@ const stateRow = z.object({ table: z.string(), rows: z.coerce.number(), digest: 
 /** One derived table of a site: how many rows, and a digest over all of them in order. */
 export type DerivedState = z.infer<typeof stateRow>;
 
-const tables = ['record', 'stay', 'level_hour', 'level_day', 'flow_day', 'zone'] as const;
+const tables = [
+  'record',
+  'stay',
+  'level_hour',
+  'level_day',
+  'flow_day',
+  'flow_month',
+  'zone',
+] as const;
 
 /**
  * The whole derived state of a site, as digests: two states are equal exactly if every derived row is.

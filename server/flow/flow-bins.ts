@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
-import { localDay } from '../../shared/local-time.ts';
+import { localDay, type ZoneRules } from '../../shared/local-time.ts';
 import { binnedPercentiles } from '../methods/binned-percentile.ts';
 import { noFlowTimes, type FlowTimes } from './flow-times.ts';
 import { instantValue } from './instant-value.ts';
@@ -35,16 +35,25 @@ export async function readBinnedFlowTimes(
   borders: readonly number[],
 ): Promise<Map<number, FlowTimes[]>> {
   const { tx, organisationId, siteId, rules } = reader;
+  const months = wholeMonths(rules, borders);
+  const ofZones = sql`organisation_id = ${organisationId} and site_id = ${siteId}
+    and zone_id = any(${sql.param([...zoneIds])}::integer[])`;
+  const columns = sql`departures, flow_microseconds, queue_known, queue_microseconds,
+    process_known, process_microseconds, bins, counts`;
   const { rows } = await tx.execute(sql`/* binned flow times */
     with of_day as (
       select
-        flow_day.*,
-        width_bucket(starts, ${sql.param(borders.map(instantValue))}::timestamptz[]) as place
+        zone_id,
+        width_bucket(starts, ${sql.param(borders.map(instantValue))}::timestamptz[]) as place,
+        ${columns}
       from flow_day
-      where organisation_id = ${organisationId} and site_id = ${siteId}
-        and zone_id = any(${sql.param([...zoneIds])}::integer[])
+      where ${ofZones}
         and day >= ${localDay(rules, borders[0] ?? 0)}::date
         and day < ${localDay(rules, borders.at(-1) ?? 0)}::date
+        and (day < ${months.from}::date or day >= ${months.to}::date)
+      union all
+      select zone_id, 1, ${columns} from flow_month
+      where ${ofZones} and month >= ${months.from}::date and month < ${months.to}::date
     ),
     histogram as (
       select zone_id, place, bin, sum(departed) as departed
@@ -80,4 +89,17 @@ export async function readBinnedFlowTimes(
     };
   }
   return found;
+}
+
+/** The whole months within a single step, from the first of one to the first of another; none elsewhere. */
+function wholeMonths(rules: ZoneRules, borders: readonly number[]): { from: string; to: string } {
+  const [first, end] = [localDay(rules, borders[0] ?? 0), localDay(rules, borders.at(-1) ?? 0)];
+  const to = `${end.slice(0, 7)}-01`;
+  const from = first.endsWith('-01') ? first : firstOfNextMonth(first);
+  return borders.length === 2 && from < to ? { from, to } : { from: end, to: end };
+}
+
+function firstOfNextMonth(day: string): string {
+  const [year = 0, month = 1] = day.split('-').map(Number);
+  return new Date(Date.UTC(year, month, 1)).toISOString().slice(0, 10);
 }

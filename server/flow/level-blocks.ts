@@ -119,7 +119,7 @@ export async function readLevelBlocks(
 export const trackKey = (zoneId: number, measure: string): string => `${zoneId} ${measure}`;
 
 /** The whole local days within a period; empty at its end where there is none. */
-function wholeDays({ rules }: SiteReader, period: Period): Period {
+export function wholeDays({ rules }: SiteReader, period: Period): Period {
   const [first, second] = stepBorders(rules, 'day', period.from, period.from + 1);
   const from = first === period.from ? first : (second ?? period.to);
   const to = stepBorders(rules, 'day', period.to, period.to + 1)[0] ?? period.to;

@@ -1,9 +1,10 @@
 import type { Figures } from '../../shared/contracts/figures.ts';
 import { stepBorders } from '../../shared/local-time.ts';
-import { levelSteps, type LevelFigures } from '../methods/level-steps.ts';
+import type { LevelFigures } from '../methods/level-steps.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { noFlowTimes, readFlowTimes } from './flow-times.ts';
-import { readLevelBlocks, readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
+import { readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
+import { readLevelTotals } from './level-totals.ts';
 import { readOldestInside } from './oldest-inside.ts';
 import { measuresOf, stepFigures, unknownFigures } from './step-figures.ts';
 import type { FigureZone, Period, SiteReader } from './zone-reader.ts';
@@ -37,12 +38,11 @@ export async function readSiteFloor(
   const borders = [period.from, period.to];
   const zoneIds = zones.map((zone) => zone.id);
   const wanted = measuresFor(zones, unit);
-  const tracks = await readLevelBlocks(reader, zoneIds, wanted, period);
+  const totals = await readLevelTotals(reader, zoneIds, wanted, period);
   const ends = await readLevelsBefore(reader, zoneIds, wanted, period.to);
   const over = (zoneId: number, measure: Measure) => {
-    const track = tracks.get(trackKey(zoneId, measure));
-    const [figures] = levelSteps(borders, track?.level ?? 0, track?.blocks ?? []);
-    if (!figures) throw new RangeError('A period must have a length.');
+    const figures = totals.get(trackKey(zoneId, measure));
+    if (!figures) throw new RangeError('Every zone and measure asked for has its totals.');
     return figures;
   };
   const departures = zones.reduce((sum, zone) => sum + over(zone.id, 'inside_jobs').downs, 0);

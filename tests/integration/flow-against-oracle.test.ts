@@ -1,5 +1,7 @@
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { z } from 'zod';
+import type { readFloor } from '../../shared/contracts/figures.ts';
 import { zoneRules, stepBorders } from '../../shared/local-time.ts';
 import type { Series } from '../../server/flow/zone-series.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
@@ -34,6 +36,7 @@ async function expectFigures(site: TestSite, rows: readonly LogRow[], timeZone: 
     [row.arrived, row.started, row.finished].filter((at) => at !== null),
   );
   const [from, to] = [Math.min(...times) - 5_400_000, Math.max(...times) + 7_200_000];
+  await expectFloor(site, from, to);
   for (const zone of await site.zones()) {
     const stays = staysInZone(jobs, zone.kind === 'site' ? areas : [zone.name]);
     await expectSteps(site, zone.id, stays, zone.dataUntil, { from, to, timeZone });
@@ -53,6 +56,21 @@ async function expectFigures(site: TestSite, rows: readonly LogRow[], timeZone: 
     expect(Math.abs(littlesLaw.unexplained)).toBeLessThanOrEqual(
       1e-9 * Math.max(1, littlesLaw.wipMean),
     );
+  }
+}
+
+/** The Floor says of every zone what the zone's own summary says. */
+async function expectFloor(site: TestSite, from: number, to: number) {
+  const asked = { from: new Date(from).toISOString(), to: new Date(to).toISOString() };
+  const floor = await site.get<z.infer<typeof readFloor.response>>('/floor', asked);
+  for (const row of floor.rows) {
+    const summary = await site.summary(row.zone.id, floor.from, floor.to);
+    for (const name of ['wipMean', 'inProcessMean', 'flowMeanSeconds', 'flowP85Seconds'] as const)
+      closeTo(row[name], summary[name]);
+    for (const name of ['wipStart', 'wipEnd', 'wipPeak', 'arrivals', 'departures'] as const)
+      expect([name, row[name]]).toEqual([name, summary[name]]);
+    closeTo(row.oldestInsideSeconds, summary.oldestInsideSeconds);
+    expect(row.books).toEqual(summary.books);
   }
 }
 

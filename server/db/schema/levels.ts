@@ -63,7 +63,19 @@ export const levelDay = pgTable(
   ],
 ).enableRLS();
 
-/** Departures of one local day: sums of their times and a histogram in logarithmic bins of ratio 1.02. */
+/** Departures within a span: sums of their times and a histogram in logarithmic bins of ratio 1.02. */
+const departureColumns = () => ({
+  departures: integer().notNull(),
+  flowMicroseconds: numeric().notNull(),
+  queueKnown: integer().notNull(),
+  queueMicroseconds: numeric().notNull(),
+  processKnown: integer().notNull(),
+  processMicroseconds: numeric().notNull(),
+  bins: integer().array().notNull(),
+  counts: integer().array().notNull(),
+});
+
+/** The departures of one local day. */
 export const flowDay = pgTable(
   'flow_day',
   {
@@ -71,17 +83,27 @@ export const flowDay = pgTable(
     zoneId: integer().notNull(),
     day: date().notNull(),
     starts: instant().notNull(),
-    departures: integer().notNull(),
-    flowMicroseconds: numeric().notNull(),
-    queueKnown: integer().notNull(),
-    queueMicroseconds: numeric().notNull(),
-    processKnown: integer().notNull(),
-    processMicroseconds: numeric().notNull(),
-    bins: integer().array().notNull(),
-    counts: integer().array().notNull(),
+    ...departureColumns(),
   },
   (table) => [
     primaryKey({ columns: [table.organisationId, table.siteId, table.zoneId, table.day] }),
+    toZone(table),
+    tenantPolicy(),
+  ],
+).enableRLS();
+
+/** The departures of one local month, made from its days: long periods have few rows to read. */
+export const flowMonth = pgTable(
+  'flow_month',
+  {
+    ...tenantColumns(),
+    zoneId: integer().notNull(),
+    /** First day of the month. */
+    month: date().notNull(),
+    ...departureColumns(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.organisationId, table.siteId, table.zoneId, table.month] }),
     toZone(table),
     tenantPolicy(),
   ],

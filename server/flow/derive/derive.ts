@@ -1,11 +1,16 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
-import { stepBorders } from '../../../shared/local-time.ts';
+import { localDay, stepBorders } from '../../../shared/local-time.ts';
 import type { Derivation } from './derivation.ts';
 import { dayGrid, type DayGrid } from './local-grid.ts';
 import { mergeRecords } from './merge-records.ts';
 import { refreshWarmUp, refreshZones } from './refresh-zones.ts';
 import { replaceFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
+import {
+  markMonthsFrom,
+  markMonthsOfTouchedDays,
+  replaceFlowMonths,
+} from './replace-flow-months.ts';
 import { replaceLevelDays } from './replace-level-days.ts';
 import {
   replaceLevelHours,
@@ -158,6 +163,12 @@ async function deriveLevels(
   if (!grid) return removeDays(derivation, ids);
   await replaceLevelDays(derivation, new Map(ids.map((id) => [id, from])), grid);
   await replaceFlowDays(derivation, ids, grid, from);
+  await markMonthsFrom(
+    derivation,
+    ids,
+    from === -Infinity ? null : localDay(derivation.rules, from),
+  );
+  await replaceFlowMonths(derivation);
 }
 
 const startOfDay = ({ rules }: Derivation, at: number): number =>
@@ -178,6 +189,8 @@ async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[
   await spanTouchedHours(derivation, grid);
   await replaceTouchedLevelHours(derivation);
   await replaceTouchedFlowDays(derivation, grid);
+  await markMonthsOfTouchedDays(derivation);
+  await replaceFlowMonths(derivation);
   const wide = (await gridOfHours(derivation)) ?? grid;
   await replaceLevelDays(derivation, new Map(parts.map((zone) => [zone.zoneId, zone.from])), wide);
 }
@@ -235,4 +248,5 @@ async function removeDays(derivation: Derivation, zones: readonly number[]): Pro
     and zone_id = any(${sql.param([...zones])}::integer[])`;
   await tx.execute(sql`/* remove days */ delete from level_day where ${ofZones}`);
   await tx.execute(sql`/* remove days */ delete from flow_day where ${ofZones}`);
+  await tx.execute(sql`/* remove months */ delete from flow_month where ${ofZones}`);
 }

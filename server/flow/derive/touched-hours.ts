@@ -110,6 +110,7 @@ export async function spanTouchedHours({ tx }: Derivation, grid: DayGrid): Promi
     create temp table touched_day on commit drop as
     select distinct
       zone_id,
+      days[width_bucket(hour, borders)] as day,
       borders[width_bucket(hour, borders)] as starts,
       borders[width_bucket(hour, borders) + 1] as ends
     from touched_hour cross join (${dayGridRow(grid)}) as grid`);
