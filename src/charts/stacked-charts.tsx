@@ -136,9 +136,9 @@ function Charts({
   }, [frame, steps, unit, step]);
   return charts.map(({ title, about, options }) => (
     <section key={title} className="mb-2">
-      <h3 className="text-body">
+      <h2 className="text-body">
         <strong>{title}</strong> <span className="text-soft">{about}</span>
-      </h3>
+      </h2>
       <PlotFigure options={options} label={`${title}: ${about}`} />
     </section>
   ));

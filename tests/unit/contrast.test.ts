@@ -67,6 +67,6 @@ describe.each(Object.entries(themes))('the %s theme', (_, tokens) => {
 
   it('has every token of the other', () => {
     expect(Object.keys(tokens).sort()).toEqual(Object.keys(themes.light).sort());
-    expect(Object.keys(tokens)).toHaveLength(13);
+    expect(Object.keys(tokens)).toHaveLength(14);
   });
 });
