@@ -15,9 +15,6 @@ import { registerSites } from './http/routes/sites.ts';
 import { registerUploads } from './http/routes/uploads.ts';
 import { registerZones } from './http/routes/zones.ts';
 
-/** Largest JSON body; files come as multipart. */
-const bodyLimit = '1mb';
-
 /**
  * The application without a listening socket, so that tests can drive it.
  *
@@ -31,6 +28,7 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   app.use(
     pinoHttp({
       logger: deps.log,
+      wrapSerializers: false,
       genReqId: (_req, res) => requestIdOf(res as express.Response),
       autoLogging: { ignore: (req) => !req.url?.startsWith('/api/') },
       customLogLevel: (_req, res, error) =>
@@ -42,7 +40,6 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
     res.setHeader('Cache-Control', 'no-store');
     next();
   });
-  app.use(express.json({ limit: bodyLimit }));
   const router = express.Router();
   const api = createApi(router, deps);
   registerServer(api);

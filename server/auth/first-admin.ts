@@ -11,7 +11,7 @@ import { hashPassword } from './passwords.ts';
 
 const digest = (token: string) => createHash('sha256').update(token).digest();
 
-async function hasOrganisation(db: Database): Promise<boolean> {
+async function hasOrganisation(db: Pick<Database, 'execute'>): Promise<boolean> {
   const { rows } = await db.execute(
     sql`/* any organisation */ select exists (select from organisation) as found`,
   );
@@ -46,10 +46,9 @@ export async function makeFirstAdmin(
 ): Promise<{ id: number; email: string; name: string }> {
   const createdAt = deps.clock.now();
   const passwordHash = await hashPassword(given.password);
-  const made = await deps.db.transaction(async (tx) => {
+  return deps.db.transaction(async (tx) => {
     await tx.execute(sql`/* one first admin */ lock table organisation in exclusive mode`);
-    const { rows } = await tx.execute(sql`select exists (select from organisation) as found`);
-    if (rows[0]?.found === true) throw conflict('The first admin was made already. Sign in.');
+    if (await hasOrganisation(tx)) throw conflict('The first admin was made already. Sign in.');
     const [firm] = await tx
       .insert(organisation)
       .values({ name: given.organisation, createdAt })
@@ -68,19 +67,18 @@ export async function makeFirstAdmin(
     await tx
       .insert(membership)
       .values({ organisationId: firm.id, personId: admin.id, role: 'admin', createdAt });
-    return { firm, admin };
+    await withTenant(tx, firm.id, (tenant) =>
+      recordAct(tenant, {
+        organisationId: firm.id,
+        at: createdAt,
+        actor: { kind: 'stranger' },
+        action: 'first-admin.create',
+        subjectKind: 'person',
+        subjectId: admin.id,
+        after: { organisation: firm.name, email: admin.email },
+        requestId,
+      }),
+    );
+    return admin;
   });
-  await withTenant(deps.db, made.firm.id, (tx) =>
-    recordAct(tx, {
-      organisationId: made.firm.id,
-      at: createdAt,
-      actor: { kind: 'stranger' },
-      action: 'first-admin.create',
-      subjectKind: 'person',
-      subjectId: made.admin.id,
-      after: { organisation: made.firm.name, email: made.admin.email },
-      requestId,
-    }),
-  );
-  return made.admin;
 }

@@ -1,4 +1,4 @@
-import { and, eq, isNull, sql } from 'drizzle-orm';
+import { and, eq, isNull, lt, sql } from 'drizzle-orm';
 import type { Database } from '../db/client.ts';
 import { session } from '../db/schema/people.ts';
 
@@ -9,13 +9,14 @@ export const sessionLengthMs = 14 * 24 * 60 * minute;
 export const rotateAfterMs = 15 * minute;
 export const rotationGraceMs = minute;
 
-/** Opens a session for a person who proved to be one. */
+/** Opens a session for a person who proved to be one; sessions of theirs that ran out are forgotten. */
 export async function openSession(
   db: Database,
   personId: number,
   now: Date,
 ): Promise<{ sessionId: string; rotation: number; expiresAt: Date }> {
   const expiresAt = new Date(now.getTime() + sessionLengthMs);
+  await db.delete(session).where(and(eq(session.personId, personId), lt(session.expiresAt, now)));
   const [row] = await db
     .insert(session)
     .values({ personId, createdAt: now, rotatedAt: now, expiresAt })

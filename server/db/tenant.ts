@@ -3,10 +3,11 @@ import type { Database, Transaction } from './client.ts';
 
 /**
  * Runs `work` in one transaction that sees and writes the rows of one organisation only: its id is set
- * for the length of the transaction, and row-level security reads it.
+ * for the length of the transaction, and row-level security reads it. Inside a running transaction the id
+ * holds until that ends, or is set to another.
  */
 export function withTenant<Result>(
-  db: Database,
+  db: Pick<Database, 'transaction'>,
   organisationId: number,
   work: (tx: Transaction) => Promise<Result>,
 ): Promise<Result> {

@@ -1,8 +1,7 @@
 import { and, eq, inArray } from 'drizzle-orm';
 import type { Role } from '../../shared/permissions.ts';
 import { hashPassword } from '../auth/passwords.ts';
-import type { Clock } from '../clock.ts';
-import type { Database } from '../db/client.ts';
+import type { Database, Transaction } from '../db/client.ts';
 import { membership, organisation, person } from '../db/schema/people.ts';
 
 /** Of every account of the demo; it is shown on the demo's sign-in page. */
@@ -26,43 +25,43 @@ const people = [
 const guestYears = 2;
 
 /** Makes the demo's two organisations and their people. @returns the organisations' ids by name */
-export async function makeDemoAccounts(db: Database, clock: Clock): Promise<Map<string, number>> {
-  const createdAt = clock.now();
+export async function makeDemoAccounts(
+  tx: Transaction,
+  createdAt: Date,
+): Promise<Map<string, number>> {
   const passwordHash = await hashPassword(demoPassword);
   const guestUntil = new Date(createdAt);
   guestUntil.setUTCFullYear(guestUntil.getUTCFullYear() + guestYears);
-  return db.transaction(async (tx) => {
-    const firms = await tx
-      .insert(organisation)
-      .values([
-        { name: lowmoor, createdAt },
-        { name: fellgate, createdAt },
-      ])
-      .returning();
-    const ids = new Map(firms.map((firm) => [firm.name, firm.id]));
-    const known = await tx
-      .insert(person)
-      .values(
-        people.map(({ email, name }) => ({
-          email,
-          name,
-          passwordHash,
-          passwordChangedAt: createdAt,
-          createdAt,
-        })),
-      )
-      .returning();
-    for (const { email, roles } of people)
-      for (const [firm, role] of Object.entries<Role>(roles))
-        await tx.insert(membership).values({
-          organisationId: ids.get(firm) ?? 0,
-          personId: known.find((each) => each.email === email)?.id ?? 0,
-          role,
-          endsAt: role === 'consultant' ? guestUntil : null,
-          createdAt,
-        });
-    return ids;
-  });
+  const firms = await tx
+    .insert(organisation)
+    .values([
+      { name: lowmoor, createdAt },
+      { name: fellgate, createdAt },
+    ])
+    .returning();
+  const ids = new Map(firms.map((firm) => [firm.name, firm.id]));
+  const known = await tx
+    .insert(person)
+    .values(
+      people.map(({ email, name }) => ({
+        email,
+        name,
+        passwordHash,
+        passwordChangedAt: createdAt,
+        createdAt,
+      })),
+    )
+    .returning();
+  for (const { email, roles } of people)
+    for (const [firm, role] of Object.entries<Role>(roles))
+      await tx.insert(membership).values({
+        organisationId: ids.get(firm) ?? 0,
+        personId: known.find((each) => each.email === email)?.id ?? 0,
+        role,
+        endsAt: role === 'consultant' ? guestUntil : null,
+        createdAt,
+      });
+  return ids;
 }
 
 /** The accounts that the sign-in page of the demo offers: one per role, with where it belongs. */

@@ -1,6 +1,6 @@
-import type { Clock } from '../clock.ts';
-import type { Database } from '../db/client.ts';
 import { sql } from 'drizzle-orm';
+import type { Clock } from '../clock.ts';
+import type { Database, Transaction } from '../db/client.ts';
 import { recordAct } from '../audit/record-act.ts';
 import { createSiteIn } from '../sites/create-site.ts';
 import { createArea } from '../sites/write-zones.ts';
@@ -23,28 +23,45 @@ const sites = [
   { firm: fellgate, name: 'Works', timeZone: 'Europe/London', areas: [] },
 ];
 
-/** Makes the demo's organisations, people and sites in a database that has no organisation yet. */
-export async function loadDemo(db: Database, clock: Clock): Promise<void> {
-  const { rows } = await db.execute(
+/**
+ * Makes the demo's organisations, people and sites in a database that has no organisation yet: all of it
+ * or nothing, and once, however many servers start together.
+ */
+export function loadDemo(db: Database, clock: Clock): Promise<void> {
+  return db.transaction(async (tx) => {
+    if (!(await isEmpty(tx))) return;
+    const now = clock.now();
+    const organisations = await makeDemoAccounts(tx, now);
+    for (const { firm, ...site } of sites)
+      await makeDemoSite(tx, organisations.get(firm) ?? 0, site, now);
+  });
+}
+
+async function isEmpty(tx: Transaction): Promise<boolean> {
+  await tx.execute(sql`/* one demo */ lock table organisation in exclusive mode`);
+  const { rows } = await tx.execute(
     sql`/* any organisation */ select exists (select from organisation) as found`,
   );
-  if (rows[0]?.found === true) return;
-  const organisations = await makeDemoAccounts(db, clock);
-  for (const { firm, name, timeZone, areas } of sites) {
-    const organisationId = organisations.get(firm) ?? 0;
-    await createSiteIn(db, organisationId, { name, timeZone }, clock.now(), async (tx, siteId) => {
-      const writer = { tx, organisationId, siteId };
-      for (const area of areas) await createArea(writer, { name: area });
-      await recordAct(tx, {
-        organisationId,
-        siteId,
-        at: clock.now(),
-        actor: { kind: 'stranger' },
-        action: 'site.create',
-        subjectKind: 'site',
-        subjectId: siteId,
-        after: { name, timeZone, areas },
-      });
+  return rows[0]?.found !== true;
+}
+
+async function makeDemoSite(
+  outer: Transaction,
+  organisationId: number,
+  { name, timeZone, areas }: { name: string; timeZone: string; areas: readonly string[] },
+  now: Date,
+): Promise<void> {
+  await createSiteIn(outer, organisationId, { name, timeZone }, now, async (tx, siteId) => {
+    for (const area of areas) await createArea({ tx, organisationId, siteId }, { name: area });
+    await recordAct(tx, {
+      organisationId,
+      siteId,
+      at: now,
+      actor: { kind: 'stranger' },
+      action: 'site.create',
+      subjectKind: 'site',
+      subjectId: siteId,
+      after: { name, timeZone, areas },
     });
-  }
+  });
 }

@@ -5,6 +5,7 @@ import type { Actor } from '../auth/actor.ts';
 import type { Dependencies } from '../dependencies.ts';
 import { invalidInput, notFound } from '../errors.ts';
 import { authenticate, authorise } from './authenticate.ts';
+import { readJsonBody } from './middleware/json-body.ts';
 import { refuseForeignOrigin } from './middleware/origin.ts';
 import { requestIdOf } from './middleware/request-id.ts';
 
@@ -38,14 +39,16 @@ export function createApi(router: Router, deps: Dependencies): Api {
     route(contract, handler) {
       const run: RequestHandler = async (req, res) => {
         const params = readParams(contract, req);
-        const siteId = 'siteId' in params ? Number(params.siteId) : null;
+        const siteId = params !== null && 'siteId' in params ? Number(params.siteId) : null;
         const who = await authenticate(deps, req, res, siteId);
-        if (contract.method !== 'get' && who.byCookie) refuseForeignOrigin(deps.env, req);
+        if (contract.method !== 'get' && !who.byKey) refuseForeignOrigin(deps.env, req);
         authorise(contract.action, who, siteId);
+        if (params === null) throw notFound('What the address names');
+        const body = contract.bodyKind === 'json' ? await readJsonBody(req, res) : {};
         const call = {
           params,
           query: parsed(contract.query, req.query, 'query'),
-          body: contract.bodyKind === 'json' ? parsed(contract.body, req.body ?? {}, 'body') : {},
+          body: contract.bodyKind === 'json' ? parsed(contract.body, body, 'body') : {},
           actor: who.actor,
           organisationId: who.site?.organisationId ?? 0,
           siteId: siteId ?? 0,
@@ -61,11 +64,10 @@ export function createApi(router: Router, deps: Dependencies): Api {
   };
 }
 
-/** A path whose ids are no ids names nothing that exists. */
-function readParams(contract: Contract, req: Request): Record<string, unknown> {
+/** The path's parameters; null where its ids are no ids, so that it names nothing that exists. */
+function readParams(contract: Contract, req: Request): Record<string, unknown> | null {
   const result = contract.params.safeParse(req.params);
-  if (!result.success) throw notFound('What the address names');
-  return result.data as Record<string, unknown>;
+  return result.success ? (result.data as Record<string, unknown>) : null;
 }
 
 function parsed<Schema extends z.ZodType>(

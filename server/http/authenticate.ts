@@ -10,8 +10,8 @@ import { setSessionCookie } from './session-answer.ts';
 export interface Authenticated {
   actor: Actor;
   site: SiteOfRequest | null;
-  /** Whether the request came with a cookie, which a browser sends along unasked. */
-  byCookie: boolean;
+  /** Whether an access key was shown, which no browser sends along unasked. */
+  byKey: boolean;
 }
 
 /** Who asks: the bearer of an access key, the holder of a session, or a stranger. Renews an old cookie. */
@@ -21,13 +21,13 @@ export async function authenticate(
   res: Response,
   siteId: number | null,
 ): Promise<Authenticated> {
-  const stranger = { actor: { kind: 'stranger' }, site: null, byCookie: false } as const;
+  const stranger = { actor: { kind: 'stranger' }, site: null, byKey: false } as const;
   const bearer = /^Bearer (\S+)$/i.exec(req.headers.authorization ?? '')?.[1];
   if (bearer !== undefined) {
     const actor = await findMachine(deps.db, bearer);
     if (!actor) return stranger;
     const site = siteId === actor.siteId ? { siteId, organisationId: actor.organisationId } : null;
-    return { actor, site, byCookie: false };
+    return { actor, site, byKey: true };
   }
   const cookie = cookieValue(req.headers.cookie, sessionCookieName);
   const now = deps.clock.now();
@@ -36,7 +36,7 @@ export async function authenticate(
   const found = await findPerson(deps.db, token, siteId, now);
   if (!found) return stranger;
   await renewCookie(deps, res, found.actor, now);
-  return { ...found, byCookie: true };
+  return { ...found, byKey: false };
 }
 
 async function renewCookie(

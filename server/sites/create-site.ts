@@ -18,7 +18,7 @@ export interface NewSite {
  * @throws ApiError conflict where the organisation has a site of this name
  */
 export async function createSiteIn(
-  db: Database,
+  db: Pick<Database, 'transaction'>,
   organisationId: number,
   given: NewSite,
   createdAt: Date,

@@ -1,4 +1,5 @@
 import { eq } from 'drizzle-orm';
+import type { Request, Response } from 'express';
 import {
   createFirstAdmin,
   readSession,
@@ -11,74 +12,85 @@ import { organisationsOf } from '../../auth/memberships.ts';
 import { makeFirstAdmin } from '../../auth/first-admin.ts';
 import { passwordMatches } from '../../auth/passwords.ts';
 import { openSession, revokeSession, revokeSessionsOf } from '../../auth/sessions.ts';
+import type { Database } from '../../db/client.ts';
 import { person } from '../../db/schema/people.ts';
 import { demoAccounts, demoPassword } from '../../demo/accounts.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { ApiError, notAllowed } from '../../errors.ts';
-import type { Api, Call } from '../api.ts';
+import type { Api } from '../api.ts';
 import { clearSessionCookie, setSessionCookie } from '../session-answer.ts';
 
-type Answering = Pick<Call<unknown, unknown, unknown>, 'res'>;
+interface Who {
+  id: number;
+  email: string;
+  name: string;
+}
 
 export function registerAuth({ route, deps }: Api): void {
   route(signIn, async ({ body, req, res }) => {
-    const origin = req.ip ?? 'unknown';
-    await deps.throttle.check(body.email, origin);
-    const [found] = await deps.db.select().from(person).where(eq(person.email, body.email));
-    if (!(await passwordMatches(found?.passwordHash ?? null, body.password)) || !found) {
-      await deps.throttle.noteFailure(body.email, origin);
+    const found = await deps.throttle.attempt(body.email, originOf(req), () =>
+      findByPassword(deps.db, body),
+    );
+    if (!found)
       throw new ApiError('wrong-credentials', 'The e-mail address or the password is wrong.');
-    }
-    await deps.throttle.noteSuccess(body.email);
-    return startSession(deps, { res }, found);
+    return startSession(deps, res, found);
   });
 
   route(signOut, async ({ actor, res }) => {
     if (actor.kind === 'person') await revokeSession(deps.db, actor.sessionId, deps.clock.now());
-    clearSessionCookie(res);
+    clearSessionCookie(deps, res);
     return undefined;
   });
 
   route(signOutEverywhere, async ({ actor, res }) => {
     if (actor.kind !== 'person') throw notAllowed();
     await revokeSessionsOf(deps.db, actor.personId, deps.clock.now());
-    clearSessionCookie(res);
+    clearSessionCookie(deps, res);
     return undefined;
   });
 
-  route(readSession, async ({ actor }) => ({
-    session:
-      actor.kind === 'person'
-        ? {
-            user: { id: actor.personId, email: actor.email, name: actor.name },
-            organisations: await organisationsOf(deps.db, actor.personId, deps.clock.now()),
-          }
-        : null,
-    demoAccounts: deps.env.WEIRMARK_DEMO ? await demoAccounts(deps.db) : [],
-    demoPassword: deps.env.WEIRMARK_DEMO ? demoPassword : null,
-    awaitsFirstAdmin: await deps.firstAdmin.isOpen(),
-  }));
+  route(readSession, async ({ actor }) => {
+    const accounts = deps.env.WEIRMARK_DEMO ? await demoAccounts(deps.db) : [];
+    return {
+      session:
+        actor.kind === 'person'
+          ? {
+              user: { id: actor.personId, email: actor.email, name: actor.name },
+              organisations: await organisationsOf(deps.db, actor.personId, deps.clock.now()),
+            }
+          : null,
+      demoAccounts: accounts,
+      demoPassword: accounts.length > 0 ? demoPassword : null,
+      awaitsFirstAdmin: await deps.firstAdmin.isOpen(),
+    };
+  });
 
   route(createFirstAdmin, async ({ body, req, res, requestId }) => {
-    const origin = req.ip ?? 'unknown';
-    await deps.throttle.check('first admin', origin);
-    if (!(await deps.firstAdmin.matches(body.token))) {
-      await deps.throttle.noteFailure('first admin', origin);
+    const matches = await deps.throttle.attempt('first admin', originOf(req), async () =>
+      (await deps.firstAdmin.matches(body.token)) ? true : null,
+    );
+    if (!matches)
       throw new ApiError(
         'wrong-credentials',
         'The token is wrong or was used already. The log of the server shows the one that holds.',
       );
-    }
-    const made = await makeFirstAdmin(deps, body, requestId);
-    return startSession(deps, { res }, made);
+    return startSession(deps, res, await makeFirstAdmin(deps, body, requestId));
   });
 }
 
-async function startSession(
-  deps: Dependencies,
-  { res }: Answering,
-  who: { id: number; email: string; name: string },
-): Promise<SessionAnswer> {
+const originOf = (req: Request): string => req.ip ?? 'unknown';
+
+/** The person with this address and password, or null; neither answer nor time tells which was wrong. */
+async function findByPassword(
+  db: Database,
+  { email, password }: { email: string; password: string },
+): Promise<Who | null> {
+  const [found] = await db.select().from(person).where(eq(person.email, email));
+  const matches = await passwordMatches(found?.passwordHash ?? null, password);
+  return matches && found ? found : null;
+}
+
+async function startSession(deps: Dependencies, res: Response, who: Who): Promise<SessionAnswer> {
   const now = deps.clock.now();
   const opened = await openSession(deps.db, who.id, now);
   await setSessionCookie(deps, res, opened, opened.expiresAt);
