@@ -310,6 +310,7 @@ CREATE TABLE "upload_area" (
 	"rows" integer NOT NULL,
 	"first_at" timestamp with time zone NOT NULL,
 	"latest_at" timestamp with time zone NOT NULL,
+	"speaks_until" timestamp with time zone NOT NULL,
 	"has_quantities" boolean NOT NULL,
 	"has_starts" boolean NOT NULL,
 	CONSTRAINT "upload_area_organisation_id_site_id_upload_id_area_id_pk" PRIMARY KEY("organisation_id","site_id","upload_id","area_id")

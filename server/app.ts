@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs';
 import express, { type Express } from 'express';
 import { pinoHttp } from 'pino-http';
 import type { Dependencies } from './dependencies.ts';
+import { plainError } from './log.ts';
 import { createApi } from './http/api.ts';
 import { answerErrors, unknownCall } from './http/middleware/errors.ts';
 import { requestId, requestIdOf } from './http/middleware/request-id.ts';
@@ -29,6 +30,11 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
     pinoHttp({
       logger: deps.log,
       wrapSerializers: false,
+      serializers: {
+        req: (req: express.Request) => ({ method: req.method, url: req.originalUrl }),
+        res: (res: express.Response) => ({ status: res.statusCode }),
+        err: plainError,
+      },
       genReqId: (_req, res) => requestIdOf(res as express.Response),
       autoLogging: { ignore: (req) => !req.url?.startsWith('/api/') },
       customLogLevel: (_req, res, error) =>

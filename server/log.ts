@@ -3,7 +3,7 @@ import { pino, type Logger } from 'pino';
 export type { Logger };
 
 /** What of an error is logged. Drivers hang whole connections, secrets included, on theirs. */
-function plainError(error: unknown): unknown {
+export function plainError(error: unknown): unknown {
   if (!(error instanceof Error)) return error;
   return {
     name: error.name,

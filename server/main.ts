@@ -33,6 +33,10 @@ async function main(): Promise<void> {
       });
   };
   stopOnSignals(stopAll);
+  // The queue's own upkeep fails while the database is away; requests are answered as soon as it is back.
+  process.on('unhandledRejection', (error) => {
+    log.error({ err: error }, 'left unhandled');
+  });
   try {
     await start(env, log, stops);
   } catch (error) {

@@ -174,12 +174,25 @@ function isLivingServer(pid: number): boolean {
 }
 
 function stopCluster(cluster: Cluster): void {
+  if (existsSync(path.join(cluster.data, 'postmaster.pid'))) stopPostmaster(cluster);
+  rmSync(path.join(cluster.folder, 'owner.pid'), { force: true });
+  if (cluster.kind === 'test') rmSync(cluster.folder, { recursive: true, force: true });
+}
+
+/** One that was killed has left its file behind, and there is nothing to stop. */
+function stopPostmaster(cluster: Cluster): void {
+  const pid = Number(
+    readFileSync(path.join(cluster.data, 'postmaster.pid'), 'utf8').split('\n')[0],
+  );
+  try {
+    process.kill(pid, 0);
+  } catch {
+    return;
+  }
   runAsCluster(cluster.user, path.join(cluster.bin, 'pg_ctl'), [
     'stop',
     '--wait',
     '--mode=fast',
     `--pgdata=${cluster.data}`,
   ]);
-  rmSync(path.join(cluster.folder, 'owner.pid'), { force: true });
-  if (cluster.kind === 'test') rmSync(cluster.folder, { recursive: true, force: true });
 }

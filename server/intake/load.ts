@@ -10,7 +10,6 @@ import type { StagedArea } from './pipeline.ts';
 export interface StagedUpload {
   uploadId: number;
   areas: readonly StagedArea[];
-  latestAt: Date | null;
   account: RowAccount;
 }
 
@@ -68,7 +67,7 @@ async function addFoundAreas(
 
 async function keepToldRows(
   { tx, organisationId, siteId }: Derivation,
-  { uploadId, areas, latestAt }: StagedUpload,
+  { uploadId, areas }: StagedUpload,
 ): Promise<void> {
   const areaOfNumber = sql`
     select * from unnest(
@@ -90,17 +89,15 @@ async function keepToldRows(
   await tx.execute(sql`/* what an upload says of each area */
     insert into upload_area (
       organisation_id, site_id, upload_id, area_id,
-      rows, first_at, latest_at, has_quantities, has_starts
+      rows, first_at, latest_at, speaks_until, has_quantities, has_starts
     )
     select
       ${organisationId}, ${siteId}, ${uploadId}, area_id, count(*),
       min(least(arrived, started, finished)), max(greatest(arrived, started, finished)),
+      (select max(greatest(arrived, started, finished)) from staged_row),
       bool_or(quantity is not null), bool_or(started is not null)
     from staged_row join (${areaOfNumber}) as numbered using (area_number)
     group by area_id`);
-  await tx.execute(sql`/* how far an upload speaks */
-    update upload set latest_at = ${latestAt?.toISOString() ?? null}
-    where organisation_id = ${organisationId} and site_id = ${siteId} and id = ${uploadId}`);
 }
 
 async function keepRefusedRows(

@@ -47,7 +47,14 @@ export async function loadUpload(task: SiteTask, uploadId: number): Promise<void
       const account = await loadStagedRows(derivation, { uploadId, ...outcome });
       await derivation.tx
         .update(upload)
-        .set({ status: 'loaded', account, finishedAt: task.clock.now(), error: null })
+        // Last: until here the upload's row is free for whoever asks for a stop.
+        .set({
+          status: 'loaded',
+          account,
+          latestAt: outcome.latestAt,
+          finishedAt: task.clock.now(),
+          error: null,
+        })
         .where(thisUpload(task, uploadId));
     }),
   );

@@ -108,6 +108,8 @@ export const uploadArea = pgTable(
     rows: integer().notNull(),
     firstAt: instant().notNull(),
     latestAt: instant().notNull(),
+    /** Latest accepted time anywhere in the upload: up to there it speaks for this area. */
+    speaksUntil: instant().notNull(),
     /** Whether any of its rows here carries a quantity, or a start. */
     hasQuantities: boolean().notNull(),
     hasStarts: boolean().notNull(),

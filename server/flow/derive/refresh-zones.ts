@@ -15,18 +15,15 @@ export async function refreshZones(derivation: Derivation): Promise<{ unitsChang
   const { rows } = await tx.execute(sql`/* refresh zones */
     with heard as (
       select
-        upload_area.area_id,
-        max(upload.latest_at) as data_until,
-        max(upload_area.latest_at) as last_record,
-        min(upload_area.first_at) as data_from,
-        bool_or(upload_area.has_quantities) as has_quantities,
-        bool_or(upload_area.has_starts) as has_starts
-      from upload_area join upload
-        on upload.organisation_id = upload_area.organisation_id
-        and upload.site_id = upload_area.site_id
-        and upload.id = upload_area.upload_id
-      where upload_area.organisation_id = ${organisationId} and upload_area.site_id = ${siteId}
-      group by upload_area.area_id
+        area_id,
+        max(speaks_until) as data_until,
+        max(latest_at) as last_record,
+        min(first_at) as data_from,
+        bool_or(has_quantities) as has_quantities,
+        bool_or(has_starts) as has_starts
+      from upload_area
+      where organisation_id = ${organisationId} and site_id = ${siteId}
+      group by area_id
     ),
     in_use as (
       select *, last_record >= max(last_record) over () - interval '28 days' as used from heard
