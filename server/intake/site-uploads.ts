@@ -119,7 +119,7 @@ async function lockStatus(tx: Transaction, key: UploadKey): Promise<WishedUpload
     .select({ status: upload.status })
     .from(upload)
     .where(isUpload(key))
-    .for('update');
+    .for('no key update');
   if (!row || row.status === 'receiving') return refuseUnknown();
   return row.status;
 }
