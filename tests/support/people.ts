@@ -5,16 +5,31 @@ import { testNow, type TestApp } from './app.ts';
 
 let made = 0;
 
-/** Adds a person to an organisation, to sign in with `password`. */
+export interface AddedMember {
+  id: number;
+  email: string;
+  password: string;
+}
+
+/** Adds a person to an organisation: a new one, to sign in with `password`, or one that was added before. */
 export async function addMember(
   test: TestApp,
   organisationId: number,
   role: Role,
   endsAt: Date | null = null,
-  password = 'a long enough word',
-): Promise<{ id: number; email: string; password: string }> {
+  known?: AddedMember,
+): Promise<AddedMember> {
+  const added = known ?? (await addPerson(test));
+  await test.db
+    .insert(membership)
+    .values({ organisationId, personId: added.id, role, endsAt, createdAt: testNow });
+  return added;
+}
+
+async function addPerson(test: TestApp): Promise<AddedMember> {
   made += 1;
   const email = `member${made}@lowmoor.example`;
+  const password = 'a long enough word';
   const [added] = await test.db
     .insert(person)
     .values({
@@ -26,8 +41,5 @@ export async function addMember(
     })
     .returning();
   if (!added) throw new Error('The person could not be added.');
-  await test.db
-    .insert(membership)
-    .values({ organisationId, personId: added.id, role, endsAt, createdAt: testNow });
   return { id: added.id, email, password };
 }
