@@ -3,7 +3,7 @@ import type { Clock } from '../clock.ts';
 import type { Database, Transaction } from '../db/client.ts';
 import { recordAct } from '../audit/record-act.ts';
 import { createSiteIn } from '../sites/create-site.ts';
-import { createArea } from '../sites/write-zones.ts';
+import { createArea } from '../sites/write-areas.ts';
 import { fellgate, lowmoor, makeDemoAccounts } from './accounts.ts';
 
 /** The areas of the Main depot, in order of flow. */

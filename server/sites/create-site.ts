@@ -1,4 +1,4 @@
-import { DrizzleQueryError } from 'drizzle-orm';
+import { breaks } from '../db/breaks.ts';
 import type { Database, Transaction } from '../db/client.ts';
 import { site, siteDirectory } from '../db/schema/sites.ts';
 import { zone } from '../db/schema/zones.ts';
@@ -46,10 +46,4 @@ export async function createSiteIn(
       throw conflict(`There is a site named “${given.name}” already. Choose another name.`);
     throw error;
   }
-}
-
-/** Whether a statement failed on this constraint. */
-export function breaks(error: unknown, constraint: string): boolean {
-  const cause = error instanceof DrizzleQueryError ? error.cause : error;
-  return cause instanceof Error && 'constraint' in cause && cause.constraint === constraint;
 }

@@ -1,6 +1,6 @@
 import { and, eq, sql } from 'drizzle-orm';
 import { site } from '../db/schema/sites.ts';
-import type { SiteWriter } from './write-zones.ts';
+import type { SiteWriter } from './site-writer.ts';
 
 /** Tells that answers about the site may differ from now on: kept ones are not given again. */
 export async function bumpDataVersion({ tx, organisationId, siteId }: SiteWriter): Promise<void> {

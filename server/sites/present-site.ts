@@ -5,6 +5,7 @@ import { organisation } from '../db/schema/people.ts';
 import { site } from '../db/schema/sites.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { zone } from '../db/schema/zones.ts';
+import { notFound } from '../errors.ts';
 
 /** The sites of the running tenant, by name; one of them where an id is given. */
 export async function readSites(
@@ -51,6 +52,17 @@ export async function readSites(
     dataUntil: more.dataUntil?.toISOString() ?? null,
     busy: more.busy,
   }));
+}
+
+/** One site of the running tenant. @throws ApiError not-found */
+export async function findSite(
+  tx: Transaction,
+  organisationId: number,
+  siteId: number,
+): Promise<Site> {
+  const [found] = await readSites(tx, organisationId, siteId);
+  if (!found) throw notFound('The site');
+  return found;
 }
 
 /** Whether figures still have to catch up: an upload or a withdrawal waits, or a zone is being derived. */

@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import type { Zone } from '../../shared/contracts/zones.ts';
 import type { Transaction } from '../db/client.ts';
+import { notFound } from '../errors.ts';
 
 const date = z.coerce.date().nullable();
 const zoneRow = z.object({
@@ -74,6 +75,18 @@ export async function readZones(
       and (${onlyZone}::integer is null or zone.id = ${onlyZone}::integer)
     order by zone.kind, area.position, zone.name, zone.id`);
   return z.array(zoneRow).parse(rows).map(presentZone);
+}
+
+/** One zone of a site. @throws ApiError not-found */
+export async function findZone(
+  tx: Transaction,
+  organisationId: number,
+  siteId: number,
+  zoneId: number,
+): Promise<Zone> {
+  const [found] = await readZones(tx, organisationId, siteId, zoneId);
+  if (!found) throw notFound('The zone');
+  return found;
 }
 
 function presentZone(row: z.infer<typeof zoneRow>): Zone {

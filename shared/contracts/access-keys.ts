@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { contract, idParam, instantOrNull, instantSchema } from './contract.ts';
+import { contract, idParam, instantOrNull, instantSchema, nameSchema } from './contract.ts';
 import { siteParams } from './sites.ts';
 
 export const accessKeySchema = z.object({
@@ -26,7 +26,7 @@ export const createAccessKey = contract({
   summary: 'Makes an access key for a machine; the key itself is shown this once',
   action: 'access-key.create',
   params: siteParams,
-  body: z.object({ name: z.string().trim().min(1).max(120) }),
+  body: z.object({ name: nameSchema }),
   response: accessKeySchema.extend({ key: z.string() }),
   status: 201,
 });

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { roles } from '../permissions.ts';
-import { contract } from './contract.ts';
+import { contract, nameSchema } from './contract.ts';
 
 export const emailSchema = z.string().trim().toLowerCase().pipe(z.email().max(254));
 /** Length only; the rules for a new password are stricter. */
@@ -85,8 +85,8 @@ export const createFirstAdmin = contract({
   action: 'first-admin.create',
   body: z.object({
     token: z.string().min(1).max(200),
-    organisation: z.string().trim().min(1).max(120),
-    name: z.string().trim().min(1).max(120),
+    organisation: nameSchema,
+    name: nameSchema,
     email: emailSchema,
     password: newPasswordSchema,
   }),

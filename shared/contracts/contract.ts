@@ -63,6 +63,13 @@ export function contract<
 
 /** An id in a path: a whole number from 1. */
 export const idParam = z.coerce.number().int().min(1).max(2_147_483_647);
+/** A name that a person gives: one line of text. */
+export const nameSchema = z
+  .string()
+  .trim()
+  .min(1, 'Give a name.')
+  .max(120, 'Use at most 120 characters.')
+  .regex(/^\P{Cc}*$/u, 'Leave out line breaks and control characters.');
 /** A moment: ISO 8601 with an offset. */
 export const instantSchema = z.iso.datetime({ offset: true });
 /** A moment as it is answered, or null where it is not known. */

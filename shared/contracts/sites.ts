@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { isTimeZone } from '../local-time.ts';
-import { contract, idParam, instantOrNull } from './contract.ts';
+import { contract, idParam, instantOrNull, nameSchema } from './contract.ts';
 
 export const siteParams = z.object({ siteId: idParam });
 
@@ -44,7 +44,7 @@ export const createSite = contract({
   summary: 'Makes a site',
   action: 'site.create',
   body: z.object({
-    name: z.string().trim().min(1).max(120),
+    name: nameSchema,
     timeZone: timeZoneSchema,
     lostFinish: lostFinishSchema.optional(),
     organisationId: idParam.optional(),
@@ -72,7 +72,7 @@ export const changeSite = contract({
   params: siteParams,
   body: z
     .object({
-      name: z.string().trim().min(1).max(120),
+      name: nameSchema,
       currency: z.string().regex(/^[A-Z]{3}$/, 'Use a three-letter currency code such as EUR.'),
       valuePerJob: z.number().min(0).max(1e12).nullable(),
       lostFinish: lostFinishSchema,

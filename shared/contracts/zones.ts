@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { contract, idParam, instantOrNull, instantSchema } from './contract.ts';
+import { contract, idParam, instantOrNull, instantSchema, nameSchema } from './contract.ts';
 import { siteParams } from './sites.ts';
 
 export const zoneParams = siteParams.extend({ zoneId: idParam });
@@ -46,8 +46,6 @@ export const readZone = contract({
   response: zoneSchema,
 });
 
-const zoneName = z.string().trim().min(1).max(120);
-
 export const createZone = contract({
   name: 'createZone',
   method: 'post',
@@ -58,12 +56,12 @@ export const createZone = contract({
   body: z.discriminatedUnion('kind', [
     z.object({
       kind: z.literal('area'),
-      name: zoneName,
+      name: nameSchema,
       countsFrom: countsFromSchema.optional(),
     }),
     z.object({
       kind: z.literal('loop'),
-      name: zoneName,
+      name: nameSchema,
       areaIds: z.array(idParam).min(1).max(200),
       countsFrom: countsFromSchema.optional(),
     }),
@@ -81,7 +79,7 @@ export const changeZone = contract({
   params: zoneParams,
   body: z
     .object({
-      name: zoneName,
+      name: nameSchema,
       countsFrom: countsFromSchema,
       servers: z.int().min(1).max(100_000).nullable(),
       /** From when the number of servers holds; from the beginning when left out. */

@@ -16,9 +16,9 @@ export async function readJsonBody(req: Request, res: Response): Promise<unknown
       'Send the body as JSON, with the header Content-Type: application/json. Nothing was changed.',
     );
   await new Promise<void>((resolve, reject) => {
-    parse(req, res, (error?: unknown) => {
-      if (error === undefined) resolve();
-      else reject(error);
+    parse(req, res, (error?: Error | 'route' | 'router') => {
+      if (error instanceof Error) reject(error);
+      else resolve();
     });
   });
   return req.body ?? {};

@@ -1,4 +1,3 @@
-import { and, desc, eq, isNull } from 'drizzle-orm';
 import {
   createAccessKey,
   listAccessKeys,
@@ -6,12 +5,12 @@ import {
 } from '../../../shared/contracts/access-keys.ts';
 import { recordAct } from '../../audit/record-act.ts';
 import { newAccessKey } from '../../auth/access-key.ts';
-import { accessKey } from '../../db/schema/people.ts';
+import { keepKey, listKeysOfSite, revokeKey, type AccessKeyRow } from '../../auth/keys-of-site.ts';
 import { withTenant } from '../../db/tenant.ts';
-import { conflict, notFound } from '../../errors.ts';
+import { actOf } from '../act-of.ts';
 import type { Api } from '../api.ts';
 
-const present = (row: typeof accessKey.$inferSelect) => ({
+const present = (row: AccessKeyRow) => ({
   id: row.id,
   name: row.name,
   createdAt: row.createdAt.toISOString(),
@@ -21,73 +20,43 @@ const present = (row: typeof accessKey.$inferSelect) => ({
 export function registerAccessKeys({ route, deps }: Api): void {
   const { db, clock } = deps;
 
-  route(listAccessKeys, async ({ organisationId, siteId }) => {
-    const rows = await db
-      .select()
-      .from(accessKey)
-      .where(and(eq(accessKey.organisationId, organisationId), eq(accessKey.siteId, siteId)))
-      .orderBy(desc(accessKey.id));
-    return rows.map(present);
-  });
+  route(listAccessKeys, async (call) => (await listKeysOfSite(db, call)).map(present));
 
-  route(createAccessKey, async ({ organisationId, siteId, body, actor, requestId }) => {
+  route(createAccessKey, (call) => {
+    const { organisationId, siteId, actor, body } = call;
     const { key, keyHash } = newAccessKey();
     return withTenant(db, organisationId, async (tx) => {
-      const [row] = await tx
-        .insert(accessKey)
-        .values({
-          organisationId,
-          siteId,
-          name: body.name,
-          keyHash,
-          createdBy: actor.kind === 'person' ? actor.personId : null,
-          createdAt: clock.now(),
-        })
-        .returning();
-      if (!row) throw new Error('The access key could not be kept.');
-      await recordAct(tx, {
+      const row = await keepKey(tx, {
         organisationId,
         siteId,
-        at: clock.now(),
-        actor,
+        name: body.name,
+        keyHash,
+        createdBy: actor.kind === 'person' ? actor.personId : null,
+        createdAt: clock.now(),
+      });
+      await recordAct(tx, {
+        ...actOf(call, clock),
         action: 'access-key.create',
         subjectKind: 'access key',
         subjectId: row.id,
         after: present(row),
-        requestId,
       });
       return { ...present(row), key };
     });
   });
 
-  route(revokeAccessKey, async ({ organisationId, siteId, params, actor, requestId }) => {
-    const ofKey = and(
-      eq(accessKey.organisationId, organisationId),
-      eq(accessKey.siteId, siteId),
-      eq(accessKey.id, params.keyId),
-    );
-    return withTenant(db, organisationId, async (tx) => {
-      const [before] = await tx.select().from(accessKey).where(ofKey);
-      if (!before) throw notFound('The access key');
-      const [row] = await tx
-        .update(accessKey)
-        .set({ revokedAt: clock.now() })
-        .where(and(ofKey, isNull(accessKey.revokedAt)))
-        .returning();
-      if (!row) throw conflict('This access key was revoked already.');
+  route(revokeAccessKey, (call) =>
+    withTenant(db, call.organisationId, async (tx) => {
+      const { before, after } = await revokeKey(tx, call, call.params.keyId, clock.now());
       await recordAct(tx, {
-        organisationId,
-        siteId,
-        at: clock.now(),
-        actor,
+        ...actOf(call, clock),
         action: 'access-key.revoke',
         subjectKind: 'access key',
-        subjectId: row.id,
+        subjectId: after.id,
         before: present(before),
-        after: present(row),
-        requestId,
+        after: present(after),
       });
-      return present(row);
-    });
-  });
+      return present(after);
+    }),
+  );
 }

@@ -1,4 +1,3 @@
-import { eq } from 'drizzle-orm';
 import type { Request, Response } from 'express';
 import {
   createFirstAdmin,
@@ -9,22 +8,14 @@ import {
   type SessionAnswer,
 } from '../../../shared/contracts/auth.ts';
 import { organisationsOf } from '../../auth/memberships.ts';
+import { findByPassword, type KnownPerson } from '../../auth/find-by-password.ts';
 import { makeFirstAdmin } from '../../auth/first-admin.ts';
-import { passwordMatches } from '../../auth/passwords.ts';
 import { openSession, revokeSession, revokeSessionsOf } from '../../auth/sessions.ts';
-import type { Database } from '../../db/client.ts';
-import { person } from '../../db/schema/people.ts';
 import { demoAccounts, demoPassword } from '../../demo/accounts.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { ApiError, notAllowed } from '../../errors.ts';
 import type { Api } from '../api.ts';
 import { clearSessionCookie, setSessionCookie } from '../session-answer.ts';
-
-interface Who {
-  id: number;
-  email: string;
-  name: string;
-}
 
 export function registerAuth({ route, deps }: Api): void {
   route(signIn, async ({ body, req, res }) => {
@@ -80,17 +71,11 @@ export function registerAuth({ route, deps }: Api): void {
 
 const originOf = (req: Request): string => req.ip ?? 'unknown';
 
-/** The person with this address and password, or null; neither answer nor time tells which was wrong. */
-async function findByPassword(
-  db: Database,
-  { email, password }: { email: string; password: string },
-): Promise<Who | null> {
-  const [found] = await db.select().from(person).where(eq(person.email, email));
-  const matches = await passwordMatches(found?.passwordHash ?? null, password);
-  return matches && found ? found : null;
-}
-
-async function startSession(deps: Dependencies, res: Response, who: Who): Promise<SessionAnswer> {
+async function startSession(
+  deps: Dependencies,
+  res: Response,
+  who: KnownPerson,
+): Promise<SessionAnswer> {
   const now = deps.clock.now();
   const opened = await openSession(deps.db, who.id, now);
   await setSessionCookie(deps, res, opened, opened.expiresAt);

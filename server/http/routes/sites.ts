@@ -1,15 +1,14 @@
-import { and, eq } from 'drizzle-orm';
 import { changeSite, createSite, listSites, readSite } from '../../../shared/contracts/sites.ts';
 import { roleMay } from '../../../shared/permissions.ts';
 import { recordAct } from '../../audit/record-act.ts';
 import { organisationsOf } from '../../auth/memberships.ts';
-import type { Transaction } from '../../db/client.ts';
-import { site } from '../../db/schema/sites.ts';
-import { zone } from '../../db/schema/zones.ts';
 import { withTenant } from '../../db/tenant.ts';
-import { conflict, invalidInput, notAllowed, notFound, signedOut } from '../../errors.ts';
-import { breaks, createSiteIn } from '../../sites/create-site.ts';
-import { readSites } from '../../sites/present-site.ts';
+import { invalidInput, notAllowed } from '../../errors.ts';
+import { applySiteChanges } from '../../sites/change-site.ts';
+import { createSiteIn } from '../../sites/create-site.ts';
+import { bumpDataVersion } from '../../sites/data-version.ts';
+import { findSite, readSites } from '../../sites/present-site.ts';
+import { actOf } from '../act-of.ts';
 import type { Api } from '../api.ts';
 
 export function registerSites({ route, deps }: Api): void {
@@ -23,71 +22,50 @@ export function registerSites({ route, deps }: Api): void {
     return found;
   });
 
-  route(createSite, async ({ actor, body, requestId }) => {
-    if (actor.kind !== 'person') throw signedOut();
+  route(createSite, async (call) => {
+    const { actor, body } = call;
+    if (actor.kind !== 'person') throw notAllowed();
     const may = (await organisationsOf(db, actor.personId, clock.now())).filter((each) =>
       roleMay(each.role, 'site.create'),
     );
     const organisationId = chosenOrganisation(may, body.organisationId);
-    const siteId = await createSiteIn(db, organisationId, body, clock.now(), (tx, id) =>
+    const made = await createSiteIn(db, organisationId, body, clock.now(), (tx, siteId) =>
       recordAct(tx, {
-        organisationId,
-        siteId: id,
-        at: clock.now(),
-        actor,
+        ...actOf({ ...call, organisationId, siteId }, clock),
         action: 'site.create',
         subjectKind: 'site',
-        subjectId: id,
+        subjectId: siteId,
         after: { name: body.name, timeZone: body.timeZone, lostFinish: body.lostFinish ?? 'infer' },
-        requestId,
       }),
     );
-    return withTenant(db, organisationId, (tx) => siteOrNotFound(tx, organisationId, siteId));
+    return withTenant(db, organisationId, (tx) => findSite(tx, organisationId, made));
   });
 
   route(readSite, ({ organisationId, siteId }) =>
-    withTenant(db, organisationId, (tx) => siteOrNotFound(tx, organisationId, siteId)),
+    withTenant(db, organisationId, (tx) => findSite(tx, organisationId, siteId)),
   );
 
-  route(changeSite, async ({ organisationId, siteId, body, actor, requestId }) => {
-    const { valuePerJob, ...given } = body;
-    const rebuilds = 'lostFinish' in body || 'newPassAfterDays' in body;
-    const answer = await withTenant(db, organisationId, async (tx) => {
-      const before = await siteOrNotFound(tx, organisationId, siteId);
-      const changes = {
-        ...given,
-        ...(valuePerJob === undefined
-          ? {}
-          : { valuePerJob: valuePerJob === null ? null : String(valuePerJob) }),
-        ...(rebuilds ? { rebuildRequestedAt: clock.now() } : {}),
-      };
-      if (Object.keys(changes).length > 0)
-        await tx
-          .update(site)
-          .set(changes)
-          .where(and(eq(site.organisationId, organisationId), eq(site.id, siteId)));
-      if (body.name !== undefined) await renameSiteZone(tx, organisationId, siteId, body.name);
-      const after = await siteOrNotFound(tx, organisationId, siteId);
+  route(changeSite, async (call) => {
+    const { organisationId, siteId, body } = call;
+    const changed = await withTenant(db, organisationId, async (tx) => {
+      const before = await findSite(tx, organisationId, siteId);
+      if (Object.keys(body).length === 0) return before;
+      const writer = { tx, organisationId, siteId };
+      await applySiteChanges(writer, before, body, clock.now());
+      await bumpDataVersion(writer);
+      const after = await findSite(tx, organisationId, siteId);
       await recordAct(tx, {
-        organisationId,
-        siteId,
-        at: clock.now(),
-        actor,
+        ...actOf(call, clock),
         action: 'site.change',
         subjectKind: 'site',
         subjectId: siteId,
         before,
         after,
-        requestId,
       });
       return after;
-    }).catch((error: unknown) => {
-      if (breaks(error, 'site_name_once'))
-        throw conflict('There is a site of this name already. Choose another name.');
-      throw error;
     });
-    if (rebuilds) await queue.wake(organisationId, siteId);
-    return answer;
+    if (changed.busy) await queue.wake(organisationId, siteId);
+    return changed;
   });
 }
 
@@ -109,24 +87,4 @@ function chosenOrganisation(
       },
     ]);
   return only.id;
-}
-
-async function siteOrNotFound(tx: Transaction, organisationId: number, siteId: number) {
-  const [found] = await readSites(tx, organisationId, siteId);
-  if (!found) throw notFound('The site');
-  return found;
-}
-
-async function renameSiteZone(
-  tx: Transaction,
-  organisationId: number,
-  siteId: number,
-  name: string,
-): Promise<void> {
-  await tx
-    .update(zone)
-    .set({ name })
-    .where(
-      and(eq(zone.organisationId, organisationId), eq(zone.siteId, siteId), eq(zone.kind, 'site')),
-    );
 }

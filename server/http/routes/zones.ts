@@ -1,20 +1,12 @@
-import { and, eq } from 'drizzle-orm';
-import type { z } from 'zod';
 import { changeZone, createZone, listZones, readZone } from '../../../shared/contracts/zones.ts';
 import { recordAct } from '../../audit/record-act.ts';
-import { area, zone } from '../../db/schema/zones.ts';
 import { withTenant } from '../../db/tenant.ts';
-import { invalidInput, notFound } from '../../errors.ts';
+import { applyZoneChanges } from '../../sites/change-zone.ts';
 import { bumpDataVersion } from '../../sites/data-version.ts';
-import { readZones } from '../../sites/read-zones.ts';
-import {
-  createArea,
-  createLoop,
-  declareServers,
-  refuseTakenName,
-  setLoopAreas,
-  type SiteWriter,
-} from '../../sites/write-zones.ts';
+import { findZone, readZones } from '../../sites/read-zones.ts';
+import { createArea } from '../../sites/write-areas.ts';
+import { createLoop } from '../../sites/write-loops.ts';
+import { actOf } from '../act-of.ts';
 import type { Api } from '../api.ts';
 
 export function registerZones({ route, deps }: Api): void {
@@ -25,126 +17,51 @@ export function registerZones({ route, deps }: Api): void {
   );
 
   route(readZone, ({ organisationId, siteId, params }) =>
-    withTenant(db, organisationId, (tx) =>
-      zoneOrNotFound({ tx, organisationId, siteId }, params.zoneId),
-    ),
+    withTenant(db, organisationId, (tx) => findZone(tx, organisationId, siteId, params.zoneId)),
   );
 
-  route(createZone, async ({ organisationId, siteId, body, actor, requestId }) => {
-    const answer = await withTenant(db, organisationId, async (tx) => {
+  route(createZone, async (call) => {
+    const { organisationId, siteId, body } = call;
+    const made = await withTenant(db, organisationId, async (tx) => {
       const writer = { tx, organisationId, siteId };
       const id =
         body.kind === 'area' ? await createArea(writer, body) : await createLoop(writer, body);
-      const after = await zoneOrNotFound(writer, id);
+      const after = await findZone(tx, organisationId, siteId, id);
       await bumpDataVersion(writer);
       await recordAct(tx, {
-        organisationId,
-        siteId,
-        at: clock.now(),
-        actor,
+        ...actOf(call, clock),
         action: 'zone.create',
         subjectKind: 'zone',
         subjectId: id,
         after,
-        requestId,
       });
       return after;
     });
-    if (answer.state === 'deriving') await queue.wake(organisationId, siteId);
-    return answer;
+    if (made.state === 'deriving') await queue.wake(organisationId, siteId);
+    return made;
   });
 
-  route(changeZone, async ({ organisationId, siteId, params, body, actor, requestId }) => {
-    const { zoneId } = params;
-    const answer = await withTenant(db, organisationId, async (tx) => {
+  route(changeZone, async (call) => {
+    const { organisationId, siteId, params, body } = call;
+    const changed = await withTenant(db, organisationId, async (tx) => {
       const writer = { tx, organisationId, siteId };
-      const before = await zoneOrNotFound(writer, zoneId);
-      await applyChanges(writer, before, body);
-      const after = await zoneOrNotFound(writer, zoneId);
+      const before = await findZone(tx, organisationId, siteId, params.zoneId);
+      if (Object.keys(body).length === 0) return before;
+      await applyZoneChanges(writer, before, body);
+      const after = await findZone(tx, organisationId, siteId, params.zoneId);
       await bumpDataVersion(writer);
       await recordAct(tx, {
-        organisationId,
-        siteId,
-        at: clock.now(),
-        actor,
+        ...actOf(call, clock),
         action: 'zone.change',
         subjectKind: 'zone',
-        subjectId: zoneId,
+        subjectId: params.zoneId,
         before,
-        after,
-        requestId,
+        // A number of servers from a date on does not show in the zone as it is now.
+        after: { ...after, ...(body.serversFrom ? { serversFrom: body.serversFrom } : {}) },
       });
       return after;
     });
-    if (answer.state === 'deriving') await queue.wake(organisationId, siteId);
-    return answer;
+    if (changed.state === 'deriving') await queue.wake(organisationId, siteId);
+    return changed;
   });
-}
-
-async function zoneOrNotFound({ tx, organisationId, siteId }: SiteWriter, zoneId: number) {
-  const [found] = await readZones(tx, organisationId, siteId, zoneId);
-  if (!found) throw notFound('The zone');
-  return found;
-}
-
-type ZoneNow = Awaited<ReturnType<typeof zoneOrNotFound>>;
-type ZoneChanges = z.output<typeof changeZone.body>;
-
-async function applyChanges(
-  writer: SiteWriter,
-  before: ZoneNow,
-  changes: ZoneChanges,
-): Promise<void> {
-  refuseMisplaced(before, changes);
-  const { tx, organisationId, siteId } = writer;
-  const { name, countsFrom, servers, serversFrom, position, areaIds } = changes;
-  if (name !== undefined) await refuseTakenName(writer, before.kind, name, before.id);
-  if (areaIds) await setLoopAreas(writer, before.id, areaIds);
-  if (servers !== undefined)
-    await declareServers(
-      writer,
-      before.id,
-      servers,
-      serversFrom === undefined ? null : new Date(serversFrom),
-    );
-  if (position !== undefined)
-    await tx
-      .update(area)
-      .set({ position })
-      .where(
-        and(
-          eq(area.organisationId, organisationId),
-          eq(area.siteId, siteId),
-          eq(area.id, before.id),
-        ),
-      );
-  const derives =
-    areaIds !== undefined || (countsFrom !== undefined && countsFrom !== before.countsFrom);
-  const ownColumns = {
-    ...(name === undefined ? {} : { name }),
-    ...(countsFrom === undefined ? {} : { countsFrom }),
-    ...(derives ? { state: 'deriving' as const } : {}),
-  };
-  if (Object.keys(ownColumns).length > 0)
-    await tx
-      .update(zone)
-      .set(ownColumns)
-      .where(
-        and(
-          eq(zone.organisationId, organisationId),
-          eq(zone.siteId, siteId),
-          eq(zone.id, before.id),
-        ),
-      );
-}
-
-function refuseMisplaced(before: ZoneNow, changes: ZoneChanges): void {
-  const errors = [];
-  if (changes.areaIds && before.kind !== 'loop')
-    errors.push({ field: 'areaIds', message: 'Only a loop is made of chosen areas.' });
-  if (changes.position !== undefined && before.kind !== 'area')
-    errors.push({ field: 'position', message: 'Only an area has a place in the flow.' });
-  if (changes.serversFrom !== undefined && changes.servers === undefined)
-    errors.push({ field: 'serversFrom', message: 'Say how many servers there are from then on.' });
-  if (errors.length > 0) throw invalidInput('Some of this does not go with such a zone.', errors);
 }
