@@ -43,6 +43,9 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
     select null, null, null, record_key
     from keyed where record_key is not null
     group by record_key having count(*) > 1`);
+  // The planner cannot tell how many rows are told again: with an index either way of joining is fast.
+  await tx.execute(sql`create index on retold (job_key, area_id, about)`);
+  await tx.execute(sql`create index on retold (record_key)`);
   await tx.execute(sql`analyze retold`);
   await tx.execute(sql`/* told rows of records told of more than once */
     create temp table told_row on commit drop as
