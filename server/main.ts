@@ -2,6 +2,7 @@ import { once } from 'node:events';
 import { createServer, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { fileURLToPath } from 'node:url';
+import { DrizzleQueryError } from 'drizzle-orm';
 import { buildApp, serveClient } from './app.ts';
 import { createFirstAdminGate } from './auth/first-admin.ts';
 import { createSignInThrottle } from './auth/throttle.ts';
@@ -32,21 +33,30 @@ async function main(): Promise<void> {
         log.error({ err: error }, 'while stopping');
       });
   };
-  stopOnSignals(stopAll);
   // The queue's own upkeep fails while the database is away; requests are answered as soon as it is back.
   process.on('unhandledRejection', (error) => {
     log.error({ err: error }, 'left unhandled');
   });
+  const stopping = new AbortController();
+  let started: Promise<void> = Promise.resolve();
+  onStopSignal(async () => {
+    stopping.abort();
+    await started.catch(() => undefined);
+    await stopAll();
+  });
   try {
-    await start(env, log, stops);
+    await (started = start(env, log, stops, stopping.signal));
   } catch (error) {
+    // Whoever asked to stop while it started has it stopped, and that is no failure.
+    if (stopping.signal.aborted) return;
     await stopAll();
     throw error;
   }
 }
 
-async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
+async function start(env: Env, log: Logger, stops: Stop[], stopping: AbortSignal): Promise<void> {
   const migratingUrl = env.DATABASE_URL ?? (await localDatabase(env, stops));
+  stopping.throwIfAborted();
   const migrated = await migrateDatabase(migratingUrl, env.DATABASE_APP_URL);
   const onIdleError = (error: Error) => {
     log.warn({ err: error }, 'a database connection was lost');
@@ -61,6 +71,7 @@ async function start(env: Env, log: Logger, stops: Stop[]): Promise<void> {
   const { gate, token } = await createFirstAdminGate(migrating, db);
   const worker = await startWorker(migrated.applicationUrl, { db, clock: systemClock, log }, log);
   stops.push(() => worker.stop());
+  stopping.throwIfAborted();
   const client = env.WEIRMARK_DEV ? await developmentClient(stops) : serveClient(clientFolder);
   const app = buildApp(
     {
@@ -135,18 +146,21 @@ async function close(server: Server): Promise<void> {
   clearTimeout(force);
 }
 
-function stopOnSignals(stopAll: Stop): void {
-  let stopping = false;
+/** The first signal stops in order, the second at once. */
+function onStopSignal(stopInOrder: Stop): void {
+  let isStopping = false;
   const stop = () => {
-    if (stopping) process.exit(1);
-    stopping = true;
-    void stopAll().then(() => process.exit(0));
+    if (isStopping) process.exit(1);
+    isStopping = true;
+    void stopInOrder().then(() => process.exit(0));
   };
   process.on('SIGINT', stop);
   process.on('SIGTERM', stop);
 }
 
 main().catch((error: unknown) => {
-  process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+  // A failed statement's own message holds the values bound to it.
+  const told = error instanceof DrizzleQueryError ? error.cause : error;
+  process.stderr.write(`${told instanceof Error ? told.message : String(told)}\n`);
   process.exit(1);
 });

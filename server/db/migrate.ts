@@ -27,7 +27,7 @@ export async function migrateDatabase(
   givenApplicationUrl?: string,
 ): Promise<{ applicationUrl: string }> {
   const client = new Client({ connectionString: migratingUrl });
-  await client.connect();
+  await connectOrTell(client);
   try {
     const db = drizzle(client, { casing: 'snake_case' }) as unknown as Database;
     await db.execute(sql`/* migration lock */ select pg_advisory_lock(${migrationLock})`);
@@ -39,6 +39,20 @@ export async function migrateDatabase(
     return { applicationUrl: givenApplicationUrl };
   } finally {
     await client.end();
+  }
+}
+
+/** @throws Error with one sentence that says which database cannot be reached, and why */
+async function connectOrTell(client: Client): Promise<void> {
+  try {
+    await client.connect();
+  } catch (cause) {
+    // An address with several hosts behind it fails with an error for each, and no message of its own.
+    const [reason] = cause instanceof AggregateError ? (cause.errors as unknown[]) : [cause];
+    throw new Error(
+      `The database at ${client.host}:${client.port} cannot be used (${reason instanceof Error ? reason.message : String(reason)}). Check DATABASE_URL.`,
+      { cause },
+    );
   }
 }
 
