@@ -1,28 +1,48 @@
+import { readdirSync } from 'node:fs';
 import importX, { createNodeResolver } from 'eslint-plugin-import-x';
 import reactHooks from 'eslint-plugin-react-hooks';
 import globals from 'globals';
 import tseslint from 'typescript-eslint';
+
+const features = readdirSync('src/features');
+const questionsAndActs = [
+  'auth',
+  'intake',
+  'sites',
+  'audit',
+  'findings',
+  'caps',
+  'weeks',
+  'reports',
+  'mail',
+];
 
 /** Who may import whom: `target` may not reach `from`. */
 const zones = [
   { target: './shared', from: ['./server', './src'] },
   { target: './src', from: './server' },
   { target: './server', from: './src' },
+  { target: ['./shared', './server', './src'], from: './tests' },
+  { target: './server/setup', from: './server', except: ['./setup'] },
   { target: './server/methods', from: './server', except: ['./methods'] },
   { target: './server/db', from: './server', except: ['./db', './setup', './jobs/queues.ts'] },
   { target: './server/flow', from: './server', except: ['./flow', './db', './methods'] },
-  {
-    target: ['./server/intake', './server/auth', './server/sites', './server/audit'],
-    from: ['./server/http', './server/jobs'],
-    except: ['../jobs/queues.ts'],
-  },
+  ...questionsAndActs.flatMap((name) => [
+    { target: `./server/${name}`, from: './server/http' },
+    { target: `./server/${name}`, from: './server/jobs', except: ['./queues.ts'] },
+  ]),
   { target: './server/jobs', from: './server/http' },
   { target: './src/ui', from: './src', except: ['./ui', './lib'] },
   { target: './src/lib', from: './src', except: ['./lib'] },
   { target: './src/api', from: './src', except: ['./api', './lib'] },
   { target: './src/charts', from: './src', except: ['./charts', './lib', './ui'] },
-  { target: './src/features', from: ['./src/pages', './src/app'], except: ['./paths.ts'] },
-  { target: './src/pages', from: './src/app', except: ['./paths.ts'] },
+  { target: './src/features', from: './src/pages' },
+  { target: ['./src/features', './src/pages'], from: './src/app', except: ['./paths.ts'] },
+  ...features.map((name) => ({
+    target: `./src/features/${name}`,
+    from: './src/features',
+    except: [`./${name}`],
+  })),
 ];
 
 export default tseslint.config(
@@ -74,5 +94,21 @@ export default tseslint.config(
     files: ['**/*.mjs'],
     ...tseslint.configs.disableTypeChecked,
     languageOptions: { globals: globals.node, parserOptions: { projectService: false } },
+  },
+  {
+    files: ['server/setup/*.mjs'],
+    rules: {
+      'no-restricted-imports': [
+        'error',
+        {
+          patterns: [
+            {
+              regex: '^(?!node:|\\./)',
+              message: 'It runs before there are packages: built-ins only.',
+            },
+          ],
+        },
+      ],
+    },
   },
 );

@@ -33,7 +33,7 @@ async function main(): Promise<boolean> {
       await db.$client.end();
     }
   } finally {
-    if (local?.owned) await local.stop();
+    await local?.stop();
   }
 }
 

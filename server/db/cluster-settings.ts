@@ -5,7 +5,7 @@ const megabyte = 1024 * 1024;
 
 /** Settings of a cluster: loopback only, and memory fit for analysis on a small machine. */
 export function clusterSettings(kind: ClusterKind, port: number): string {
-  const memory = Math.floor(os.totalmem() / megabyte);
+  const memory = Math.floor(Math.min(os.totalmem(), process.constrainedMemory()) / megabyte);
   const settings: Record<string, string> = {
     listen_addresses: '127.0.0.1',
     port: String(port),
@@ -18,6 +18,8 @@ export function clusterSettings(kind: ClusterKind, port: number): string {
     max_wal_size: '4GB',
     random_page_cost: '1.1',
     jit: 'off',
+    // Containers often have 64 MB in /dev/shm, too little for what parallel plans share.
+    dynamic_shared_memory_type: 'sysv',
     timezone: 'UTC',
     log_timezone: 'UTC',
     password_encryption: 'scram-sha-256',

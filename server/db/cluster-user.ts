@@ -29,9 +29,12 @@ export function clusterUser(): ClusterUser {
   };
 }
 
+/** Begins the name of what `mayWrite` makes and removes. */
+export const probePrefix = '.probe-';
+
 /** Whether that user may write below a folder: parents may be closed to it. */
 export function mayWrite(user: ClusterUser, folder: string): boolean {
-  const probe = `${folder}/.probe`;
+  const probe = `${folder}/${probePrefix}${process.pid}`;
   const touched = spawnSync('/bin/sh', ['-c', 'touch "$0" && rm "$0"', probe], {
     ...idsOf(user),
     cwd: '/',
@@ -56,6 +59,23 @@ export function runAsCluster(user: ClusterUser, program: string, args: readonly 
   throw new Error(`${program} ${args[0] ?? ''} failed with status ${ended.status ?? 'none'}.`, {
     cause: ended.error,
   });
+}
+
+/**
+ * Ids of the processes that work in a folder, as those of a PostgreSQL do in its data directory. Asked as
+ * that user: in a container even root may not look into another's processes.
+ */
+export function processesWorkingIn(user: ClusterUser, folder: string): number[] {
+  const links = spawnSync(
+    'find',
+    ['/proc', '-mindepth', '2', '-maxdepth', '2', '-name', 'cwd', '-printf', '%p %l\\n'],
+    { ...idsOf(user), cwd: '/', encoding: 'utf8', stdio: ['ignore', 'pipe', 'ignore'] },
+  );
+  if (links.error) throw new Error('The program find is missing.', { cause: links.error });
+  return links.stdout
+    .split('\n')
+    .filter((line) => line.endsWith(` ${folder}`))
+    .map((line) => Number(line.split('/')[2]));
 }
 
 const idsOf = ({ uid, gid }: ClusterUser) =>

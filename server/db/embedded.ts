@@ -1,37 +1,29 @@
-import { randomBytes } from 'node:crypto';
-import { existsSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
-import { createServer, type AddressInfo } from 'node:net';
+import { existsSync, readFileSync, rmSync } from 'node:fs';
 import path from 'node:path';
-import { Client } from 'pg';
 import { findPostgresBinaries } from '../setup/postgres-binaries.mjs';
-import { clusterFolder, type ClusterKind } from './cluster-folder.ts';
-import { clusterSettings } from './cluster-settings.ts';
-import { runAsCluster, type ClusterUser } from './cluster-user.ts';
+import { adoptRunning, isRunning } from './adopt-cluster.ts';
+import { urlOf, type Cluster } from './cluster.ts';
+import { clusterFolder, usedTestFolders, type ClusterKind } from './cluster-folder.ts';
+import { enterCluster, isClusterInUse, leaveCluster, withClusterLock } from './cluster-users.ts';
+import { clusterUser } from './cluster-user.ts';
+import { makeCluster } from './make-cluster.ts';
+import { ensureDatabase, haltCluster, startCluster } from './run-cluster.ts';
 
 /** A PostgreSQL of our own on loopback. */
 export interface EmbeddedDatabase {
   /** Address of the role that owns the schema. */
   migratingUrl: string;
-  /** Whether this process is to stop it: false while another living server uses it. */
+  /** Whether this process has a part in stopping it: always. */
   owned: boolean;
+  /** Leaves it; the last process to leave stops it. */
   stop(): Promise<void>;
+  /** The same where nothing can be waited for: in the listener of a process's exit. */
+  stopAtExit(): void;
 }
-
-interface Cluster {
-  bin: string;
-  user: ClusterUser;
-  /** Holds the data directory, and beside it the password, the port and the owner. */
-  folder: string;
-  data: string;
-  kind: ClusterKind;
-}
-
-const databaseName = 'weirmark';
-const portTries = 3;
 
 /**
  * Starts the local cluster, making it first where it is not there; takes over one that a killed server
- * left running, and shares one that another living server owns.
+ * left running, and shares one that another living process uses.
  *
  * @throws Error with one sentence that says what to do
  */
@@ -40,159 +32,66 @@ export async function startEmbedded(options: {
   kind: ClusterKind;
   say: (line: string) => void;
 }): Promise<EmbeddedDatabase> {
-  const bin = findPostgresBinaries();
-  if (bin === null)
-    throw new Error('PostgreSQL is not installed. Run npm start, or: apt-get install postgresql');
-  const { folder, user } = clusterFolder(options.kind, options.dataDir);
-  const cluster = { bin, user, folder, data: path.join(folder, 'data'), kind: options.kind };
-  if (!existsSync(path.join(cluster.data, 'PG_VERSION'))) {
-    options.say('Making the local database …');
-    makeCluster(cluster);
-  }
-  const running = await adoptRunning(cluster);
-  const port = running ?? (await startCluster(cluster));
-  const owned = takeOwnership(cluster);
-  return {
-    migratingUrl: urlOf(cluster, port),
-    owned,
-    stop: () => Promise.resolve(stopCluster(cluster)),
-  };
-}
-
-const urlOf = (cluster: Cluster, port: number) =>
-  `postgres://${databaseName}:${readFileSync(path.join(cluster.folder, 'password'), 'utf8')}@127.0.0.1:${port}/${databaseName}`;
-
-/** A half-made data directory has no PG_VERSION of ours: it is removed and made anew. */
-function makeCluster(cluster: Cluster): void {
-  const { folder, data, user, bin } = cluster;
-  const password = path.join(folder, 'password');
-  const fresh = path.join(folder, 'data-in-the-making');
-  rmSync(fresh, { recursive: true, force: true });
-  rmSync(data, { recursive: true, force: true });
-  writeFileSync(password, randomBytes(18).toString('base64url'), { mode: 0o600 });
-  user.own(password);
-  runAsCluster(user, path.join(bin, 'initdb'), [
-    `--pgdata=${fresh}`,
-    `--username=${databaseName}`,
-    `--pwfile=${password}`,
-    '--auth=scram-sha-256',
-    '--encoding=UTF8',
-    '--locale=C.UTF-8',
-    ...(cluster.kind === 'test' ? ['--no-sync'] : []),
-  ]);
-  runAsCluster(user, '/bin/mv', [fresh, data]);
-}
-
-/** The port of a cluster that runs already and answers; null where none does. */
-async function adoptRunning(cluster: Cluster): Promise<number | null> {
-  const pidFile = path.join(cluster.data, 'postmaster.pid');
-  if (!existsSync(pidFile)) return null;
-  const port = Number(readFileSync(pidFile, 'utf8').split('\n')[3]);
-  if (!Number.isInteger(port) || port <= 0) return null;
-  return (await answers(urlOf(cluster, port).replace(/\/[^/]+$/, '/postgres'))) ? port : null;
-}
-
-async function answers(url: string): Promise<boolean> {
-  const client = new Client({ connectionString: url, connectionTimeoutMillis: 3000 });
-  try {
-    await client.connect();
-    await client.query('select 1');
-    return true;
-  } catch {
-    return false;
-  } finally {
-    await client.end().catch(() => undefined);
-  }
-}
-
-async function startCluster(cluster: Cluster): Promise<number> {
-  const log = path.join(cluster.folder, 'postgresql.log');
-  const settings = path.join(cluster.folder, 'settings.conf');
-  let failure: unknown;
-  for (let attempt = 0; attempt < portTries; attempt++) {
-    const port = await freePort();
-    writeFileSync(settings, clusterSettings(cluster.kind, port));
-    cluster.user.own(settings);
-    try {
-      runAsCluster(cluster.user, path.join(cluster.bin, 'pg_ctl'), [
-        'start',
-        '--wait',
-        '--timeout=120',
-        `--pgdata=${cluster.data}`,
-        `--log=${log}`,
-        `--options=-c config_file=${settings} -c data_directory=${cluster.data} -c hba_file=${cluster.data}/pg_hba.conf -c ident_file=${cluster.data}/pg_ident.conf`,
-      ]);
-      await ensureDatabase(urlOf(cluster, port));
-      return port;
-    } catch (error) {
-      failure = error;
+  const { kind, say } = options;
+  if (process.platform !== 'linux')
+    throw new Error('The local database is for Linux. Set DATABASE_URL to a PostgreSQL server.');
+  if (kind === 'test') await removeAbandonedTests();
+  const { folder, user } = clusterFolder(kind, options.dataDir);
+  return withClusterLock(folder, async () => {
+    const data = path.join(folder, 'data');
+    const cluster = { bin: programsFor(data), user, folder, data, kind };
+    if (!existsSync(data)) {
+      say(`Making the local database in ${folder} …`);
+      makeCluster(cluster);
     }
-  }
-  throw new Error(`The local database did not start. Its log, ${log}, says why.`, {
-    cause: failure,
+    const port = (await adoptRunning(cluster)) ?? (await startCluster(cluster));
+    await ensureDatabase(cluster, port);
+    enterCluster(folder);
+    return {
+      migratingUrl: urlOf(cluster, port),
+      owned: true,
+      stop: () => stop(cluster),
+      stopAtExit: () => {
+        leave(cluster);
+      },
+    };
   });
 }
 
-/** Free now; where another takes it in between, the start fails and the next port is tried. */
-async function freePort(): Promise<number> {
-  const server = createServer();
-  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
-  const { port } = server.address() as AddressInfo;
-  await new Promise<void>((resolve) => server.close(() => resolve()));
-  return port;
-}
-
-async function ensureDatabase(url: string): Promise<void> {
-  const client = new Client({ connectionString: url.replace(/\/[^/]+$/, '/postgres') });
-  await client.connect();
-  try {
-    const found = await client.query('select from pg_database where datname = $1', [databaseName]);
-    if (found.rowCount === 0) await client.query(`create database ${databaseName}`);
-  } finally {
-    await client.end();
+/** A test run that was killed leaves its cluster behind, running. */
+async function removeAbandonedTests(): Promise<void> {
+  const user = clusterUser();
+  for (const folder of usedTestFolders(user)) {
+    const data = path.join(folder, 'data');
+    const cluster = { bin: programsFor(data), user, folder, data, kind: 'test' as const };
+    await stop(cluster).catch((error: unknown) => {
+      // Another run may have removed it first.
+      if (existsSync(folder)) throw error;
+    });
   }
 }
 
-/** Notes this process as the owner, unless another living one is. */
-function takeOwnership(cluster: Cluster): boolean {
-  const file = path.join(cluster.folder, 'owner.pid');
-  const owner = existsSync(file) ? Number(readFileSync(file, 'utf8')) : 0;
-  if (owner > 0 && owner !== process.pid && isLivingServer(owner)) return false;
-  writeFileSync(file, String(process.pid));
-  return true;
-}
+const stop = (cluster: Cluster) =>
+  withClusterLock(cluster.folder, () => {
+    leave(cluster);
+  });
 
-/** A process with this id that is a Node: ids are given again, and a shell is no server of ours. */
-function isLivingServer(pid: number): boolean {
-  try {
-    process.kill(pid, 0);
-    const command = `/proc/${pid}/cmdline`;
-    return !existsSync(command) || readFileSync(command, 'utf8').includes('node');
-  } catch {
-    return false;
-  }
-}
-
-function stopCluster(cluster: Cluster): void {
-  if (existsSync(path.join(cluster.data, 'postmaster.pid'))) stopPostmaster(cluster);
-  rmSync(path.join(cluster.folder, 'owner.pid'), { force: true });
+function leave(cluster: Cluster): void {
+  leaveCluster(cluster.folder);
+  if (isClusterInUse(cluster.folder)) return;
+  if (isRunning(cluster)) haltCluster(cluster);
   if (cluster.kind === 'test') rmSync(cluster.folder, { recursive: true, force: true });
 }
 
-/** One that was killed has left its file behind, and there is nothing to stop. */
-function stopPostmaster(cluster: Cluster): void {
-  const pid = Number(
-    readFileSync(path.join(cluster.data, 'postmaster.pid'), 'utf8').split('\n')[0],
+/** Programs of the version that made the data, or the newest for new data. */
+function programsFor(data: string): string {
+  const versionFile = path.join(data, 'PG_VERSION');
+  const version = existsSync(versionFile) ? readFileSync(versionFile, 'utf8').trim() : undefined;
+  const bin = findPostgresBinaries(version);
+  if (bin !== null) return bin;
+  throw new Error(
+    version === undefined
+      ? 'PostgreSQL is not installed. As root, run: apt-get install postgresql'
+      : `The local database was made by PostgreSQL ${version}, which is not installed. As root, run: apt-get install postgresql-${version}`,
   );
-  try {
-    process.kill(pid, 0);
-  } catch {
-    return;
-  }
-  runAsCluster(cluster.user, path.join(cluster.bin, 'pg_ctl'), [
-    'stop',
-    '--wait',
-    '--mode=fast',
-    `--pgdata=${cluster.data}`,
-  ]);
 }

@@ -19,7 +19,7 @@ function keepClusterUnmade(asRoot) {
 /** Installs packages of Debian, as root or through sudo without a password. @throws SetupError */
 export function installDebianPackages(packages, purpose) {
   const names = packages.join(' ');
-  const byHand = `Install it by hand: apt-get install ${names}`;
+  const byHand = `As root, run: apt-get install ${names}`;
   if (!existsSync('/usr/bin/apt-get'))
     throw new SetupError(
       `${purpose} is missing, and this is not Debian. Install ${names} by hand.`,
@@ -35,7 +35,14 @@ export function installDebianPackages(packages, purpose) {
       ? run('apt-get', args, { env })
       : run('sudo', ['-n', 'env', 'DEBIAN_FRONTEND=noninteractive', 'apt-get', ...args]);
   const updated = aptGet('update');
-  const installed = aptGet('install', '-y', '--no-install-recommends', ...packages);
+  const installed = aptGet(
+    'install',
+    '-y',
+    '-o',
+    'DPkg::Lock::Timeout=300',
+    '--no-install-recommends',
+    ...packages,
+  );
   if (installed.ok) return;
   const why = (updated.ok ? installed : updated).output.trim().split('\n').slice(-3).join(' ');
   throw new SetupError(`${purpose} could not be installed: ${why} ${byHand}`);

@@ -6,6 +6,6 @@ const oldest = 20;
 export function checkNodeVersion() {
   if (Number(process.versions.node.split('.')[0]) < oldest)
     throw new SetupError(
-      `Weirmark needs Node ${oldest} or newer; this is ${process.versions.node}.`,
+      `Weirmark needs Node ${oldest} or newer, and this is ${process.versions.node}: install it from https://nodejs.org.`,
     );
 }

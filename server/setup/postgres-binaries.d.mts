@@ -1,2 +1,2 @@
-export function findPostgresBinaries(): string | null;
+export function findPostgresBinaries(version?: string): string | null;
 export function ensurePostgres(): void;

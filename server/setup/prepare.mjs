@@ -11,6 +11,7 @@ const steps = {
   start: [checkNodeVersion, ensureNodePackages, ensurePostgresUnlessGiven, ensureClientBuild],
   dev: [checkNodeVersion, ensureNodePackages, ensurePostgresUnlessGiven],
   test: [checkNodeVersion, ensureNodePackages, ensurePostgres, ensureChromium, ensureClientBuild],
+  check: [checkNodeVersion, ensureNodePackages, ensurePostgres, ensureChromium],
 };
 
 function ensurePostgresUnlessGiven() {
@@ -19,7 +20,7 @@ function ensurePostgresUnlessGiven() {
 
 process.chdir(fileURLToPath(new URL('../..', import.meta.url)));
 try {
-  for (const step of steps[process.argv[2] ?? 'start'] ?? steps.start) step();
+  for (const step of steps[process.argv[2]] ?? steps.start) step();
 } catch (error) {
   if (!(error instanceof SetupError)) throw error;
   process.stderr.write(`${error.message}\n`);

@@ -1,13 +1,14 @@
-import { afterEach, beforeEach, expect, vi } from 'vitest';
+import { afterAll, afterEach, expect } from 'vitest';
+
+const printed: unknown[][] = [];
 
 /** What is printed as a warning or an error, and was not expected, fails the test. */
-beforeEach(() => {
-  vi.spyOn(console, 'error').mockImplementation(() => undefined);
-  vi.spyOn(console, 'warn').mockImplementation(() => undefined);
-});
+console.error = (...words: unknown[]) => printed.push(words);
+console.warn = (...words: unknown[]) => printed.push(words);
 
-afterEach(() => {
-  const printed = [...vi.mocked(console.error).mock.calls, ...vi.mocked(console.warn).mock.calls];
-  vi.restoreAllMocks();
-  expect(printed).toEqual([]);
-});
+const expectSilence = () => {
+  expect(printed.splice(0)).toEqual([]);
+};
+afterEach(expectSilence);
+/** Before the first test, after the last, and while the file was read. */
+afterAll(expectSilence);
