@@ -38,7 +38,7 @@ export function SiteShell() {
         <JobSearch siteId={siteId} search={search} />
       </Header>
       <PeriodBar site={site} />
-      <div className="flex flex-1 flex-col md:flex-row">
+      <div className="flex flex-1 flex-col lg:flex-row">
         <Navigation site={site} search={search} />
         <main id="main" className="min-w-0 flex-1 bg-panel px-4 py-5 md:px-7">
           <OfflineNotice />
@@ -122,14 +122,14 @@ function Navigation({ site, search }: { site: Site; search: string }) {
   return (
     <nav
       aria-label="Screens"
-      className="no-print flex gap-1 border-b border-hair px-2 py-2 md:w-40 md:flex-col md:border-r md:border-b-0 md:px-0 md:py-5"
+      className="no-print flex gap-1 border-b border-hair px-2 py-2 lg:w-40 lg:flex-col lg:border-r lg:border-b-0 lg:px-0 lg:py-5"
     >
       {links.map(({ to, label }) => (
         <NavLink
           key={to}
           to={to + search}
           className={({ isActive }) =>
-            `px-4 py-1.5 no-underline hover:bg-mist ${isActive ? 'border-ink font-bold max-md:border-b-3 md:border-r-3' : 'text-soft'}`
+            `px-4 py-1.5 no-underline hover:bg-mist ${isActive ? 'border-ink font-bold max-lg:border-b-3 lg:border-r-3' : 'text-soft'}`
           }
         >
           {label}

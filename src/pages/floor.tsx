@@ -17,7 +17,10 @@ export function Component() {
   useTitle('Floor');
   const site = useSiteOfPage();
   const { period, unit, search } = usePeriod(site);
-  const floor = useQuery(floorQuery(site.id, { ...period, unit }));
+  const floor = useQuery({
+    ...floorQuery(site.id, { ...period, unit }),
+    enabled: site.dataUntil !== null,
+  });
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
   if (site.dataUntil === null)
     return (

@@ -83,12 +83,12 @@ export function DataTable<Row extends object>({
                       aria-sort={
                         sorted === 'asc' ? 'ascending' : sorted === 'desc' ? 'descending' : 'none'
                       }
-                      className={`px-2 py-1.5 whitespace-nowrap ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
+                      className={`px-2 py-1.5 align-bottom ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
                     >
                       <button
                         type="button"
                         onClick={header.column.getToggleSortingHandler()}
-                        className="cursor-pointer text-soft hover:text-ink"
+                        className={`cursor-pointer text-soft hover:text-ink ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
                       >
                         {columns[index]?.header}
                         <SortSign direction={sorted} />

@@ -46,14 +46,15 @@ export function SignInForm() {
       {demoAccounts.length > 0 ? (
         <section>
           <PanelHeading>Accounts of this demo</PanelHeading>
-          <ul className="mt-2 flex flex-col gap-1">
+          <ul className="flex flex-col">
             {demoAccounts.map((account) => (
               <li
                 key={account.email}
-                className="flex flex-wrap items-baseline justify-between gap-2"
+                className="flex items-center justify-between gap-4 border-b border-hair py-2"
               >
                 <span>
-                  {account.email}{' '}
+                  {account.email}
+                  <br />
                   <span className="text-soft">
                     {account.role}, {account.organisation}
                   </span>
@@ -65,7 +66,7 @@ export function SignInForm() {
                   }}
                   aria-label={`Fill in ${account.email}`}
                 >
-                  Fill in
+                  Fill&nbsp;in
                 </Button>
               </li>
             ))}
