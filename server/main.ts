@@ -106,7 +106,7 @@ async function localDatabase(env: Env, stops: Stop[]): Promise<string> {
     kind: env.WEIRMARK_DEV ? 'dev' : 'start',
     say,
   });
-  if (local.owned) stops.push(() => local.stop());
+  stops.push(() => local.stop());
   return local.migratingUrl;
 }
 

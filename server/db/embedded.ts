@@ -13,8 +13,6 @@ import { ensureDatabase, haltCluster, startCluster } from './run-cluster.ts';
 export interface EmbeddedDatabase {
   /** Address of the role that owns the schema. */
   migratingUrl: string;
-  /** Whether this process has a part in stopping it: always. */
-  owned: boolean;
   /** Leaves it; the last process to leave stops it. */
   stop(): Promise<void>;
   /** The same where nothing can be waited for: in the listener of a process's exit. */
@@ -49,7 +47,6 @@ export async function startEmbedded(options: {
     enterCluster(folder);
     return {
       migratingUrl: urlOf(cluster, port),
-      owned: true,
       stop: () => stop(cluster),
       stopAtExit: () => {
         leave(cluster);
