@@ -47,6 +47,10 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
   await tx.execute(sql`create index on retold (job_key, area_id, about)`);
   await tx.execute(sql`create index on retold (record_key)`);
   await tx.execute(sql`analyze retold`);
+  const { rows } = await tx.execute(
+    sql`/* any told again */ select exists (select from retold) as again`,
+  );
+  const filled = rows[0]?.again === true ? sql`with data` : sql`with no data`;
   await tx.execute(sql`/* told rows of records told of more than once */
     create temp table told_row on commit drop as
     with ${keyedRows(derivation)},
@@ -73,7 +77,8 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
         case when record_key is null then area_id end,
         case when record_key is null then about end
       order by upload_id, line, part
-    )`);
+    )
+    ${filled}`);
   await tx.execute(sql`analyze told_row`);
 }
 
