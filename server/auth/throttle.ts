@@ -3,9 +3,12 @@ import { RateLimiterPostgres, RateLimiterRes } from 'rate-limiter-flexible';
 import { ApiError } from '../errors.ts';
 import type { Database } from '../db/client.ts';
 
-/** Failed sign-ins that are let through before waiting begins, and how long it lasts. */
+/**
+ * Failed sign-ins that are let through before waiting begins, and how long it lasts. A whole plant may share
+ * one origin.
+ */
 const byAddress = { points: 8, duration: 15 * 60 };
-const byOrigin = { points: 40, duration: 15 * 60 };
+const byOrigin = { points: 100, duration: 15 * 60 };
 
 export interface SignInThrottle {
   /**

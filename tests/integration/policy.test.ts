@@ -4,6 +4,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { contracts } from '../../shared/contracts/all.ts';
 import type { Contract } from '../../shared/contracts/contract.ts';
 import { keyMay, policy, roleMay, type Role, type Rule } from '../../shared/permissions.ts';
+import { revokeSessionsOf } from '../../server/auth/sessions.ts';
 import { membership } from '../../server/db/schema/people.ts';
 import { startTestApp, testNow, type Agent, type TestApp } from '../support/app.ts';
 import { addMember } from '../support/people.ts';
@@ -20,6 +21,7 @@ type Caller =
   | 'stranger'
   | 'guest whose access has ended'
   | 'person who was removed, with a live session'
+  | 'person whose session was revoked'
   | 'analyst of the other organisation'
   | 'access key of the site'
   | 'access key of another site'
@@ -33,6 +35,7 @@ const callers: readonly Caller[] = [
   'stranger',
   'guest whose access has ended',
   'person who was removed, with a live session',
+  'person whose session was revoked',
   'analyst of the other organisation',
   'access key of the site',
   'access key of another site',
@@ -72,6 +75,12 @@ beforeAll(async () => {
         eq(membership.organisationId, lowmoor.organisationId),
       ),
     );
+  const revokedOne = await addMember(test, lowmoor.organisationId, 'admin');
+  agents.set(
+    'person whose session was revoked',
+    byAgent(await test.signIn(revokedOne.email, revokedOne.password)),
+  );
+  await revokeSessionsOf(test.db, revokedOne.id, testNow);
   agents.set(
     'analyst of the other organisation',
     byAgent(await test.signIn('analyst@fellgate.example')),
@@ -99,12 +108,18 @@ beforeAll(async () => {
 });
 afterAll(() => test.close());
 
+const signedOut: readonly Caller[] = [
+  'stranger',
+  'person whose session was revoked',
+  'access key that was revoked',
+];
+
 /** What the policy says of a call: let through, or refused with this status. */
 function expected(contract: Contract, caller: Caller): 'through' | 401 | 403 | 404 {
   const rule: Rule = policy[contract.action];
   const ofSite = contract.path.includes(':siteId');
   if (rule.open === 'anyone') return 'through';
-  if (caller === 'stranger' || caller === 'access key that was revoked') return 401;
+  if (signedOut.includes(caller)) return 401;
   if (caller.startsWith('access key')) {
     if (!keyMay(contract.action)) return 403;
     return caller === 'access key of the site' || !ofSite ? 'through' : 404;
@@ -168,6 +183,22 @@ describe('a site of another organisation', () => {
     const told = ({ body }: request.Response) => ({ ...(body as object), requestId: '' });
     expect(told(foreign)).toEqual(told(none));
   });
+});
+
+it('somebody who belongs nowhere any more sees no site', async () => {
+  const response = await agents.get('person who was removed, with a live session')?.(
+    'get',
+    '/api/sites',
+  );
+  expect([response?.status, response?.body]).toEqual([200, []]);
+});
+
+it('signing out everywhere is for signed-in persons', async () => {
+  const path = '/api/auth/sign-out-everywhere';
+  for (const caller of signedOut)
+    expect([caller, (await agents.get(caller)?.('post', path))?.status]).toEqual([caller, 401]);
+  const byKey = await agents.get('access key of the site')?.('post', path);
+  expect(byKey?.status).toBe(403);
 });
 
 it('every call has a rule', () => {

@@ -43,12 +43,27 @@ const count = async (db: Database, organisation: number, table: string) => {
   return Number(rows[0]?.count);
 };
 
+/** The columns of a table that can be inserted. */
+const columnsOf = async (table: string) => {
+  const { rows } = await test.migrating.execute(sql`
+    select column_name as name from information_schema.columns
+    where table_schema = 'public' and table_name = ${table} and is_generated = 'NEVER'`);
+  return sql.join(
+    rows.map((row) => sql.identifier(String(row.name))),
+    sql`, `,
+  );
+};
+
+const filledTables = async () => {
+  const filled = [];
+  for (const table of tables) if ((await count(test.db, lowmoor, table)) > 0) filled.push(table);
+  return filled;
+};
+
 describe('row-level security', () => {
   it('guards every table of tenants, and the test has rows in most of them', async () => {
     expect(tables.length).toBeGreaterThanOrEqual(18);
-    const filled = [];
-    for (const table of tables) if ((await count(test.db, lowmoor, table)) > 0) filled.push(table);
-    expect(filled).toEqual(
+    expect(await filledTables()).toEqual(
       expect.arrayContaining([
         'area',
         'area_spelling',
@@ -85,7 +100,7 @@ describe('row-level security', () => {
     }
   });
 
-  it('lets Fellgate neither change, nor remove, nor add anything of Lowmoor', async () => {
+  it('lets Fellgate neither change nor remove anything of Lowmoor', async () => {
     for (const table of tables.filter((each) => each !== 'audit_entry')) {
       const before = await count(test.db, lowmoor, table);
       // The site has its id where others have the site's.
@@ -102,10 +117,31 @@ describe('row-level security', () => {
       expect([table, removed.rowCount]).toEqual([table, 0]);
       expect([table, await count(test.db, lowmoor, table)]).toEqual([table, before]);
     }
+  });
+
+  it('lets Fellgate add nothing to Lowmoor, not even a row that Lowmoor has', async () => {
+    const tried = [];
+    for (const table of tables) {
+      const name = sql.identifier(table);
+      const { rows } = await test.migrating.execute(
+        sql`select to_jsonb(t) as copy from ${name} as t where organisation_id = ${lowmoor} limit 1`,
+      );
+      if (!rows[0]) continue;
+      tried.push(table);
+      const columns = await columnsOf(table);
+      await expect(
+        withTenant(test.db, fellgate, (tx) =>
+          tx.execute(sql`insert into ${name} (${columns}) overriding system value
+            select ${columns}
+            from jsonb_populate_record(null::public.${name}, ${JSON.stringify(rows[0]?.copy)}::jsonb)`),
+        ),
+        table,
+      ).rejects.toMatchObject({ cause: { code: '42501' } });
+    }
+    expect(tried).toEqual(await filledTables());
     await expect(
       withTenant(test.db, fellgate, (tx) =>
-        tx.execute(sql`insert into zone (organisation_id, site_id, kind, name)
-          values (${lowmoor}, 1, 'area', 'Slipped in')`),
+        tx.execute(sql`update site set organisation_id = ${lowmoor}`),
       ),
     ).rejects.toMatchObject({ cause: { code: '42501' } });
   });

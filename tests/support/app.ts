@@ -42,7 +42,7 @@ function testClock(start: Date): TestClock {
 export const testNow = new Date('2026-11-30T12:00:00Z');
 
 export async function startTestApp(
-  options: { demo?: boolean; clientFolder?: string } = {},
+  options: { demo?: boolean; clientFolder?: string; env?: Record<string, string> } = {},
 ): Promise<TestApp> {
   const database = await cloneDatabase();
   const db = connect(database.applicationUrl, { max: 8 });
@@ -56,7 +56,7 @@ export async function startTestApp(
     db,
     clock,
     log,
-    env: readEnv({ WEIRMARK_UPLOAD_LIMIT_MB: '8' }),
+    env: readEnv({ WEIRMARK_UPLOAD_LIMIT_MB: '8', ...options.env }),
     sessionKey: Buffer.alloc(32, 7),
     throttle: createSignInThrottle(db),
     queue: {
