@@ -70,7 +70,16 @@ export const nameSchema = z
   .min(1, 'Give a name.')
   .max(120, 'Use at most 120 characters.')
   .regex(/^\P{Cc}*$/u, 'Leave out line breaks and control characters.');
-/** A moment: ISO 8601 with an offset. */
-export const instantSchema = z.iso.datetime({ offset: true });
+const firstInstant = Date.parse('0001-01-01T00:00:00Z');
+const lastInstant = Date.parse('9999-12-31T23:59:59.999Z');
+
+/** A moment: ISO 8601 with an offset, in years that are written with four digits. */
+export const instantSchema = z.iso
+  .datetime({ offset: true, error: 'Use a time like 2026-10-24T06:00:00+01:00.' })
+  .refine((value) => {
+    const at = Date.parse(value);
+    // What is no time at all was complained of already.
+    return Number.isNaN(at) || (at >= firstInstant && at <= lastInstant);
+  }, 'Use a time from the year 1 to the year 9999.');
 /** A moment as it is answered, or null where it is not known. */
 export const instantOrNull = instantSchema.nullable();

@@ -208,8 +208,15 @@ describe('changing a zone', () => {
 
   it('refuses a date that no database holds', async () => {
     const { id } = await makeArea('Bench');
-    for (const serversFrom of ['0000-01-01T00:00:00Z', '2026-02-30T00:00:00Z', 'yesterday'])
-      await change(id, { servers: 2, serversFrom }).expect(400);
+    for (const serversFrom of [
+      '0000-01-01T00:00:00Z',
+      '9999-12-31T23:59:59-14:00',
+      '2026-02-30T00:00:00Z',
+      'yesterday',
+    ])
+      expect(fieldsOf(await change(id, { servers: 2, serversFrom }).expect(400))).toEqual([
+        'serversFrom',
+      ]);
   });
 
   it('stays as it is where nothing is asked for', async () => {
