@@ -44,6 +44,10 @@ export function installDebianPackages(packages, purpose) {
     ...packages,
   );
   if (installed.ok) return;
-  const why = (updated.ok ? installed : updated).output.trim().split('\n').slice(-3).join(' ');
-  throw new SetupError(`${purpose} could not be installed: ${why} ${byHand}`);
+  const errors = `${updated.output}\n${installed.output}`
+    .split('\n')
+    .filter((line) => /^(E|W): /.test(line));
+  throw new SetupError(
+    `${purpose} could not be installed (${errors.slice(-2).join(' ')}). Check the connection to Debian's packages and try again. ${byHand}`,
+  );
 }
