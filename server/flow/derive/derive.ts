@@ -39,15 +39,17 @@ export async function deriveTouchedJobs(derivation: Derivation): Promise<void> {
 /** The same, where `told_row` was gathered already. */
 export async function deriveFromToldRows(derivation: Derivation): Promise<void> {
   const { unitsChanged } = await refreshZones(derivation);
+  // Where most jobs changed, finding the hours to make would cost more than making all from the first on.
+  const mostly = await isMostOfSite(derivation);
+  if (mostly) await joinByHash(derivation, true);
   await mergeRecords(derivation);
   await findChangedJobs(derivation);
   await createTouchedHours(derivation);
-  // Where most jobs changed, finding the hours to make would cost more than making all from the first on.
-  const mostly = await isMostOfSite(derivation);
   const first = mostly ? await firstChange(derivation) : null;
   if (!mostly) await touchHoursOfChangedJobs(derivation);
   await replaceRecords(derivation);
   await replaceStays(derivation, sql`select job_key from changed_job`);
+  if (mostly) await joinByHash(derivation, false);
   if (mostly) await deriveLevelsFrom(derivation, await readZones(derivation), unitsChanged, first);
   else await deriveTouchedLevels(derivation, unitsChanged);
   await finish(derivation);
@@ -87,12 +89,22 @@ export async function deriveZone(derivation: Derivation, zoneId: number): Promis
 }
 
 /**
- * Whether so many jobs changed, against those that stand, that making every level afresh costs less than
+ * A load that brings most of a site works on whole tables, of which the planner has no count yet: it would
+ * look each row up. Until set back, it joins by hash.
+ */
+async function joinByHash({ tx }: Derivation, hash: boolean): Promise<void> {
+  await tx.execute(
+    sql`/* way of joining */ select set_config('enable_nestloop', ${hash ? 'off' : 'on'}, true)`,
+  );
+}
+
+/**
+ * Whether so many jobs are touched, against those that stand, that making every level afresh costs less than
  * finding the hours to make.
  */
 async function isMostOfSite({ tx, organisationId, siteId }: Derivation): Promise<boolean> {
-  const { rows } = await tx.execute(sql`/* share of changed jobs */
-    with changed as (select count(*) as jobs from changed_job),
+  const { rows } = await tx.execute(sql`/* share of touched jobs */
+    with touched as (select count(*) as jobs from touched_job),
     standing as (
       -- Counts no further than the answer needs.
       select count(*) as jobs from (
@@ -102,10 +114,10 @@ async function isMostOfSite({ tx, organisationId, siteId }: Derivation): Promise
           and zone.id = stay.zone_id
         where stay.organisation_id = ${organisationId} and stay.site_id = ${siteId}
           and zone.kind = 'site'
-        limit (select 4 * jobs + 1 from changed)
+        limit (select 4 * jobs + 1 from touched)
       ) as counted
     )
-    select standing.jobs <= 4 * changed.jobs as mostly from standing cross join changed`);
+    select standing.jobs <= 4 * touched.jobs as mostly from standing cross join touched`);
   return rows[0]?.mostly === true;
 }
 
