@@ -55,13 +55,15 @@ export async function startEmbedded(options: {
   });
 }
 
-/** A test run that was killed leaves its cluster behind, running. */
+/** A test run that was killed leaves its cluster behind, running; one that this process uses is none. */
 async function removeAbandonedTests(): Promise<void> {
   const user = clusterUser();
   for (const folder of usedTestFolders(user)) {
     const data = path.join(folder, 'data');
     const cluster = { bin: programsFor(data), user, folder, data, kind: 'test' as const };
-    await stop(cluster).catch((error: unknown) => {
+    await withClusterLock(folder, () => {
+      haltUnused(cluster);
+    }).catch((error: unknown) => {
       // Another run may have removed it first.
       if (existsSync(folder)) throw error;
     });
@@ -75,6 +77,10 @@ const stop = (cluster: Cluster) =>
 
 function leave(cluster: Cluster): void {
   leaveCluster(cluster.folder);
+  haltUnused(cluster);
+}
+
+function haltUnused(cluster: Cluster): void {
   if (isClusterInUse(cluster.folder)) return;
   if (isRunning(cluster)) haltCluster(cluster);
   if (cluster.kind === 'test') rmSync(cluster.folder, { recursive: true, force: true });
