@@ -62,7 +62,7 @@ async function removeAbandonedTests(): Promise<void> {
     const data = path.join(folder, 'data');
     const cluster = { bin: programsFor(data), user, folder, data, kind: 'test' as const };
     await withClusterLock(folder, () => {
-      haltUnused(cluster);
+      endUnlessUsed(cluster);
     }).catch((error: unknown) => {
       // Another run may have removed it first.
       if (existsSync(folder)) throw error;
@@ -77,10 +77,10 @@ const stop = (cluster: Cluster) =>
 
 function leave(cluster: Cluster): void {
   leaveCluster(cluster.folder);
-  haltUnused(cluster);
+  endUnlessUsed(cluster);
 }
 
-function haltUnused(cluster: Cluster): void {
+function endUnlessUsed(cluster: Cluster): void {
   if (isClusterInUse(cluster.folder)) return;
   if (isRunning(cluster)) haltCluster(cluster);
   if (cluster.kind === 'test') rmSync(cluster.folder, { recursive: true, force: true });

@@ -7,19 +7,24 @@ declare module 'vitest' {
   }
 }
 
-let started: ReturnType<typeof startForAll> | undefined;
-let users = 0;
+interface Shared {
+  started: ReturnType<typeof startForAll>;
+  users: number;
+}
+
+/** Each project reads this file anew, all in one process: what they share lies outside of it. */
+const place = globalThis as { weirmarkTestCluster?: Shared | undefined };
 
 /** One cluster for all projects that need a database; the last to end stops it. */
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
-  users += 1;
-  started ??= startForAll();
-  const { cluster, migratingUrl, applicationUrl } = await started;
+  const shared = (place.weirmarkTestCluster ??= { started: startForAll(), users: 0 });
+  shared.users += 1;
+  const { cluster, migratingUrl, applicationUrl } = await shared.started;
   project.provide('databases', { migratingUrl, applicationUrl });
   return async () => {
-    users -= 1;
-    if (users > 0) return;
-    started = undefined;
+    shared.users -= 1;
+    if (shared.users > 0) return;
+    place.weirmarkTestCluster = undefined;
     process.off('exit', cluster.stopAtExit);
     await cluster.stop();
   };
