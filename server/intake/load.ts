@@ -34,11 +34,11 @@ export async function loadStagedRows(
 }
 
 /** Makes an area, with its zone and its spelling, of every name that the file brought. */
-async function addFoundAreas(
-  { tx, organisationId, siteId }: Derivation,
-  areas: readonly StagedArea[],
-): Promise<void> {
+async function addFoundAreas(derivation: Derivation, areas: readonly StagedArea[]): Promise<void> {
+  const { tx, organisationId, siteId } = derivation;
   for (const found of areas) {
+    // Somebody may have declared the area while the file was being read.
+    found.areaId ??= await areaSpelled(derivation, found.folded);
     if (found.areaId !== null) continue;
     const { rows } = await tx.execute(sql`/* found area */
       with made as (
@@ -63,6 +63,16 @@ async function addFoundAreas(
       insert into area_spelling (organisation_id, site_id, folded, as_written, area_id, origin)
       values (${organisationId}, ${siteId}, ${found.folded}, ${found.name}, ${found.areaId}, 'found')`);
   }
+}
+
+async function areaSpelled(
+  { tx, organisationId, siteId }: Derivation,
+  folded: string,
+): Promise<number | null> {
+  const { rows } = await tx.execute(sql`/* area of a spelling */
+    select area_id from area_spelling
+    where organisation_id = ${organisationId} and site_id = ${siteId} and folded = ${folded}`);
+  return rows[0] ? Number(rows[0].area_id) : null;
 }
 
 async function keepToldRows(

@@ -1,5 +1,6 @@
 import { and, eq, sql } from 'drizzle-orm';
 import { zone } from '../db/schema/zones.ts';
+import { withTenant } from '../db/tenant.ts';
 import { deriveZone, rebuildSite } from '../flow/derive/derive.ts';
 import { inDerivation } from './derivation-of-site.ts';
 import type { SiteTask } from './site-work.ts';
@@ -7,12 +8,14 @@ import type { SiteTask } from './site-work.ts';
 /** Derives the whole site afresh, because a setting changed on which its stays depend. */
 export async function deriveRequested(task: SiteTask): Promise<void> {
   const { organisationId, siteId } = task;
+  // Read before the settings are: a wish that arrives later stays, and is granted next.
+  const { rows } = await withTenant(task.connection, organisationId, (tx) =>
+    tx.execute(sql`/* rebuild wish */
+      select rebuild_requested_at::text as wish from site
+      where organisation_id = ${organisationId} and id = ${siteId}`),
+  );
   await inDerivation(task.connection, organisationId, siteId, async (derivation) => {
     const { tx } = derivation;
-    // A wish that arrives while this one is granted stays: only the one read here is cleared.
-    const { rows } = await tx.execute(sql`/* rebuild wish */
-      select rebuild_requested_at::text as wish from site
-      where organisation_id = ${organisationId} and id = ${siteId}`);
     await rebuildSite(derivation);
     await tx
       .update(zone)
