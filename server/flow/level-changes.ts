@@ -28,26 +28,24 @@ export async function readLevelChanges(
   if (period.to < period.from || (period.to === period.from && !throughEnd)) return [];
   const { tx, organisationId, siteId } = reader;
   const weight = measure.endsWith('units') ? sql`coalesce(quantity, 1)` : sql`1`;
-  const process = measure.startsWith('in_process');
-  const [view, up, down] = process
-    ? [sql`zone_process`, sql`process_from`, sql`process_to`]
-    : [sql`zone_stay`, sql`entered`, sql`left_at`];
+  const rises = measure.startsWith('in_process') ? sql`process_from` : sql`inside_from`;
   const from = sql`${instantValue(period.from)}::timestamptz`;
   const to = sql`${instantValue(period.to)}::timestamptz`;
   const within = (at: SQL) =>
     throughEnd ? sql`${at} >= ${from} and ${at} <= ${to}` : sql`${at} >= ${from} and ${at} < ${to}`;
   const { rows } = await tx.execute(sql`/* level changes */
     with near as (
-      select ${up} as up_at, ${down} as down_at, ${weight} as weight
+      select ${rises} as up_at, until as down_at, ${weight} as weight
       from (${lengthReaches}) as length_reach
       cross join lateral (
-        select * from ${view}
+        select * from zone_span
         where organisation_id = ${organisationId} and site_id = ${siteId} and zone_id = ${zoneId}
           and length_class = class
           and entered <= ${to} and entered >= ${from} - reach
           and (left_at is null or left_at >= ${from})
         offset 0
       ) as found
+      where ${rises} is not null
     ),
     change as (
       select up_at as at, weight as up, 0 as down from near where ${within(sql`up_at`)}

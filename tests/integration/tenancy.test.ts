@@ -147,7 +147,7 @@ describe('row-level security', () => {
   });
 
   it('hides behind views too', async () => {
-    for (const view of ['zone_stay', 'zone_process']) {
+    for (const view of ['zone_stay', 'zone_span']) {
       expect(await count(test.db, lowmoor, view)).toBeGreaterThan(0);
       expect(await count(test.db, fellgate, view)).toBe(0);
     }

@@ -10,6 +10,8 @@ import { keyedRows } from './told-rows.ts';
 export async function mergeRecords(derivation: Derivation): Promise<void> {
   await foldVersions(derivation);
   await chainRecords(derivation);
+  await enterOverlapping(derivation);
+  await derivation.tx.execute(sql`analyze merged_record`);
 }
 
 /** Temporary table `folded_record`: one row for all rows that tell of the same record, where there are several. */
@@ -90,7 +92,11 @@ async function foldVersions({ tx }: Derivation): Promise<void> {
 /**
  * Adds to each record what follows from the job's other records: its place, its pass, a lost finish
  * taken from a later start, and when the job came: its arrival, else its latest finish anywhere that is
- * not after this start, else this start.
+ * not after this start, else this start. Where the job was elsewhere at that time, `entered` is left open
+ * for `enterOverlapping`.
+ *
+ * Windows share one frame, and none begins at the current row: a minimum over what follows would be
+ * sought anew for every row, so it is taken from the other end.
  */
 async function chainRecords(derivation: Derivation): Promise<void> {
   const { tx, inferLostFinish, newPassAfterDays } = derivation;
@@ -118,36 +124,47 @@ async function chainRecords(derivation: Derivation): Promise<void> {
     placed as (
       select *, coalesce(started, arrived, finished) as about from every_record
     ),
+    ended as (
+      select
+        *,
+        coalesce(
+          finished,
+          case when ${inferLostFinish}::boolean then min(started) over (
+            partition by job_key order by about desc
+            groups between unbounded preceding and 1 preceding
+          ) end
+        ) as left_at
+      from placed
+    ),
     judged as (
       select
         *,
-        (row_number() over in_order)::integer as ordinal,
-        case
-          when finished is null and ${inferLostFinish}::boolean then min(started) over (
-            partition by job_key order by about
-            groups between 1 following and unbounded following
-          )
-        end as inferred,
-        least(arrived, started, finished)
-          - max(greatest(arrived, started, finished)) over (
-            in_order rows between unbounded preceding and 1 preceding
-          ) > make_interval(days => ${newPassAfterDays}::integer) as returns
-      from placed
-      window in_order as (partition by job_key order by about, finished, upload_id, line, part)
+        finished is null and left_at is not null as finish_inferred,
+        coalesce(started, finished) as wanted,
+        (row_number() over before)::integer as ordinal,
+        coalesce(
+          least(arrived, started, finished) - max(greatest(arrived, started, finished)) over before
+            > make_interval(days => ${newPassAfterDays}::integer),
+          false
+        ) as returns
+      from ended
+      window before as (
+        partition by job_key order by about, finished, upload_id, line, part
+        rows between unbounded preceding and 1 preceding
+      )
     ),
     followed as (
       select
         *,
-        coalesce(finished, inferred) as left_at,
-        finished is null and inferred is not null as finish_inferred,
-        coalesce(started, finished) as wanted,
-        (1 + count(*) filter (where returns) over (in_order rows unbounded preceding))::integer as pass,
-        max(case when returns then about end) over (in_order rows unbounded preceding) as pass_began,
-        max(coalesce(finished, inferred)) over (
-          in_order rows between unbounded preceding and 1 preceding
-        ) as latest_left_ever
+        (1 + returns::integer + count(*) filter (where returns) over before)::integer as pass,
+        case when returns then about else max(case when returns then about end) over before end
+          as pass_began,
+        max(left_at) over before as latest_left_ever
       from judged
-      window in_order as (partition by job_key order by about, finished, upload_id, line, part)
+      window before as (
+        partition by job_key order by about, finished, upload_id, line, part
+        rows between unbounded preceding and 1 preceding
+      )
     ),
     in_pass as (
       -- What left before the pass began belongs to an earlier one.
@@ -158,56 +175,80 @@ async function chainRecords(derivation: Derivation): Promise<void> {
         end as latest_left
       from followed
     ),
-    overlapping as (
-      select distinct job_key, pass from in_pass
-      where arrived is null and latest_left > wanted
-    ),
-    -- Only where a job was in two areas at once: finishes and starts in order of time. At one instant
-    -- finishes come first, but records of no length keep their places.
-    moment as (
+    met as (
       select
-        job_key, pass, left_at as at, left_at,
-        case when left_at > about then 0 else ordinal end as rank, 1 as turn, null::integer as asks
-      from in_pass join overlapping using (job_key, pass)
-      where left_at is not null
-      union all
-      select job_key, pass, wanted, null, ordinal, 0, ordinal
-      from in_pass join overlapping using (job_key, pass)
-      where wanted is not null
-    ),
-    answered as (
-      select
-        job_key, pass, asks,
-        max(left_at) over (
-          partition by job_key, pass order by at, rank, turn rows unbounded preceding
-        ) as previous_left
-      from moment
-    ),
-    entered as (
-      select
-        in_pass.*,
-        coalesce(
-          arrived,
-          case when latest_left > wanted then previous_left else latest_left end,
-          started
-        ) as entered
+        *,
+        coalesce(arrived, case when latest_left > wanted then null else coalesce(latest_left, started) end)
+          as entered
       from in_pass
-      left join (select * from answered where asks is not null) as answered
-        on answered.job_key = in_pass.job_key
-        and answered.pass = in_pass.pass
-        and answered.asks = in_pass.ordinal
     )
     select
       job_key, ordinal, area_id, pass, arrived, started, finished,
       record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
       upload_id, line, part,
       entered, left_at, finish_inferred,
-      case counts_from when 'start' then started else entered end as stay_from,
-      case
-        when case counts_from when 'start' then started else entered end is not null
-        then length_class(case counts_from when 'start' then started else entered end, left_at)
-      end as length_class
-    from entered join zone on zone.id = area_id
+      ${stayFrom} as stay_from, ${lengthClass} as length_class
+    from met join zone on zone.id = area_id
     where zone.organisation_id = ${derivation.organisationId} and zone.site_id = ${derivation.siteId}`);
-  await tx.execute(sql`analyze merged_record`);
+}
+
+/** When a record's stay in its area begins, and the class of its length; of columns of `zone` and the record. */
+const stayFrom = sql`case counts_from when 'start' then started else entered end`;
+const lengthClass = sql`case when ${stayFrom} is not null then length_class(${stayFrom}, left_at) end`;
+
+/**
+ * Says when the job came where it was in two areas at once: finishes and starts of the pass in order of
+ * time. At one instant finishes come first, but records of no length keep their places.
+ */
+async function enterOverlapping({ tx, organisationId, siteId }: Derivation): Promise<void> {
+  // A job's first record has nothing before it: what it does not tell stays unknown.
+  const isOpen = sql`entered is null and arrived is null and ordinal > 1`;
+  const { rows } = await tx.execute(sql`/* any overlapping */
+    select exists (select from merged_record where ${isOpen}) as overlap`);
+  if (rows[0]?.overlap !== true) return;
+  await tx.execute(sql`/* enter overlapping */
+    with overlapping as (
+      select distinct job_key, pass from merged_record where ${isOpen}
+    ),
+    overlapped as (
+      select
+        job_key, pass, ordinal, started, left_at,
+        coalesce(started, arrived, finished) as about, coalesce(started, finished) as wanted
+      from merged_record join overlapping using (job_key, pass)
+    ),
+    moment as (
+      select
+        job_key, pass, left_at as at, left_at,
+        case when left_at > about then 0 else ordinal end as rank, 1 as turn, null::integer as asks
+      from overlapped where left_at is not null
+      union all
+      select job_key, pass, wanted, null, ordinal, 0, ordinal
+      from overlapped where wanted is not null
+    ),
+    answered as (
+      select
+        job_key, asks,
+        max(left_at) over (
+          partition by job_key, pass order by at, rank, turn rows unbounded preceding
+        ) as previous_left
+      from moment
+    ),
+    found as (
+      select
+        merged.job_key, merged.ordinal, counts_from, merged.started, merged.left_at,
+        coalesce(previous_left, merged.started) as entered
+      from answered
+      join merged_record as merged on merged.job_key = answered.job_key and merged.ordinal = asks
+      join zone on zone.id = area_id
+      where zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}
+        and merged.entered is null and merged.arrived is null
+    )
+    update merged_record as merged
+    set entered = found.entered, stay_from = found.stay_from, length_class = found.length_class
+    from (
+      select
+        job_key, ordinal, entered, ${stayFrom} as stay_from, ${lengthClass} as length_class
+      from found
+    ) as found
+    where merged.job_key = found.job_key and merged.ordinal = found.ordinal`);
 }

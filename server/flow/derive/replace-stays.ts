@@ -1,22 +1,6 @@
 import { sql, type SQL } from 'drizzle-orm';
 import type { Derivation } from './derivation.ts';
 
-/** Every zone of several areas with the areas it spans. The site spans all that it has. */
-export const spannedZones = ({ organisationId, siteId }: Derivation): SQL => sql`
-  select zone.id as zone_id, zone.counts_from, area.id as area_id
-  from zone join area using (organisation_id, site_id)
-  where organisation_id = ${organisationId} and site_id = ${siteId}
-    and (
-      zone.kind = 'site'
-      or zone.kind = 'loop' and exists (
-        select from zone_area
-        where zone_area.organisation_id = zone.organisation_id
-          and zone_area.site_id = zone.site_id
-          and zone_area.zone_id = zone.id
-          and zone_area.area_id = area.id
-      )
-    )`;
-
 /**
  * Derives the stays in zones of several areas: a job's consecutive records inside the zone are one stay
  * (gaps and islands). Entered is their least, left their greatest; process time is the union of their
@@ -36,39 +20,56 @@ export async function replaceStays(
     where organisation_id = ${organisationId} and site_id = ${siteId}
       and job_key in (${jobs})
       and (${onlyZone}::integer is null or zone_id = ${onlyZone}::integer)`);
+  const records = sql`
+    record join zone
+      on zone.organisation_id = record.organisation_id and zone.site_id = record.site_id`;
+  const asked = sql`
+    record.organisation_id = ${organisationId} and record.site_id = ${siteId}
+    and record.job_key in (${jobs}) and record.entered is not null
+    and (${onlyZone}::integer is null or zone.id = ${onlyZone}::integer)`;
+  for (const islands of [islandsOfSite, islandsOfLoops])
+    await insertStays(derivation, islands(records, asked));
+}
+
+const columns = sql`
+  zone.id as zone_id, record.job_key, record.ordinal, record.pass, record.started, record.left_at,
+  record.finish_inferred, record.quantity, record.upload_id, record.line,
+  case zone.counts_from when 'start' then record.started else record.entered end as counted_from`;
+
+/** The records of jobs in the whole site: within a pass a job does not leave it. */
+const islandsOfSite = (records: SQL, asked: SQL): SQL => sql`
+  select ${columns}, 0 as gaps from ${records} where ${asked} and zone.kind = 'site'`;
+
+/** The records of jobs inside loops; `gaps` counts the job's records outside before each. */
+const islandsOfLoops = (records: SQL, asked: SQL): SQL => sql`
+  select * from (
+    select
+      ${columns}, zone_area.area_id is not null as inside,
+      count(*) filter (where zone_area.area_id is null) over (
+        partition by zone.id, record.job_key order by record.ordinal rows unbounded preceding
+      ) as gaps
+    from ${records}
+    left join zone_area
+      on zone_area.organisation_id = zone.organisation_id
+      and zone_area.site_id = zone.site_id
+      and zone_area.zone_id = zone.id
+      and zone_area.area_id = record.area_id
+    where ${asked} and zone.kind = 'loop'
+  ) as seen
+  where inside`;
+
+/** Makes one stay of each island. Its records come in order, so the last of an array is the latest. */
+async function insertStays(
+  { tx, organisationId, siteId }: Derivation,
+  islands: SQL,
+): Promise<void> {
   await tx.execute(sql`/* insert stays */
     insert into stay (
       organisation_id, site_id, job_key, zone_id, ordinal,
       entered, started, left_at, length_class, process_microseconds, process_from, process_to,
       quantity, finish_inferred, upload_id, line
     )
-    with spanned as (${spannedZones(derivation)}),
-    spanning as (
-      select zone_id, counts_from from spanned
-      where ${onlyZone}::integer is null or zone_id = ${onlyZone}::integer
-      group by zone_id, counts_from
-    ),
-    seen as (
-      select
-        record.job_key, record.ordinal, record.pass, record.entered, record.started,
-        record.left_at, record.finish_inferred, record.quantity, record.upload_id, record.line,
-        spanning.zone_id, spanning.counts_from, spanned.area_id is not null as inside
-      from record
-      cross join spanning
-      left join spanned
-        on spanned.zone_id = spanning.zone_id and spanned.area_id = record.area_id
-      where record.organisation_id = ${organisationId} and record.site_id = ${siteId}
-        and record.job_key in (${jobs})
-        and record.entered is not null
-    ),
-    island as (
-      select
-        *,
-        count(*) filter (where not inside) over (
-          partition by zone_id, job_key order by ordinal rows unbounded preceding
-        ) as gaps
-      from seen
-    ),
+    with island as (${islands}),
     swept as (
       select
         *,
@@ -82,32 +83,37 @@ export async function replaceStays(
             rows between unbounded preceding and 1 preceding
           ))
         end as process_from
-      from island where inside
+      from island
     ),
     stretch as (
       select *, process_from < coalesce(left_at, 'infinity') as processes from swept
     ),
     whole as (
       select
-        job_key, zone_id, counts_from, pass, gaps,
-        case counts_from when 'start' then min(started) else min(entered) end as entered,
+        zone_id, job_key, pass, gaps,
+        min(counted_from) as entered,
         min(started) as started,
         case when bool_and(left_at is not null) then max(left_at) end as left_at,
         case when bool_and(started is not null and left_at is not null and not finish_inferred) then
           coalesce(sum(microseconds(left_at - process_from)) filter (where processes), 0)
         end as process_microseconds,
-        coalesce(array_agg(process_from order by ordinal) filter (where processes), '{}') as process_from,
-        coalesce(array_agg(left_at order by ordinal) filter (where processes), '{}') as process_to,
-        (array_agg(quantity order by ordinal desc) filter (where quantity is not null))[1] as quantity,
-        (array_agg(finish_inferred order by left_at desc, ordinal desc))[1] as finish_inferred,
-        (array_agg(upload_id order by ordinal desc))[1] as upload_id,
-        (array_agg(line order by ordinal desc))[1] as line
+        coalesce(array_agg(process_from) filter (where processes), '{}') as process_from,
+        coalesce(array_agg(left_at) filter (where processes), '{}') as process_to,
+        (array_agg(quantity) filter (where quantity is not null))[count(quantity)] as quantity,
+        -- Where no recorded finish is as late.
+        bool_and(left_at is not null) and coalesce(
+          max(left_at) filter (where finish_inferred)
+            > coalesce(max(left_at) filter (where not finish_inferred), '-infinity'),
+          false
+        ) as finish_inferred,
+        (array_agg(upload_id))[count(*)] as upload_id,
+        (array_agg(line))[count(*)] as line
       from stretch
-      group by job_key, zone_id, counts_from, pass, gaps
+      group by zone_id, job_key, pass, gaps
     )
     select
       ${organisationId}, ${siteId}, job_key, zone_id,
-      row_number() over (partition by job_key, zone_id order by pass, gaps),
+      row_number() over (partition by zone_id, job_key order by pass, gaps),
       entered, started, left_at, length_class(entered, left_at),
       process_microseconds, process_from, process_to,
       quantity, finish_inferred, upload_id, line

@@ -28,21 +28,32 @@ export async function createTouchedJobs(tx: Derivation['tx']): Promise<void> {
  * only the arrival belongs to the record that began there.
  *
  * Most records are told of once. Temporary table `retold` names the others, and `told_row` has all their
- * rows, each record named by its first row, `version` counting its rows in order of receipt.
+ * rows, each record named by its first row, `version` counting its rows in order of receipt; `begun` has
+ * the starts by which rows that know only an arrival find their record.
  */
 export async function gatherToldRows(derivation: Derivation): Promise<void> {
   const { tx } = derivation;
-  await tx.execute(sql`drop table if exists retold, told_row`);
+  await tx.execute(sql`drop table if exists begun, retold, told_row`);
+  await tx.execute(sql`/* first start told of each arrival */
+    create temp table begun on commit drop as
+    with ${toldRows(derivation)}
+    select job_key, area_id, arrived, min(started) as started
+    from told where arrived is not null and started is not null
+    group by job_key, area_id, arrived`);
+  await tx.execute(sql`analyze begun`);
   await tx.execute(sql`/* records told of more than once */
     create temp table retold on commit drop as
-    with ${keyedRows(derivation)}
-    select job_key, area_id, about, null::text as record_key
-    from keyed where record_key is null
-    group by job_key, area_id, about having count(*) > 1
-    union all
-    select null, null, null, record_key
-    from keyed where record_key is not null
-    group by record_key having count(*) > 1`);
+    with ${keyedRows(derivation)},
+    named as (
+      select
+        case when record_key is null then job_key end as job_key,
+        case when record_key is null then area_id end as area_id,
+        case when record_key is null then about end as about,
+        record_key
+      from keyed
+    )
+    select job_key, area_id, about, record_key
+    from named group by job_key, area_id, about, record_key having count(*) > 1`);
   // The planner cannot tell how many rows are told again: with an index either way of joining is fast.
   await tx.execute(sql`create index on retold (job_key, area_id, about)`);
   await tx.execute(sql`create index on retold (record_key)`);
@@ -82,19 +93,18 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
   await tx.execute(sql`analyze told_row`);
 }
 
-/** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. */
-export const keyedRows = ({ organisationId, siteId }: Derivation): SQL => sql`
-  told as (
+/** CTE `told`: every row told of a touched job. Read again wherever it is named: that costs less than keeping it. */
+const toldRows = ({ organisationId, siteId }: Derivation): SQL => sql`
+  told as not materialized (
     select told.*
     from upload_row as told join touched_job using (job_key)
     where organisation_id = ${organisationId} and site_id = ${siteId}
-  ),
-  begun as (
-    select job_key, area_id, arrived, min(started) as started
-    from told where arrived is not null and started is not null
-    group by job_key, area_id, arrived
-  ),
-  keyed as (
+  )`;
+
+/** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. Needs `begun`. */
+export const keyedRows = (derivation: Derivation): SQL => sql`
+  ${toldRows(derivation)},
+  keyed as not materialized (
     select
       told.*,
       coalesce(told.started, begun.started, told.arrived, told.finished) as about

@@ -17,23 +17,16 @@ export async function createTouchedHours({ tx }: Derivation): Promise<void> {
 export async function touchHoursOfChangedJobs(derivation: Derivation): Promise<void> {
   const { tx, rules, organisationId, siteId } = derivation;
   const hour = localHour(rules, always.from, always.to);
-  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
   await tx.execute(sql`/* touch hours */
     insert into touched_hour
     with moment as (
-      select zone_id, unnest(array[entered, left_at]) as at
+      select zone_id, unnest(array[inside_from, process_from, until]) as at
       from changed_job cross join lateral (
-        select zone_id, entered, left_at from zone_stay
-        where ${ofSite} and zone_stay.job_key = changed_job.job_key
+        select zone_id, inside_from, process_from, until from zone_span
+        where organisation_id = ${organisationId} and site_id = ${siteId}
+          and zone_span.job_key = changed_job.job_key
         offset 0
-      ) as stay
-      union all
-      select zone_id, unnest(array[process_from, process_to])
-      from changed_job cross join lateral (
-        select zone_id, process_from, process_to from zone_process
-        where ${ofSite} and zone_process.job_key = changed_job.job_key
-        offset 0
-      ) as process
+      ) as span
     )
     select distinct zone_id, ${hour.of(sql`at`)}
     from moment ${hour.join}
