@@ -3,9 +3,19 @@ import type { ClusterKind } from './cluster-folder.ts';
 
 const megabyte = 1024 * 1024;
 
+/**
+ * Memory of this machine, or of the container we are in.
+ *
+ * @param limit bytes that a container may use; 0 or absent where nothing limits it
+ */
+export const usableMegabytes = (total: number, limit: number | undefined): number =>
+  Math.floor(Math.min(total, limit || total) / megabyte);
+
 /** Settings of a cluster: loopback only, and memory fit for analysis on a small machine. */
 export function clusterSettings(kind: ClusterKind, port: number): string {
-  const memory = Math.floor(Math.min(os.totalmem(), process.constrainedMemory()) / megabyte);
+  // Node.js 20 before 20.13 may answer nothing.
+  const limit = process.constrainedMemory() as number | undefined;
+  const memory = usableMegabytes(os.totalmem(), limit);
   const settings: Record<string, string> = {
     listen_addresses: '127.0.0.1',
     port: String(port),

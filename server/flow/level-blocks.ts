@@ -5,14 +5,15 @@ import {
   hourStart,
   hourStretches,
   localDay,
-  stepBorders,
   type HourStretch,
 } from '../../shared/local-time.ts';
 import type { LevelBlock } from '../methods/level-steps.ts';
-import type { Period, SiteReader } from './zone-reader.ts';
+import type { Measure } from '../db/schema/levels.ts';
 import { instantValue } from './instant-value.ts';
-
-export type Measure = 'inside_jobs' | 'in_process_jobs' | 'inside_units' | 'in_process_units';
+import { askedLevels, levelBefore, ofAsked } from './level-before.ts';
+import { trackKey } from './track-key.ts';
+import { wholeDays } from './whole-days.ts';
+import type { Period, SiteReader } from './zone-reader.ts';
 
 /** A level just before a period, and its changes in it. */
 export interface LevelTrack {
@@ -20,22 +21,11 @@ export interface LevelTrack {
   blocks: LevelBlock[];
 }
 
-/** The levels of zones just before a moment that begins a local hour, by `trackKey`. */
-export async function readLevelsBefore(
-  reader: SiteReader,
-  zoneIds: readonly number[],
-  measures: readonly Measure[],
-  hour: number,
-): Promise<Map<string, number>> {
-  const tracks = await readLevelBlocks(reader, zoneIds, measures, { from: hour, to: hour });
-  return new Map([...tracks].map(([key, track]) => [key, track.level]));
-}
-
 const numeric = z.coerce.number();
 const blockRow = z.object({
   zone_id: z.number(),
   measure: z.string(),
-  /** `level` gives the level before the period, `hour` and `day` a block of changes. */
+  /** `level` gives the level before the period as its `ups`, `hour` and `day` a block of changes. */
   grain: z.enum(['level', 'hour', 'day']),
   starts: z.coerce.date(),
   ends: z.coerce.date(),
@@ -60,70 +50,30 @@ export async function readLevelBlocks(
   period: Period,
   byHour = false,
 ): Promise<Map<string, LevelTrack>> {
-  const { tx, organisationId, siteId, rules } = reader;
-  const dayOfStart = stepBorders(rules, 'day', period.from, period.from + 1)[0] ?? period.from;
+  const { tx, rules } = reader;
+  const at = (moment: number) => sql`${instantValue(moment)}::timestamptz`;
   const whole = byHour ? { from: period.to, to: period.to } : wholeDays(reader, period);
-  const ofZone = (table: string) => sql`
-    ${sql.identifier(table)}.organisation_id = ${organisationId}
-    and ${sql.identifier(table)}.site_id = ${siteId}
-    and ${sql.identifier(table)}.zone_id = asked.zone_id
-    and ${sql.identifier(table)}.measure = asked.measure`;
   const { rows } = await tx.execute(sql`/* level blocks */
-    with asked as (
-      select zone_id, measure
-      from unnest(${sql.param([...zoneIds])}::integer[]) as zone_id
-      cross join unnest(${sql.param([...new Set(measures)])}::level_measure[]) as measure
-    )
+    with asked as (${askedLevels(zoneIds, measures)})
     select
-      zone_id, measure, 'level' as grain,
-      ${instantValue(period.from)}::timestamptz as starts, ${instantValue(period.from)}::timestamptz as ends,
-      coalesce(
-        (
-          select level_end from level_day
-          where ${ofZone('level_day')} and day < ${localDay(rules, dayOfStart)}::date
-          order by day desc limit 1
-        ),
-        0
-      ) as ups,
-      -coalesce(
-        (
-          select sum(ups - downs) from level_hour
-          where ${ofZone('level_hour')}
-            and hour >= ${instantValue(dayOfStart)}::timestamptz
-            and hour < ${instantValue(period.from)}::timestamptz
-        ),
-        0
-      ) as downs,
+      zone_id, measure, 'level' as grain, ${at(period.from)} as starts, ${at(period.from)} as ends,
+      ${levelBefore(reader, period.from)} as ups, 0::numeric as downs,
       0::numeric as up_offset, 0::numeric as down_offset, 0::numeric as gathered, 0::numeric as highest
     from asked
     union all
     select
       asked.zone_id, asked.measure, 'hour', hour, hour, ups, downs, up_offset, down_offset, 0, highest
-    from asked join level_hour on ${ofZone('level_hour')}
-    where hour >= ${instantValue(period.from)}::timestamptz
-      and hour < ${instantValue(period.to)}::timestamptz
-      and (
-        hour < ${instantValue(whole.from)}::timestamptz
-        or hour >= ${instantValue(whole.to)}::timestamptz
-      )
+    from asked join level_hour on ${ofAsked(reader, 'level_hour')}
+    where hour >= ${at(period.from)} and hour < ${at(period.to)}
+      and (hour < ${at(whole.from)} or hour >= ${at(whole.to)})
     union all
     select
       asked.zone_id, asked.measure, 'day', starts, ends, ups, downs, 0, 0,
       integral - level_start * microseconds(ends - starts),
       peak - level_start
-    from asked join level_day on ${ofZone('level_day')}
+    from asked join level_day on ${ofAsked(reader, 'level_day')}
     where day >= ${localDay(rules, whole.from)}::date and day < ${localDay(rules, whole.to)}::date`);
   return tracks(rows, zoneIds, measures, hourStretches(rules, period.from - 1, period.to + 1));
-}
-
-export const trackKey = (zoneId: number, measure: string): string => `${zoneId} ${measure}`;
-
-/** The whole local days within a period; empty at its end where there is none. */
-export function wholeDays({ rules }: SiteReader, period: Period): Period {
-  const [first, second] = stepBorders(rules, 'day', period.from, period.from + 1);
-  const from = first === period.from ? first : (second ?? period.to);
-  const to = stepBorders(rules, 'day', period.to, period.to + 1)[0] ?? period.to;
-  return from < to ? { from, to } : { from: period.to, to: period.to };
 }
 
 function tracks(
@@ -138,7 +88,7 @@ function tracks(
   for (const row of rows.map((each) => blockRow.parse(each))) {
     const track = found.get(trackKey(row.zone_id, row.measure));
     if (!track) continue;
-    if (row.grain === 'level') track.level = row.ups - row.downs;
+    if (row.grain === 'level') track.level = row.ups;
     else track.blocks.push(row.grain === 'day' ? dayBlock(row) : hourBlock(row, stretches));
   }
   for (const track of found.values()) track.blocks.sort((one, other) => one.starts - other.starts);

@@ -3,7 +3,7 @@ import { z } from 'zod';
 import type { LevelBlock } from '../methods/level-steps.ts';
 import { instantValue } from './instant-value.ts';
 import { lengthReaches } from './length-reach.ts';
-import type { Measure } from './level-blocks.ts';
+import type { Measure } from '../db/schema/levels.ts';
 import type { Period, SiteReader } from './zone-reader.ts';
 
 const changeRow = z.object({

@@ -1,6 +1,9 @@
 import { hourEnd, hourStart, hourStretches } from '../../shared/local-time.ts';
 import { levelSteps, type LevelFigures } from '../methods/level-steps.ts';
-import { readLevelBlocks, readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
+import type { Measure } from '../db/schema/levels.ts';
+import { readLevelsBefore } from './level-before.ts';
+import { readLevelBlocks } from './level-blocks.ts';
+import { trackKey } from './track-key.ts';
 import { readLevelChanges } from './level-changes.ts';
 import type { Period, SiteReader } from './zone-reader.ts';
 

@@ -1,15 +1,12 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
-import {
-  hourEnd,
-  hourStart,
-  hourStretches,
-  localDay,
-  stepBorders,
-} from '../../shared/local-time.ts';
+import { hourEnd, hourStart, hourStretches, localDay } from '../../shared/local-time.ts';
 import type { LevelFigures } from '../methods/level-steps.ts';
+import type { Measure } from '../db/schema/levels.ts';
 import { instantValue } from './instant-value.ts';
-import { trackKey, wholeDays, type Measure } from './level-blocks.ts';
+import { askedLevels, levelBefore, ofAsked } from './level-before.ts';
+import { trackKey } from './track-key.ts';
+import { wholeDays } from './whole-days.ts';
 import type { Period, SiteReader } from './zone-reader.ts';
 
 const numeric = z.coerce.number();
@@ -36,41 +33,14 @@ export async function readLevelTotals(
   measures: readonly Measure[],
   period: Period,
 ): Promise<Map<string, LevelFigures>> {
-  const { tx, organisationId, siteId, rules } = reader;
-  const dayOfStart = stepBorders(rules, 'day', period.from, period.from + 1)[0] ?? period.from;
+  const { tx, rules } = reader;
   const whole = wholeDays(reader, period);
   const at = (moment: number) => sql`${instantValue(moment)}::timestamptz`;
   const hours = hourEnds(reader, period, whole);
-  const ofZone = (table: string) => sql`
-    ${sql.identifier(table)}.organisation_id = ${organisationId}
-    and ${sql.identifier(table)}.site_id = ${siteId}
-    and ${sql.identifier(table)}.zone_id = asked.zone_id
-    and ${sql.identifier(table)}.measure = asked.measure`;
   const { rows } = await tx.execute(sql`/* level totals */
-    with asked as (
-      select zone_id, measure
-      from unnest(${sql.param([...zoneIds])}::integer[]) as zone_id
-      cross join unnest(${sql.param([...new Set(measures)])}::level_measure[]) as measure
-    ),
+    with asked as (${askedLevels(zoneIds, measures)}),
     before as (
-      select
-        zone_id, measure,
-        coalesce(
-          (
-            select level_end from level_day
-            where ${ofZone('level_day')} and day < ${localDay(rules, dayOfStart)}::date
-            order by day desc limit 1
-          ),
-          0
-        ) + coalesce(
-          (
-            select sum(ups - downs) from level_hour
-            where ${ofZone('level_hour')}
-              and hour >= ${at(dayOfStart)} and hour < ${at(period.from)}
-          ),
-          0
-        ) as level
-      from asked
+      select zone_id, measure, ${levelBefore(reader, period.from)} as level from asked
     ),
     cut_hour as (
       select * from unnest(
@@ -79,18 +49,28 @@ export async function readLevelTotals(
       ) as cut (starts, ends)
     ),
     block as (
+      -- All whole days as one block: only their sums and their peak are asked for.
       select
-        asked.zone_id, asked.measure, starts, ends, ups, downs,
-        integral - level_start * microseconds(ends - starts) as gathered,
-        peak - level_start as highest
-      from asked join level_day on ${ofZone('level_day')}
-      where day >= ${localDay(rules, whole.from)}::date and day < ${localDay(rules, whole.to)}::date
+        zone_id, measure, min(starts) as starts, ${at(whole.to)} as ends,
+        sum(ups) as ups, sum(downs) as downs,
+        sum(
+          integral - level_start * microseconds(ends - starts)
+          + (ups - downs) * microseconds(${at(whole.to)} - ends)
+        ) as gathered,
+        null::numeric as highest, max(peak) as peak
+      from asked cross join lateral (
+        select starts, ends, level_start, ups, downs, integral, peak from level_day
+        where ${ofAsked(reader, 'level_day')}
+          and day >= ${localDay(rules, whole.from)}::date and day < ${localDay(rules, whole.to)}::date
+        offset 0
+      ) as of_level
+      group by zone_id, measure
       union all
       select
         asked.zone_id, asked.measure, starts, ends, ups, downs,
-        (ups - downs) * microseconds(ends - starts) - up_offset + down_offset, highest
+        (ups - downs) * microseconds(ends - starts) - up_offset + down_offset, highest, null
       from asked cross join cut_hour
-      join level_hour on ${ofZone('level_hour')} and level_hour.hour = cut_hour.starts
+      join level_hour on ${ofAsked(reader, 'level_hour')} and level_hour.hour = cut_hour.starts
     ),
     running as (
       select
@@ -107,7 +87,7 @@ export async function readLevelTotals(
     summed as (
       select
         zone_id, measure, min(starts) as first_starts, sum(ups) as ups, sum(downs) as downs,
-        max(level_before + highest) as peak,
+        max(coalesce(peak, level_before + highest)) as peak,
         sum(
           level_before * microseconds(ends - starts) + gathered
           + (level_before + ups - downs) * microseconds(next_starts - ends)

@@ -1,9 +1,11 @@
 import type { Figures } from '../../shared/contracts/figures.ts';
 import { stepBorders } from '../../shared/local-time.ts';
 import type { LevelFigures } from '../methods/level-steps.ts';
+import type { Measure } from '../db/schema/levels.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { noFlowTimes, readFlowTimes } from './flow-times.ts';
-import { readLevelsBefore, trackKey, type Measure } from './level-blocks.ts';
+import { readLevelsBefore } from './level-before.ts';
+import { trackKey } from './track-key.ts';
 import { readLevelTotals } from './level-totals.ts';
 import { readOldestInside } from './oldest-inside.ts';
 import { measuresOf, stepFigures, unknownFigures } from './step-figures.ts';

@@ -1,7 +1,7 @@
 import type { Figures } from '../../shared/contracts/figures.ts';
 import type { LevelFigures } from '../methods/level-steps.ts';
 import type { FlowTimes } from './flow-times.ts';
-import type { Measure } from './level-blocks.ts';
+import type { Measure } from '../db/schema/levels.ts';
 import type { FigureZone } from './zone-reader.ts';
 
 /** The two levels of a zone in a unit: inside, and of these in process. Units are jobs where none are told. */

@@ -3,7 +3,8 @@ import { stepBorders } from '../../shared/local-time.ts';
 import { levelSteps } from '../methods/level-steps.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { readFlowTimes } from './flow-times.ts';
-import { readLevelBlocks, trackKey } from './level-blocks.ts';
+import { readLevelBlocks } from './level-blocks.ts';
+import { trackKey } from './track-key.ts';
 import { measuresOf, stepFigures, unknownFigures } from './step-figures.ts';
 import type { FigureZone, Period, SiteReader } from './zone-reader.ts';
 

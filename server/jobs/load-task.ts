@@ -138,8 +138,9 @@ async function cancelledByStop(
   );
   const pid = z.number().parse(rows[0]?.pid);
   let asked = false;
+  let looking = Promise.resolve();
   const watch = setInterval(() => {
-    void (async () => {
+    looking = (async () => {
       const [row] = await withTenant(task.db, task.organisationId, (tx) =>
         tx
           .select({ stopRequestedAt: upload.stopRequestedAt })
@@ -160,5 +161,7 @@ async function cancelledByStop(
     throw error;
   } finally {
     clearInterval(watch);
+    // A cancellation that is on its way must not meet the connection's next statement.
+    await looking;
   }
 }

@@ -30,24 +30,32 @@ export function installDebianPackages(packages, purpose) {
   say(`Installing ${purpose} (${names}) …`);
   if (packages.includes('postgresql')) keepClusterUnmade(asRoot);
   const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive' };
-  const aptGet = (...args) =>
+  const asInstaller = (command, ...args) =>
     asRoot
-      ? run('apt-get', args, { env })
-      : run('sudo', ['-n', 'env', 'DEBIAN_FRONTEND=noninteractive', 'apt-get', ...args]);
-  const updated = aptGet('update');
-  const installed = aptGet(
-    'install',
-    '-y',
-    '-o',
-    'DPkg::Lock::Timeout=300',
-    '--no-install-recommends',
-    ...packages,
-  );
+      ? run(command, args, { env })
+      : run('sudo', ['-n', 'env', 'DEBIAN_FRONTEND=noninteractive', command, ...args]);
+  const install = () =>
+    asInstaller(
+      'apt-get',
+      'install',
+      '-y',
+      '-o',
+      'DPkg::Lock::Timeout=300',
+      '--no-install-recommends',
+      ...packages,
+    );
+  const updated = asInstaller('apt-get', 'update');
+  let installed = install();
+  if (!installed.ok && /dpkg --configure -a/.test(installed.output)) {
+    say('An earlier installation was broken off. Finishing it …');
+    asInstaller('dpkg', '--configure', '-a');
+    installed = install();
+  }
   if (installed.ok) return;
   const errors = `${updated.output}\n${installed.output}`
     .split('\n')
     .filter((line) => /^(E|W): /.test(line));
   throw new SetupError(
-    `${purpose} could not be installed (${errors.slice(-2).join(' ')}). Check the connection to Debian's packages and try again. ${byHand}`,
+    `${purpose} could not be installed (${errors.slice(-2).join(' ')}). If Debian's packages cannot be reached from here, check the connection and try again. ${byHand}`,
   );
 }

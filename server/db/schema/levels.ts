@@ -1,13 +1,21 @@
-import { date, integer, numeric, pgEnum, pgTable, primaryKey } from 'drizzle-orm/pg-core';
-import { instant, tenantColumns, tenantPolicy } from './columns.ts';
+import { sql, type SQLWrapper } from 'drizzle-orm';
+import { check, date, integer, numeric, pgTable, primaryKey } from 'drizzle-orm/pg-core';
+import { instant, plainText, tenantColumns, tenantPolicy } from './columns.ts';
 import { toZone } from './zones.ts';
 
-export const levelMeasure = pgEnum('level_measure', [
-  'inside_jobs',
-  'in_process_jobs',
-  'inside_units',
-  'in_process_units',
-]);
+/** The levels that are kept of a zone. */
+export type Measure = 'inside_jobs' | 'in_process_jobs' | 'inside_units' | 'in_process_units';
+
+/**
+ * Texts, not an enumeration: PostgreSQL trusts the comparison of texts under row-level security and looks
+ * them up in an index, but compares enumerated values row by row.
+ */
+const measureColumn = () => plainText().$type<Measure>().notNull();
+const knownMeasure = (name: string, table: { measure: SQLWrapper }) =>
+  check(
+    name,
+    sql`${table.measure} in ('inside_jobs', 'in_process_jobs', 'inside_units', 'in_process_units')`,
+  );
 
 /**
  * What happened to a level within one local hour; hours without a change have no row.
@@ -18,7 +26,7 @@ export const levelHour = pgTable(
   {
     ...tenantColumns(),
     zoneId: integer().notNull(),
-    measure: levelMeasure().notNull(),
+    measure: measureColumn(),
     hour: instant().notNull(),
     ups: numeric().notNull(),
     downs: numeric().notNull(),
@@ -31,6 +39,7 @@ export const levelHour = pgTable(
     primaryKey({
       columns: [table.organisationId, table.siteId, table.zoneId, table.measure, table.hour],
     }),
+    knownMeasure('level_hour_measure', table),
     toZone(table),
     tenantPolicy(),
   ],
@@ -42,7 +51,7 @@ export const levelDay = pgTable(
   {
     ...tenantColumns(),
     zoneId: integer().notNull(),
-    measure: levelMeasure().notNull(),
+    measure: measureColumn(),
     day: date().notNull(),
     starts: instant().notNull(),
     ends: instant().notNull(),
@@ -58,6 +67,7 @@ export const levelDay = pgTable(
     primaryKey({
       columns: [table.organisationId, table.siteId, table.zoneId, table.measure, table.day],
     }),
+    knownMeasure('level_day_measure', table),
     toZone(table),
     tenantPolicy(),
   ],

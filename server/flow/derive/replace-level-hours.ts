@@ -1,7 +1,7 @@
 import { sql, type SQL } from 'drizzle-orm';
 import { instantValue } from '../instant-value.ts';
 import { lengthReaches } from '../length-reach.ts';
-import type { Measure } from '../level-blocks.ts';
+import type { Measure } from '../../db/schema/levels.ts';
 import type { Derivation } from './derivation.ts';
 import { localHour } from './local-grid.ts';
 
@@ -51,7 +51,7 @@ const sumsOf = (level: string): SQL => {
 const rowOf = (measure: Measure, level: string): SQL => {
   const named = (what: string) => sql.identifier(`${level}_${what}`);
   return sql`(
-    ${measure}::level_measure,
+    ${measure}::text,
     ${named('ups')}, ${named('downs')}, ${named('up_offset')}, ${named('down_offset')},
     greatest(
       ${named('highest')} - ${named('before')},
