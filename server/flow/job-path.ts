@@ -5,30 +5,38 @@ import type { SiteReader } from './zone-reader.ts';
 const date = z.coerce.date().nullable();
 const seconds = z.coerce.number().nullable();
 
+const text = z.string().nullable();
+const amount = z.coerce.number().nullable();
+
+/** What a row may tell of a record. */
+const toldFields = {
+  arrived: date,
+  started: date,
+  finished: date,
+  quantity: amount,
+  family: text,
+  due: date,
+  priority: text,
+  work_content: amount,
+  value: amount,
+  resource: text,
+  status: text,
+  parent: text,
+};
+
 const recordRow = z.object({
   ordinal: z.number(),
   area_id: z.number(),
   area_name: z.string(),
   pass: z.number(),
   entered: date,
-  arrived: date,
-  started: date,
-  finished: date,
   left_at: date,
   finish_inferred: z.boolean(),
   queue_seconds: seconds,
   process_seconds: seconds,
   flow_seconds: seconds,
-  quantity: z.coerce.number().nullable(),
-  record_key: z.string().nullable(),
-  family: z.string().nullable(),
-  due: date,
-  priority: z.string().nullable(),
-  work_content: z.string().nullable(),
-  value: z.string().nullable(),
-  resource: z.string().nullable(),
-  status: z.string().nullable(),
-  parent: z.string().nullable(),
+  record_key: text,
+  ...toldFields,
   upload_id: z.number(),
   line: z.number(),
 });
@@ -60,27 +68,35 @@ const toldRow = z.object({
   line: z.number(),
   part: z.number(),
   file_name: z.string(),
+  job_key: z.string(),
   area_id: z.number(),
-  record_key: z.string().nullable(),
-  arrived: date,
-  started: date,
-  finished: date,
+  record_key: text,
+  ...toldFields,
 });
 export type ToldRow = z.infer<typeof toldRow>;
 
-/** Every row that told of a job, in order of receipt. */
+/** Every row that told of a job's records, in order of receipt: also rows that told one under another job. */
 export async function readToldRows(
   { tx, organisationId, siteId }: SiteReader,
   jobKey: string,
 ): Promise<ToldRow[]> {
+  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
   const { rows } = await tx.execute(sql`/* rows of a job */
-    select upload_row.*, file_name
-    from upload_row join upload
-      on upload.organisation_id = upload_row.organisation_id
-      and upload.site_id = upload_row.site_id
-      and upload.id = upload_row.upload_id
-    where upload_row.organisation_id = ${organisationId} and upload_row.site_id = ${siteId}
-      and job_key = ${jobKey}
+    with told as (
+      select * from upload_row where ${ofSite} and job_key = ${jobKey}
+      union all
+      select * from upload_row
+      where ${ofSite} and job_key <> ${jobKey}
+        and record_key = any(array(
+          select record_key from record
+          where ${ofSite} and job_key = ${jobKey} and record_key is not null
+        ))
+    )
+    select told.*, file_name
+    from told join upload
+      on upload.organisation_id = told.organisation_id
+      and upload.site_id = told.site_id
+      and upload.id = told.upload_id
     order by upload_id, line, part`);
   return z.array(toldRow).parse(rows);
 }

@@ -24,7 +24,14 @@ export async function readLevelOver(
   const whole = { from: wholeFrom, to: Math.max(wholeFrom, lastHour) };
   const cutStart = { from: firstHour, to: Math.min(wholeFrom, period.to) };
   const cutEnd = { from: whole.to, to: period.to };
-  const base = await readBase(reader, zoneId, measure, firstHour);
+  const track =
+    whole.from < whole.to
+      ? (await readLevelBlocks(reader, [zoneId], [measure], whole)).get(trackKey(zoneId, measure))
+      : undefined;
+  const base =
+    track && firstHour === whole.from
+      ? track.level
+      : await readBase(reader, zoneId, measure, firstHour);
   const before = await readLevelChanges(reader, zoneId, measure, {
     from: cutStart.from,
     to: cutStart.from === wholeFrom ? cutStart.from : period.from,
@@ -33,7 +40,7 @@ export async function readLevelOver(
     ...(wholeFrom === period.from
       ? []
       : await readLevelChanges(reader, zoneId, measure, { from: period.from, to: cutStart.to })),
-    ...(whole.from < whole.to ? await readWhole(reader, zoneId, measure, whole) : []),
+    ...(track?.blocks ?? []),
     ...(await readLevelChanges(reader, zoneId, measure, cutEnd)),
   ];
   const level = before.reduce((sum, change) => sum + change.ups - change.downs, base);
@@ -63,9 +70,4 @@ async function readBase(
 ): Promise<number> {
   const levels = await readLevelsBefore(reader, [zoneId], [measure], hour);
   return levels.get(trackKey(zoneId, measure)) ?? 0;
-}
-
-async function readWhole(reader: SiteReader, zoneId: number, measure: Measure, period: Period) {
-  const tracks = await readLevelBlocks(reader, [zoneId], [measure], period);
-  return tracks.get(trackKey(zoneId, measure))?.blocks ?? [];
 }

@@ -2,7 +2,22 @@ import type { RecordRow, ToldRow } from './job-path.ts';
 
 export type VersionOutcome = 'new' | 'same' | 'completing' | 'correcting';
 
-const times = ['arrived', 'started', 'finished'] as const;
+const fields = [
+  'job_key',
+  'area_id',
+  'arrived',
+  'started',
+  'finished',
+  'quantity',
+  'family',
+  'due',
+  'priority',
+  'work_content',
+  'value',
+  'resource',
+  'status',
+  'parent',
+] as const;
 
 const about = (row: ToldRow | RecordRow): number | undefined =>
   (row.started ?? row.arrived ?? row.finished)?.getTime();
@@ -18,14 +33,24 @@ export function versionsOf(
   record: RecordRow,
   told: readonly ToldRow[],
 ): { row: ToldRow; outcome: VersionOutcome }[] {
-  const given: Partial<Record<(typeof times)[number], number>> = {};
+  const given = new Map<string, string | number>();
   return told
     .filter((row) => tellsOf(row, record))
     .map((row, index) => {
-      const outcome = index === 0 ? 'new' : outcomeOf(row, given);
-      for (const time of times) given[time] = row[time]?.getTime() ?? given[time];
+      const values = valuesOf(row);
+      const outcome = index === 0 ? 'new' : outcomeOf(values, given);
+      for (const [field, value] of values) given.set(field, value);
       return { row, outcome };
     });
+}
+
+/** What a row tells, in values that can be compared. */
+function valuesOf(row: ToldRow): [string, string | number][] {
+  return fields.flatMap((field) => {
+    const value = row[field];
+    if (value === null) return [];
+    return [[field, value instanceof Date ? value.getTime() : value]];
+  });
 }
 
 function tellsOf(row: ToldRow, record: RecordRow): boolean {
@@ -41,11 +66,10 @@ function tellsOf(row: ToldRow, record: RecordRow): boolean {
 }
 
 function outcomeOf(
-  row: ToldRow,
-  given: Partial<Record<(typeof times)[number], number>>,
+  values: readonly [string, string | number][],
+  given: ReadonlyMap<string, string | number>,
 ): VersionOutcome {
-  const told = times.filter((time) => row[time] !== null);
-  if (told.some((time) => given[time] !== undefined && given[time] !== row[time]?.getTime()))
-    return 'correcting';
-  return told.some((time) => given[time] === undefined) ? 'completing' : 'same';
+  const differing = values.filter(([field, value]) => given.get(field) !== value);
+  if (differing.some(([field]) => given.has(field))) return 'correcting';
+  return differing.length > 0 ? 'completing' : 'same';
 }

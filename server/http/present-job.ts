@@ -73,6 +73,8 @@ function toldBeside(record: RecordRow): Record<string, string> {
     parent: record.parent,
   };
   return Object.fromEntries(
-    Object.entries(columns).filter((entry): entry is [string, string] => entry[1] !== null),
+    Object.entries(columns).flatMap(([name, value]) =>
+      value === null ? [] : [[name, String(value)]],
+    ),
   );
 }

@@ -4,6 +4,7 @@ import { countOutcomes } from '../flow/derive/count-outcomes.ts';
 import { deriveFromToldRows } from '../flow/derive/derive.ts';
 import type { Derivation } from '../flow/derive/derivation.ts';
 import { createTouchedJobs, gatherToldRows } from '../flow/derive/told-rows.ts';
+import { insertArea } from '../sites/write-areas.ts';
 import type { StagedArea } from './pipeline.ts';
 
 /** What reading a file into `staged_row` gave, and for which upload. */
@@ -40,25 +41,7 @@ async function addFoundAreas(derivation: Derivation, areas: readonly StagedArea[
     // Somebody may have declared the area while the file was being read.
     found.areaId ??= await areaSpelled(derivation, found.folded);
     if (found.areaId !== null) continue;
-    const { rows } = await tx.execute(sql`/* found area */
-      with made as (
-        insert into zone (organisation_id, site_id, kind, name)
-        values (${organisationId}, ${siteId}, 'area', ${found.name})
-        returning organisation_id, site_id, id
-      ),
-      placed as (
-        insert into area (organisation_id, site_id, id, position, origin)
-        select organisation_id, site_id, id, 1 + coalesce(
-          (
-            select max(position) from area
-            where organisation_id = ${organisationId} and site_id = ${siteId}
-          ),
-          0
-        ), 'found'
-        from made
-      )
-      select id from made`);
-    found.areaId = Number(rows[0]?.id);
+    found.areaId = await insertArea(derivation, { name: found.name, origin: 'found' });
     await tx.execute(sql`/* found spelling */
       insert into area_spelling (organisation_id, site_id, folded, as_written, area_id, origin)
       values (${organisationId}, ${siteId}, ${found.folded}, ${found.name}, ${found.areaId}, 'found')`);

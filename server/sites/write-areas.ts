@@ -9,8 +9,21 @@ export async function createArea(
   writer: SiteWriter,
   given: { name: string; countsFrom?: 'arrival' | 'start' | undefined },
 ): Promise<number> {
-  const { tx, organisationId, siteId } = writer;
   await lockNames(writer);
+  const id = await insertArea(writer, { ...given, origin: 'declared' });
+  await declareSpelling(writer, id, given.name);
+  return id;
+}
+
+/** The zone of an area and its place at the end of the flow; its spelling is for the caller to give. */
+export async function insertArea(
+  { tx, organisationId, siteId }: SiteWriter,
+  given: {
+    name: string;
+    origin: 'declared' | 'found';
+    countsFrom?: 'arrival' | 'start' | undefined;
+  },
+): Promise<number> {
   const [made] = await tx
     .insert(zone)
     .values({
@@ -26,13 +39,12 @@ export async function createArea(
     organisationId,
     siteId,
     id: made.id,
-    origin: 'declared',
+    origin: given.origin,
     position: sql`1 + coalesce((
       select max(position) from area
       where organisation_id = ${organisationId} and site_id = ${siteId}
     ), 0)`,
   });
-  await declareSpelling(writer, made.id, given.name);
   return made.id;
 }
 

@@ -11,7 +11,6 @@ export const uploadStatuses = [
   'failed',
   'withdrawn',
 ] as const;
-export type UploadStatus = (typeof uploadStatuses)[number];
 
 const counts = z.record(z.string(), z.int());
 

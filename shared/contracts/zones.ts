@@ -4,7 +4,6 @@ import { siteParams } from './sites.ts';
 
 export const zoneParams = siteParams.extend({ zoneId: idParam });
 export const unitSchema = z.enum(['jobs', 'units']);
-export type Unit = z.infer<typeof unitSchema>;
 export const hoursSchema = z.enum(['clock', 'working']);
 export const countsFromSchema = z.enum(['arrival', 'start']);
 

@@ -175,4 +175,27 @@ describe('a second telling', () => {
     expect(second.id).not.toBe(first.id);
     expect(second.account).toMatchObject({ rowsRead: 2, new: 0, same: 2 });
   });
+
+  it('of a record id under another job moves the record there', async () => {
+    const site = await makeSite(test, { timeZone });
+    const columns = 'record id,job,area,started,finished\n';
+    await site.upload(
+      `${columns}R1,J1,Bench,2026-10-24T01:00Z,2026-10-24T02:00Z\nR2,J1,Oven,2026-10-24T03:00Z,\n`,
+    );
+    const second = await site.upload(`${columns}R2,J2,Oven,2026-10-24T03:00Z,2026-10-24T04:00Z\n`);
+    expect(second.account).toMatchObject({ new: 0, correcting: 1 });
+    const left = await site.get<{ records: unknown[] }>('/jobs/J1');
+    expect(left.records).toMatchObject([{ areaName: 'Bench' }]);
+    const moved = await site.get<{ records: unknown[] }>('/jobs/J2');
+    expect(moved.records).toMatchObject([
+      {
+        areaName: 'Oven',
+        finished: '2026-10-24T04:00:00.000Z',
+        versions: [{ outcome: 'new' }, { outcome: 'correcting' }],
+      },
+    ]);
+    const before = await state(site);
+    await rebuild(site, timeZone);
+    expect(await state(site)).toEqual(before);
+  });
 });

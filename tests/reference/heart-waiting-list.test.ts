@@ -1,17 +1,14 @@
-import { readFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { startTestApp, type TestApp } from '../support/app.ts';
 import { closeTo } from '../support/close-to.ts';
 import { makeSite, type TestSite } from '../support/site.ts';
+import { referenceText } from './reference-text.ts';
 
 /**
  * Stanford heart transplant data: Crowley & Hu (1977), Journal of the American Statistical Association
  * 72(357), as packaged in R's survival (LGPL >= 2). A waiting list is an uncapped area. Real dates, some
  * before 1970; the truth was computed apart from this product.
  */
-const folder = new URL('./data/', import.meta.url);
-const text = (name: string) => readFileSync(new URL(name, folder), 'utf8');
-
 interface AreaTruth {
   window: [string, string];
   window_days: number;
@@ -34,7 +31,7 @@ interface AreaTruth {
   size_on_first_of_month: [string, number][];
 }
 const truth = (
-  JSON.parse(text('heart-waiting-list-truth.json')) as { areas: Record<string, AreaTruth> }
+  JSON.parse(referenceText('heart-waiting-list-truth.json')) as { areas: Record<string, AreaTruth> }
 ).areas;
 const day = 86_400;
 
@@ -43,7 +40,7 @@ let site: TestSite;
 beforeAll(async () => {
   test = await startTestApp();
   site = await makeSite(test);
-  const upload = await site.upload(text('heart-waiting-list.csv'));
+  const upload = await site.upload(referenceText('heart-waiting-list.csv'));
   expect(upload.account).toMatchObject({ rowsRead: 172, new: 172, refused: 0 });
 });
 afterAll(() => test.close());

@@ -1,13 +1,10 @@
-import { readFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { startTestApp, type TestApp } from '../support/app.ts';
 import { closeTo } from '../support/close-to.ts';
 import { makeSite } from '../support/site.ts';
+import { referenceText } from './reference-text.ts';
 
 /** Tiny logs with exact truth; their source stands in micro-truth.json. */
-const folder = new URL('./data/', import.meta.url);
-const text = (name: string) => readFileSync(new URL(name, folder), 'utf8');
-
 interface Example {
   window: [string, string];
   integral_job_seconds: number;
@@ -30,7 +27,9 @@ interface Example {
   little_arrivals?: { lambda_per_hour: number };
   seconds: number;
 }
-const truth = JSON.parse(text('micro-truth.json')) as { examples: Record<string, Example> };
+const truth = JSON.parse(referenceText('micro-truth.json')) as {
+  examples: Record<string, Example>;
+};
 
 let test: TestApp;
 beforeAll(async () => {
@@ -41,7 +40,7 @@ afterAll(() => test.close());
 describe('a log of a few rows gives exactly its figures through the API', () => {
   it.each(Object.entries(truth.examples))('%s', async (file, expected) => {
     const site = await makeSite(test);
-    const upload = await site.upload(text(file));
+    const upload = await site.upload(referenceText(file));
     expect(upload).toMatchObject({ status: 'loaded', error: null });
     const bench = await site.zone('Bench');
     const [from, to] = expected.window;
@@ -89,7 +88,7 @@ describe('degenerate files', () => {
     ['micro-header-only.csv', /header|no rows/i],
   ])('%s gets a sentence and leaves nothing behind', async (file, sentence) => {
     const site = await makeSite(test);
-    const upload = await site.upload(text(file));
+    const upload = await site.upload(referenceText(file));
     expect(upload.status).toBe('failed');
     expect(upload.errorDetail).toMatch(sentence);
     expect((await site.zones()).map((zone) => zone.kind)).toEqual(['site']);
@@ -98,7 +97,7 @@ describe('degenerate files', () => {
 
   it('a single row is one stay of an hour', async () => {
     const site = await makeSite(test);
-    await site.upload(text('micro-single-row.csv'));
+    await site.upload(referenceText('micro-single-row.csv'));
     const { id } = await site.zone('Bench');
     const summary = await site.summary(id, '2026-01-05T00:00:00Z', '2026-01-05T02:00:00Z');
     expect(summary).toMatchObject({
@@ -112,7 +111,7 @@ describe('degenerate files', () => {
 
   it('a stay of no length comes and goes and is never inside', async () => {
     const site = await makeSite(test);
-    await site.upload(text('micro-single-zero.csv'));
+    await site.upload(referenceText('micro-single-zero.csv'));
     const { id } = await site.zone('Bench');
     const summary = await site.summary(id, '2026-01-05T00:00:00Z', '2026-01-05T01:00:00Z');
     expect(summary).toMatchObject({
@@ -130,7 +129,7 @@ describe('degenerate files', () => {
 
   it('a quoted file without a last line break is read whole', async () => {
     const site = await makeSite(test);
-    await site.upload(text('micro-no-final-newline-quoted.csv'));
+    await site.upload(referenceText('micro-no-final-newline-quoted.csv'));
     const { id } = await site.zone('Bench, north');
     const summary = await site.summary(id, '2026-01-05T00:00:00Z', '2026-01-05T02:00:00Z');
     closeTo((summary.wipMean ?? 0) * 7200, 5400);
@@ -138,7 +137,7 @@ describe('degenerate files', () => {
 
   it('offsets of whole and half hours and fractions of a second are exact', async () => {
     const site = await makeSite(test);
-    await site.upload(text('micro-offsets.csv'));
+    await site.upload(referenceText('micro-offsets.csv'));
     const { id } = await site.zone('Bench');
     const summary = await site.summary(id, '2026-01-04T23:00:00Z', '2026-01-05T01:00:00Z');
     closeTo((summary.wipMean ?? 0) * 7200, 7200.5);

@@ -4,7 +4,7 @@ import { localDay, stepBorders } from '../../../shared/local-time.ts';
 import type { Derivation } from './derivation.ts';
 import { dayGrid, type DayGrid } from './local-grid.ts';
 import { mergeRecords } from './merge-records.ts';
-import { refreshWarmUp, refreshZones } from './refresh-zones.ts';
+import { refreshZones, tellZones, type DerivedZone } from './refresh-zones.ts';
 import { replaceFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
 import {
   markMonthsFrom,
@@ -12,11 +12,7 @@ import {
   replaceFlowMonths,
 } from './replace-flow-months.ts';
 import { replaceLevelDays } from './replace-level-days.ts';
-import {
-  replaceLevelHours,
-  replaceTouchedLevelHours,
-  type DerivedZone,
-} from './replace-level-hours.ts';
+import { replaceLevelHours, replaceTouchedLevelHours } from './replace-level-hours.ts';
 import { findChangedJobs, replaceRecords } from './replace-records.ts';
 import { replaceStays } from './replace-stays.ts';
 import { gatherToldRows, touchEveryJob } from './told-rows.ts';
@@ -38,48 +34,65 @@ export async function deriveTouchedJobs(derivation: Derivation): Promise<void> {
 
 /** The same, where `told_row` was gathered already. */
 export async function deriveFromToldRows(derivation: Derivation): Promise<void> {
-  const { unitsChanged } = await refreshZones(derivation);
-  // Where most jobs changed, finding the hours to make would cost more than making all from the first on.
-  const mostly = await isMostOfSite(derivation);
-  if (mostly) await joinByHash(derivation, true);
+  const zones = await tellZones(derivation);
+  if (await isMostOfSite(derivation)) await deriveMost(derivation, zones);
+  else await deriveFew(derivation, zones);
+  await finish(derivation);
+}
+
+/** Where most jobs are touched: finding the hours to make would cost more than making all from the first on. */
+async function deriveMost(derivation: Derivation, zones: readonly DerivedZone[]): Promise<void> {
+  await joinByHash(derivation, true);
+  await mergeRecords(derivation);
+  await findChangedJobs(derivation);
+  const first = await firstChange(derivation);
+  await replaceRecords(derivation);
+  await replaceStays(derivation, changedJobs);
+  await joinByHash(derivation, false);
+  const whole = zones.filter((zone) => zone.unitsChanged);
+  const others = zones.filter((zone) => !zone.unitsChanged);
+  await deriveLevels(derivation, whole, -Infinity);
+  if (first !== null) await deriveLevels(derivation, others, startOfDay(derivation, first));
+}
+
+/** Where few jobs are touched, among many that stand: only the hours in which something changes are made. */
+async function deriveFew(derivation: Derivation, zones: readonly DerivedZone[]): Promise<void> {
   await mergeRecords(derivation);
   await findChangedJobs(derivation);
   await createTouchedHours(derivation);
-  const first = mostly ? await firstChange(derivation) : null;
-  if (!mostly) await touchHoursOfChangedJobs(derivation);
+  await touchHoursOfChangedJobs(derivation);
   await replaceRecords(derivation);
-  await replaceStays(derivation, sql`select job_key from changed_job`);
-  if (mostly) await joinByHash(derivation, false);
-  if (mostly) await deriveLevelsFrom(derivation, await readZones(derivation), unitsChanged, first);
-  else await deriveTouchedLevels(derivation, unitsChanged);
-  await finish(derivation);
+  await replaceStays(derivation, changedJobs);
+  await touchHoursOfChangedJobs(derivation);
+  await deriveTouchedLevels(derivation, zones);
 }
+
+const changedJobs = sql`select job_key from changed_job`;
 
 /** Derives everything from the told rows, whatever stands. */
 export async function rebuildSite(derivation: Derivation): Promise<void> {
   const { tx } = derivation;
-  await refreshZones(derivation);
+  const zones = await tellZones(derivation);
   await touchEveryJob(derivation);
   await gatherToldRows(derivation);
   await mergeRecords(derivation);
   await tx.execute(sql`drop table if exists changed_job`);
   await tx.execute(sql`create temp table changed_job on commit drop as select * from touched_job`);
   await replaceRecords(derivation);
-  await replaceStays(derivation, sql`select job_key from changed_job`);
-  await deriveLevels(derivation, await readZones(derivation), -Infinity);
+  await replaceStays(derivation, changedJobs);
+  await deriveLevels(derivation, zones, -Infinity);
   await finish(derivation);
 }
 
 /** Derives the stays, levels and days of one zone of several areas, for a loop that is new or changed. */
 export async function deriveZone(derivation: Derivation, zoneId: number): Promise<void> {
   const { organisationId, siteId } = derivation;
-  await refreshZones(derivation);
+  const zones = await tellZones(derivation);
   await replaceStays(
     derivation,
     sql`select job_key from record where organisation_id = ${organisationId} and site_id = ${siteId}`,
     zoneId,
   );
-  const zones = await readZones(derivation);
   await deriveLevels(
     derivation,
     zones.filter((zone) => zone.id === zoneId),
@@ -121,19 +134,6 @@ async function isMostOfSite({ tx, organisationId, siteId }: Derivation): Promise
   return rows[0]?.mostly === true;
 }
 
-const zoneRow = z.object({ id: z.number(), has_quantities: z.boolean() });
-
-async function readZones({ tx, organisationId, siteId }: Derivation): Promise<DerivedZone[]> {
-  const { rows } = await tx.execute(sql`/* zones to derive */
-    select id, has_quantities from zone
-    where organisation_id = ${organisationId} and site_id = ${siteId}
-    order by id`);
-  return z
-    .array(zoneRow)
-    .parse(rows)
-    .map((row) => ({ id: row.id, hasQuantities: row.has_quantities }));
-}
-
 /** The first moment at which a changed job comes, starts or leaves anywhere, as it stood or as it is merged. */
 async function firstChange({ tx, organisationId, siteId }: Derivation): Promise<number | null> {
   const { rows } = await tx.execute(sql`/* first change */
@@ -146,20 +146,6 @@ async function firstChange({ tx, organisationId, siteId }: Derivation): Promise<
       )
     ) as first`);
   return z.object({ first: z.coerce.date().nullable() }).parse(rows[0]).first?.getTime() ?? null;
-}
-
-/** Levels from the first change on; from the beginning for zones whose levels in units come or go. */
-async function deriveLevelsFrom(
-  derivation: Derivation,
-  zones: readonly DerivedZone[],
-  unitsChanged: readonly number[],
-  first: number | null,
-): Promise<void> {
-  const whole = zones.filter((zone) => unitsChanged.includes(zone.id));
-  if (whole.length > 0) await deriveLevels(derivation, whole, -Infinity);
-  if (first === null) return;
-  const others = zones.filter((zone) => !unitsChanged.includes(zone.id));
-  await deriveLevels(derivation, others, startOfDay(derivation, first));
 }
 
 /** Hours, days and departures of the given zones from the local day that begins at `from` on. */
@@ -186,14 +172,17 @@ async function deriveLevels(
 const startOfDay = ({ rules }: Derivation, at: number): number =>
   stepBorders(rules, 'day', at, at + 1)[0] ?? at;
 
-async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[]): Promise<void> {
-  await touchHoursOfChangedJobs(derivation);
+/** Makes the touched hours, and all hours of zones of which most are touched. */
+async function deriveTouchedLevels(
+  derivation: Derivation,
+  zones: readonly DerivedZone[],
+): Promise<void> {
   const touched = await readTouchedZones(derivation);
   const from = new Map(
     touched.filter((zone) => zone.mostly).map((zone) => [zone.zoneId, zone.from]),
   );
-  for (const zoneId of unitsChanged) from.set(zoneId, -Infinity);
-  if (from.size > 0) await deriveZonesFrom(derivation, from);
+  for (const zone of zones) if (zone.unitsChanged) from.set(zone.id, -Infinity);
+  if (from.size > 0) await deriveZonesFrom(derivation, zones, from);
   const parts = touched.filter((zone) => !from.has(zone.zoneId));
   if (parts.length === 0) return;
   const grid = await gridOfTouchedHours(derivation);
@@ -210,11 +199,12 @@ async function deriveTouchedLevels(derivation: Derivation, unitsChanged: number[
 /** Zones of which so many hours are touched that all from the first on are made. */
 async function deriveZonesFrom(
   derivation: Derivation,
+  zones: readonly DerivedZone[],
   from: ReadonlyMap<number, number>,
 ): Promise<void> {
   await derivation.tx.execute(sql`/* leave these zones to the other way */
     delete from touched_hour where zone_id = any(${sql.param([...from.keys()])}::integer[])`);
-  for (const zone of await readZones(derivation)) {
+  for (const zone of zones) {
     const begins = from.get(zone.id);
     if (begins !== undefined) await deriveLevels(derivation, [zone], begins);
   }
@@ -222,7 +212,7 @@ async function deriveZonesFrom(
 
 async function finish(derivation: Derivation): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
-  await refreshWarmUp(derivation);
+  await refreshZones(derivation);
   await tx.execute(sql`/* new data version */
     update site set data_version = data_version + 1
     where organisation_id = ${organisationId} and id = ${siteId}`);

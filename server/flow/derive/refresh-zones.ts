@@ -1,18 +1,33 @@
 import { sql } from 'drizzle-orm';
+import { z } from 'zod';
 import { binRatio, zeroBin } from '../../methods/binned-percentile.ts';
 import type { Derivation } from './derivation.ts';
 
+/** A zone as far as deriving its levels depends on it. */
+export interface DerivedZone {
+  id: number;
+  hasQuantities: boolean;
+  /** Whether it began or ceased to carry quantities: its levels in units are then all to be made. */
+  unitsChanged: boolean;
+}
+
+const zoneRow = z.object({
+  zone_id: z.number(),
+  has_quantities: z.boolean(),
+  units_changed: z.boolean(),
+});
+
 /**
- * What the uploads say of each zone: which columns they hold, and how far they speak. An upload speaks,
- * for each area in it, up to its latest accepted time. An area's data-until is the latest over its
- * uploads; a loop's or the site's the earliest over its areas in use: those with a record within 28 days
- * of the site's latest.
- *
- * @returns whether a zone began or ceased to carry quantities: its levels in units are then to be made
+ * Temporary table `told_zone`: what the uploads say of each zone, which columns they hold and how far they
+ * speak. An upload speaks, for each area in it, up to its latest accepted time. An area's data-until is the
+ * latest over its uploads; a loop's or the site's the earliest over its areas in use: those with a record
+ * within 28 days of the site's latest.
  */
-export async function refreshZones(derivation: Derivation): Promise<{ unitsChanged: number[] }> {
+export async function tellZones(derivation: Derivation): Promise<DerivedZone[]> {
   const { tx, organisationId, siteId } = derivation;
-  const { rows } = await tx.execute(sql`/* refresh zones */
+  await tx.execute(sql`drop table if exists told_zone`);
+  await tx.execute(sql`/* what is told of zones */
+    create temp table told_zone on commit drop as
     with heard as (
       select
         area_id,
@@ -52,23 +67,41 @@ export async function refreshZones(derivation: Derivation): Promise<{ unitsChang
       from spanned left join in_use using (area_id)
       group by zone_id
     )
+    select
+      zone.id as zone_id, said.data_until, said.data_from,
+      coalesce(said.has_starts, false) as has_starts,
+      coalesce(said.has_quantities, false) as has_quantities,
+      coalesce(said.has_quantities, false) <> zone.has_quantities as units_changed
+    from zone left join said on said.zone_id = zone.id
+    where zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}`);
+  const { rows } = await tx.execute(sql`/* zones to derive */
+    select zone_id, has_quantities, units_changed from told_zone order by zone_id`);
+  return z
+    .array(zoneRow)
+    .parse(rows)
+    .map((row) => ({
+      id: row.zone_id,
+      hasQuantities: row.has_quantities,
+      unitsChanged: row.units_changed,
+    }));
+}
+
+/** Writes what is told of the zones into them: last, so that a person who changes one need not wait for a load. */
+export async function refreshZones(derivation: Derivation): Promise<void> {
+  const { tx, organisationId, siteId } = derivation;
+  await tx.execute(sql`/* refresh zones */
     update zone set
-      data_until = said.data_until,
-      data_from = said.data_from,
-      has_starts = coalesce(said.has_starts, false),
-      has_quantities = coalesce(said.has_quantities, false)
-    from zone as before left join said on said.zone_id = before.id
-    where before.organisation_id = ${organisationId} and before.site_id = ${siteId}
-      and zone.organisation_id = before.organisation_id and zone.site_id = before.site_id
-      and zone.id = before.id
-    returning zone.id, zone.has_quantities <> before.has_quantities as units_changed`);
-  return {
-    unitsChanged: rows.filter((row) => row.units_changed === true).map((row) => Number(row.id)),
-  };
+      data_until = told_zone.data_until,
+      data_from = told_zone.data_from,
+      has_starts = told_zone.has_starts,
+      has_quantities = told_zone.has_quantities
+    from told_zone
+    where organisation_id = ${organisationId} and site_id = ${siteId} and id = zone_id`);
+  await refreshWarmUp(derivation);
 }
 
 /** Ends each zone's warm-up at its first moment plus the 95th percentile of its flow time, from the bins. */
-export async function refreshWarmUp({ tx, organisationId, siteId }: Derivation): Promise<void> {
+async function refreshWarmUp({ tx, organisationId, siteId }: Derivation): Promise<void> {
   await tx.execute(sql`/* warm-up */
     with binned as (
       select zone_id, bin, sum(departed) as departed

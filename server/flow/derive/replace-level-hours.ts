@@ -4,15 +4,10 @@ import { lengthReaches } from '../length-reach.ts';
 import type { Measure } from '../../db/schema/levels.ts';
 import type { Derivation } from './derivation.ts';
 import { localHour } from './local-grid.ts';
+import type { DerivedZone } from './refresh-zones.ts';
 
 /** All moments that a stored time may have. */
 export const always = { from: Date.UTC(1949, 0, 1), to: Date.UTC(2100, 0, 1) };
-
-/** A zone as far as deriving its levels depends on it. */
-export interface DerivedZone {
-  id: number;
-  hasQuantities: boolean;
-}
 
 /** The two levels of one unit, which rise and fall by the same weight. */
 interface Levels {
@@ -196,10 +191,8 @@ async function findSpansNearTouchedHours({
   await tx.execute(sql`/* spans near touched hours */
     create temp table span_near_touched_hour on commit drop as
     select distinct on (near.zone_id, near.job_key, near.ordinal, near.inside_from, near.process_from)
-      near.*, zone.has_quantities
-    from touched_span
-    join zone on zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}
-      and zone.id = touched_span.zone_id
+      near.*, has_quantities
+    from touched_span join told_zone using (zone_id)
     cross join (${lengthReaches}) as length_reach
     cross join lateral (
       select zone_id, job_key, ordinal, inside_from, process_from, until, quantity
