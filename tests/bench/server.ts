@@ -19,7 +19,7 @@ export class BenchServer {
   static async start(databaseUrl: string): Promise<BenchServer> {
     const process_ = spawn(
       process.execPath,
-      ['--max-semi-space-size=4', '--import', 'tsx', 'server/main.ts'],
+      ['--max-semi-space-size=4', '--optimize-for-size', '--import', 'tsx', 'server/main.ts'],
       {
         env: {
           ...process.env,
