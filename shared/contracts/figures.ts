@@ -206,3 +206,26 @@ export const readFloor = contract({
     rows: z.array(floorRowSchema),
   }),
 });
+
+/** What the loaded span of a site looks like, for the time ruler. */
+export const siteSpanSchema = z.object({
+  /** First moment of the site's data, the latest for which it speaks, and the latest of any area. */
+  from: instantOrNull,
+  until: instantOrNull,
+  latest: instantOrNull,
+  /** From here on later exports may still change the figures. */
+  settlingFrom: instantOrNull,
+  /** Stretches of three days or more in which nothing was recorded anywhere. */
+  gaps: z.array(z.object({ from: instantSchema, to: instantSchema })),
+});
+export type SiteSpan = z.infer<typeof siteSpanSchema>;
+
+export const readSpan = contract({
+  name: 'readSpan',
+  method: 'get',
+  path: '/api/sites/:siteId/span',
+  summary: 'The loaded span of a site: where data are missing, and where they still settle',
+  action: 'figures.read',
+  params: siteParams,
+  response: siteSpanSchema,
+});

@@ -1,7 +1,8 @@
 import { useQueryClient } from '@tanstack/react-query';
 import { Suspense, useEffect, type ReactNode } from 'react';
 import { Link, NavLink, Outlet, useParams } from 'react-router-dom';
-import { PeriodBar } from '../features/period/period-bar.tsx';
+import { TimeRuler } from '../features/period/time-ruler.tsx';
+import { UnitSwitch } from '../features/period/unit-switch.tsx';
 import { usePeriod } from '../features/period/use-period.ts';
 import { useMay, useRole, useSession } from '../features/session/queries.ts';
 import { useSite } from '../features/sites/queries.ts';
@@ -35,9 +36,10 @@ export function SiteShell() {
               : `data until ${formatMoment(site.dataUntil, site.timeZone)}`}
           </span>
         </span>
+        <UnitSwitch site={site} />
         <JobSearch siteId={siteId} search={search} />
       </Header>
-      <PeriodBar site={site} />
+      <TimeRuler site={site} />
       <div className="flex flex-1 flex-col lg:flex-row">
         <Navigation site={site} search={search} />
         <main id="main" className="min-w-0 flex-1 bg-panel px-4 py-5 md:px-7">
@@ -122,7 +124,7 @@ function Navigation({ site, search }: { site: Site; search: string }) {
   return (
     <nav
       aria-label="Screens"
-      className="no-print flex gap-1 border-b border-hair px-2 py-2 lg:w-40 lg:flex-col lg:border-r lg:border-b-0 lg:px-0 lg:py-5"
+      className="no-print flex gap-1 border-b border-hair px-2 py-2 lg:w-52 lg:flex-col lg:border-r lg:border-b-0 lg:px-0 lg:py-5"
     >
       {links.map(({ to, label }) => (
         <NavLink

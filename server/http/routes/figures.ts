@@ -2,6 +2,7 @@ import {
   readFloor,
   readInside,
   readSeries,
+  readSpan,
   readSummary,
 } from '../../../shared/contracts/figures.ts';
 import { withTenant } from '../../db/tenant.ts';
@@ -10,11 +11,13 @@ import { readerOfSite, readFigureZones } from '../../flow/figure-zones.ts';
 import { readInsideAt } from '../../flow/inside-at.ts';
 import { readLevelAt } from '../../flow/level-over.ts';
 import { readSiteFloor } from '../../flow/site-floor.ts';
+import { readSiteSpan } from '../../flow/site-span.ts';
 import { readServerSeconds } from '../../flow/utilisation.ts';
 import type { FigureZone, Period, SiteReader } from '../../flow/zone-reader.ts';
 import { readZoneSeries } from '../../flow/zone-series.ts';
 import { readZoneSummary } from '../../flow/zone-summary.ts';
 import { stepBorders } from '../../../shared/local-time.ts';
+import { findSite } from '../../sites/present-site.ts';
 import { readZones } from '../../sites/read-zones.ts';
 import type { Api, Call } from '../api.ts';
 import { createFigureCache } from '../figure-cache.ts';
@@ -87,6 +90,23 @@ export function registerFigures({ route, deps }: Api): void {
     }),
   );
 
+  route(readSpan, (call) =>
+    cache.answer(call, () =>
+      withTenant(db, call.organisationId, async (tx) => {
+        const reader = await readerOfSite(tx, call.organisationId, call.siteId);
+        const site = await findSite(tx, call.organisationId, call.siteId);
+        const span = await readSiteSpan(reader);
+        return {
+          from: site.dataFrom,
+          until: site.dataUntil,
+          latest: isoOrNull(span.latest),
+          settlingFrom: isoOrNull(span.settlingFrom),
+          gaps: span.gaps.map((gap) => ({ from: iso(gap.from), to: iso(gap.to) })),
+        };
+      }),
+    ),
+  );
+
   route(readFloor, (call) =>
     cache.answer(call, () =>
       withTenant(db, call.organisationId, async (tx) => {
@@ -112,6 +132,9 @@ export function registerFigures({ route, deps }: Api): void {
     ),
   );
 }
+
+const iso = (at: number) => new Date(at).toISOString();
+const isoOrNull = (at: number | null) => (at === null ? null : iso(at));
 
 const periodOf = (query: { from: string; to: string }): Period => ({
   from: Date.parse(query.from),

@@ -1,4 +1,4 @@
-import { queryOptions } from '@tanstack/react-query';
+import { keepPreviousData, queryOptions } from '@tanstack/react-query';
 import { readFloor } from '../../../shared/contracts/figures.ts';
 import { call } from '../../api/call.ts';
 
@@ -10,4 +10,5 @@ export const floorQuery = (
   queryOptions({
     queryKey: ['site', siteId, 'floor', asked],
     queryFn: ({ signal }) => call(readFloor, { params: { siteId }, query: asked, signal }),
+    placeholderData: keepPreviousData,
   });

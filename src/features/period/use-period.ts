@@ -20,18 +20,19 @@ export function usePeriod(site: Site) {
   const period =
     from !== null && to !== null && Date.parse(from) < Date.parse(to) ? { from, to } : usual;
   const unit: 'jobs' | 'units' = search.get('unit') === 'units' ? 'units' : 'jobs';
-  const set = (changes: Record<string, string>) =>
+  const set = (changes: Record<string, string>, options?: { replace: boolean }) =>
     setSearch((before) => {
       const next = new URLSearchParams(before);
       for (const [name, value] of Object.entries(changes)) next.set(name, value);
       return next;
-    });
+    }, options);
   return {
     period,
     unit,
     /** What links carry along, so that the period stays from screen to screen. */
     search: search.size > 0 ? `?${search.toString()}` : '',
-    setPeriod: (next: Period) => set({ ...next }),
+    /** `replace` leaves no step in the history, where many small ones follow each other. */
+    setPeriod: (next: Period, options?: { replace: boolean }) => set({ ...next }, options),
     setUnit: (next: 'jobs' | 'units') => set({ unit: next }),
     weeksUntilNow: (weeks: number) => set({ ...lastWeeks(site, rules, weeks) }),
     everything: () => set({ ...whole(site, rules) }),
