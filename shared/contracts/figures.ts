@@ -207,6 +207,25 @@ export const readFloor = contract({
   }),
 });
 
+/** Mean level of every zone by day or week, for the small pictures of the Floor. */
+export const floorLevelsSchema = z.object({
+  /** n + 1 borders of n steps. */
+  borders: z.array(instantSchema),
+  zones: z.array(z.object({ zoneId: z.int(), wipMean: z.array(number) })),
+});
+export type FloorLevels = z.infer<typeof floorLevelsSchema>;
+
+export const readFloorLevels = contract({
+  name: 'readFloorLevels',
+  method: 'get',
+  path: '/api/sites/:siteId/floor/levels',
+  summary: 'Mean level of every zone by local day, or by ISO week beyond a hundred days',
+  action: 'figures.read',
+  params: siteParams,
+  query: periodQuery,
+  response: floorLevelsSchema,
+});
+
 /** What the loaded span of a site looks like, for the time ruler. */
 export const siteSpanSchema = z.object({
   /** First moment of the site's data, the latest for which it speaks, and the latest of any area. */

@@ -3,8 +3,9 @@ import { Link } from 'react-router-dom';
 import { dayMs } from '../../shared/local-time.ts';
 import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
+import { FloorSection } from '../features/floor/floor-section.tsx';
 import { FloorTable } from '../features/floor/floor-table.tsx';
-import { floorQuery } from '../features/floor/queries.ts';
+import { floorLevelsQuery, floorQuery } from '../features/floor/queries.ts';
 import { floorSentence } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
 import { EmptyState } from '../ui/empty-state.tsx';
@@ -19,6 +20,10 @@ export function Component() {
   const { period, unit, search } = usePeriod(site);
   const floor = useQuery({
     ...floorQuery(site.id, { ...period, unit }),
+    enabled: site.dataUntil !== null,
+  });
+  const levels = useQuery({
+    ...floorLevelsQuery(site.id, { ...period, unit }),
     enabled: site.dataUntil !== null,
   });
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
@@ -49,11 +54,14 @@ export function Component() {
               ),
             )}
           </Sentence>
-          <FloorTable
+          <FloorSection
             rows={floor.data.rows}
-            days={(Date.parse(floor.data.to) - Date.parse(floor.data.from)) / dayMs}
+            levels={levels.data}
+            days={daysOf(floor.data)}
+            unit={floor.data.unit}
             linkTo={linkTo}
           />
+          <FloorTable rows={floor.data.rows} days={daysOf(floor.data)} linkTo={linkTo} />
           {floor.data.approximate ? (
             <p className="text-soft">Percentiles are read from bins and right within 1 %.</p>
           ) : null}
@@ -64,3 +72,6 @@ export function Component() {
     </div>
   );
 }
+
+const daysOf = (period: { from: string; to: string }): number =>
+  (Date.parse(period.to) - Date.parse(period.from)) / dayMs;

@@ -1,5 +1,6 @@
 import {
   readFloor,
+  readFloorLevels,
   readInside,
   readSeries,
   readSpan,
@@ -8,6 +9,7 @@ import {
 import { withTenant } from '../../db/tenant.ts';
 import { ApiError, invalidInput, notFound } from '../../errors.ts';
 import { readerOfSite, readFigureZones } from '../../flow/figure-zones.ts';
+import { readFloorLevels as readLevelsOfFloor } from '../../flow/floor-levels.ts';
 import { readInsideAt } from '../../flow/inside-at.ts';
 import { readLevelAt } from '../../flow/level-over.ts';
 import { readSiteFloor } from '../../flow/site-floor.ts';
@@ -88,6 +90,19 @@ export function registerFigures({ route, deps }: Api): void {
         nextCursor: last ? cursorOfPlace(last) : null,
       };
     }),
+  );
+
+  route(readFloorLevels, (call) =>
+    cache.answer(call, () =>
+      withTenant(db, call.organisationId, async (tx) => {
+        const { unit, hours } = call.query;
+        refuseWorkingHours(hours);
+        const reader = await readerOfSite(tx, call.organisationId, call.siteId);
+        const zones = await readFigureZones(reader);
+        const levels = await readLevelsOfFloor(reader, zones, periodOf(call.query), unit);
+        return { borders: levels.borders.map(iso), zones: levels.zones };
+      }),
+    ),
   );
 
   route(readSpan, (call) =>

@@ -1,0 +1,194 @@
+import type { ReactNode } from 'react';
+import type { DrawnArrow, DrawnBasin, Section } from './section-layout.ts';
+import { SmallLevels } from './small-levels.tsx';
+
+/** What stands below a basin: lines of text, and its level by step. */
+export interface BelowBasin {
+  lines: readonly string[];
+  levels: readonly (number | null)[];
+}
+
+/**
+ * The site as a cut through a watercourse: open basins in order of flow, filled to what is inside, waiting
+ * light above in process; the mean as a tick and the peak as a whisker on the right wall, a cap as a heavy
+ * mark, arrows with what leaves a day.
+ *
+ * @param wrap puts a basin into its link; its accessible name tells what the picture shows
+ */
+export function SectionChart({
+  section,
+  width,
+  formatAmount,
+  formatRate,
+  below,
+  wrap,
+}: {
+  section: Section;
+  width: number;
+  formatAmount: (amount: number) => string;
+  formatRate: (rate: number) => string;
+  below: (id: number) => BelowBasin;
+  wrap: (basin: DrawnBasin, picture: ReactNode) => ReactNode;
+}) {
+  return (
+    <svg width={width} height={section.height} className="block overflow-visible">
+      {section.arrows.map((arrow) => (
+        <Arrow key={`${arrow.x} ${arrow.y}`} arrow={arrow} formatRate={formatRate} />
+      ))}
+      {section.basins.map((basin) => (
+        <g key={basin.id}>
+          {wrap(
+            basin,
+            <BasinPicture
+              basin={basin}
+              compact={section.compact}
+              formatAmount={formatAmount}
+              below={below(basin.id)}
+            />,
+          )}
+        </g>
+      ))}
+    </svg>
+  );
+}
+
+function BasinPicture({
+  basin,
+  compact,
+  formatAmount,
+  below,
+}: {
+  basin: DrawnBasin;
+  compact: boolean;
+  formatAmount: (amount: number) => string;
+  below: BelowBasin;
+}) {
+  const { x, width, top, floor, levelY } = basin;
+  const middle = x + width / 2;
+  const size = compact ? 15 : 22;
+  return (
+    <>
+      <rect x={x} y={top - 22} width={width} height={floor - top + 24} fill="transparent" />
+      <text x={x} y={top - 9} className="fill-ink text-body font-medium group-hover:underline">
+        {basin.label}
+      </text>
+      <rect x={x} y={top} width={width} height={floor - top} className="fill-white" />
+      <Water basin={basin} />
+      <path
+        d={`M${x} ${top}V${floor}H${x + width}V${top}`}
+        fill="none"
+        className="stroke-ink"
+        strokeWidth={1.5}
+      />
+      <WallMarks basin={basin} />
+      <text
+        x={middle}
+        y={Math.max(top + size, levelY - 7)}
+        textAnchor="middle"
+        className="fill-ink font-medium"
+        style={{ fontSize: size, paintOrder: 'stroke', stroke: 'var(--wm-white)', strokeWidth: 4 }}
+      >
+        {formatAmount(basin.level)}
+      </text>
+      {compact ? null : (
+        <g transform={`translate(${x} ${floor + 18})`}>
+          <SmallLevels levels={below.levels} width={width} height={30} />
+        </g>
+      )}
+      {below.lines.map((line, index) => (
+        <text
+          key={line}
+          x={x}
+          y={floor + (compact ? 16 : 66) + index * 16}
+          className={`text-label ${index === 0 ? 'fill-ink' : 'fill-soft'}`}
+        >
+          {line}
+        </text>
+      ))}
+    </>
+  );
+}
+
+/** Waiting above in process; one colour where they cannot be told apart. */
+function Water({ basin }: { basin: DrawnBasin }) {
+  const { x, width, floor, levelY, inProcessY } = basin;
+  return (
+    <>
+      <rect x={x} y={levelY} width={width} height={floor - levelY} className="fill-wash" />
+      {basin.inProcess === null ? null : (
+        <rect
+          x={x}
+          y={inProcessY}
+          width={width}
+          height={floor - inProcessY}
+          className="fill-deep"
+        />
+      )}
+      <line
+        x1={x}
+        x2={x + width}
+        y1={levelY}
+        y2={levelY}
+        className="stroke-water"
+        strokeWidth={2}
+      />
+    </>
+  );
+}
+
+/** On the right wall the mean as a tick and the peak as a whisker; across it the cap, as a heavy mark. */
+function WallMarks({ basin }: { basin: DrawnBasin }) {
+  const wall = basin.x + basin.width;
+  return (
+    <>
+      <path
+        d={`M${wall + 5} ${basin.meanY}V${basin.peakY}M${wall + 2} ${basin.peakY}H${wall + 8}`}
+        fill="none"
+        className="stroke-soft"
+      />
+      <line
+        x1={wall}
+        x2={wall + 9}
+        y1={basin.meanY}
+        y2={basin.meanY}
+        className="stroke-ink"
+        strokeWidth={2}
+      />
+      {basin.capY === null ? null : (
+        <line
+          x1={basin.x - 6}
+          x2={wall + 6}
+          y1={basin.capY}
+          y2={basin.capY}
+          className="stroke-ink"
+          strokeWidth={4}
+        />
+      )}
+    </>
+  );
+}
+
+const head = 7;
+
+function Arrow({ arrow, formatRate }: { arrow: DrawnArrow; formatRate: (rate: number) => string }) {
+  const length = Math.min(24, arrow.width - 12);
+  const begins = arrow.x + (arrow.width - length) / 2 + 3;
+  const y = arrow.y - 10;
+  const tip = begins + length;
+  return (
+    <g>
+      <path
+        d={`M${begins} ${y - 2.5}H${tip - head}V${y - 6}L${tip} ${y}L${tip - head} ${y + 6}V${y + 2.5}H${begins}Z`}
+        className="fill-water"
+      />
+      <text
+        x={arrow.x + arrow.width / 2 + 3}
+        y={arrow.y + 10}
+        textAnchor="middle"
+        className="fill-soft text-[11px]"
+      >
+        {formatRate(arrow.perDay)}
+      </text>
+    </g>
+  );
+}
