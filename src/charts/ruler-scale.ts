@@ -1,4 +1,5 @@
 import { localDay, stepBorders, type ZoneRules } from '../../shared/local-time.ts';
+import { monthNames } from '../lib/format.ts';
 
 /** A stretch of time laid out over a width: moments to places and back. */
 export interface RulerScale {
@@ -59,32 +60,31 @@ export function rulerTicks(scale: RulerScale, rules: ZoneRules): RulerTick[] {
   ];
 }
 
-const months = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
-const leastLabelGap = 44;
+const roomForLabel = 64;
 
 /** Names of months where they begin; the year stands with January and with the first. Crowded ones are left out. */
 export function rulerLabels(scale: RulerScale, rules: ZoneRules): { x: number; text: string }[] {
-  const firsts = stepBorders(rules, 'day', scale.from, scale.to)
+  const begun = stepBorders(rules, 'day', scale.from, scale.to)
     .filter((day) => day >= scale.from && day < scale.to)
-    .map((day) => ({ at: day, name: localDay(rules, day) }))
+    .map((day) => ({ x: placeOn(scale, day), name: localDay(rules, day) }))
     .filter(({ name }, index) => index === 0 || name.endsWith('-01'));
-  const perYear = (12 * scale.width) / Math.max(1, firsts.length);
-  const every = [1, 2, 3, 6, 12].find((step) => (perYear / 12) * step >= leastLabelGap) ?? 12;
-  const labels: { x: number; text: string }[] = [];
-  for (const [index, { at, name }] of firsts.entries()) {
-    const month = Number(name.slice(5, 7));
-    if (index > 0 && (month - 1) % every !== 0) continue;
-    const x = placeOn(scale, at);
-    const withYear = index === 0 || month === 1;
-    const room = withYear ? leastLabelGap * 1.6 : leastLabelGap;
-    if (scale.width - x < room) continue;
-    const before = labels.at(-1);
-    // The first label gives way to a month that begins just after it.
-    if (before && x - before.x < leastLabelGap * 1.6 && labels.length === 1) labels.pop();
-    labels.push({
-      x,
-      text: `${months[month - 1] ?? ''}${withYear || labels.length === 0 ? ` ${name.slice(0, 4)}` : ''}`,
-    });
-  }
-  return labels;
+  const monthWidth = scale.width / Math.max(1, begun.length);
+  const every = [1, 2, 3, 6, 12].find((step) => monthWidth * step >= roomForLabel) ?? 12;
+  const [partial, ...months] = begun.filter(
+    ({ x, name }, index) =>
+      (index === 0 || (Number(name.slice(5, 7)) - 1) % every === 0) &&
+      scale.width - x >= roomForLabel,
+  );
+  // The month in which the span begins gives way to one that begins soon after.
+  const crowded = partial && months[0] && months[0].x - partial.x < roomForLabel;
+  return [...(partial && !crowded ? [partial] : []), ...months].map(({ x, name }, index) => ({
+    x,
+    text: monthName(name, index === 0),
+  }));
+}
+
+function monthName(day: string, withYear: boolean): string {
+  const month = Number(day.slice(5, 7));
+  const name = monthNames[month - 1] ?? '';
+  return withYear || month === 1 ? `${name} ${day.slice(0, 4)}` : name;
 }

@@ -43,7 +43,20 @@ export const formatPerDay = (perHour: number | null): string =>
 export const formatShare = (share: number | null): string =>
   share === null ? unknown : `${formatNumber(share * 100, 0)} %`;
 
-const months = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
+export const monthNames = [
+  'Jan',
+  'Feb',
+  'Mar',
+  'Apr',
+  'May',
+  'Jun',
+  'Jul',
+  'Aug',
+  'Sep',
+  'Oct',
+  'Nov',
+  'Dec',
+];
 
 interface LocalParts {
   year: number;
@@ -75,7 +88,7 @@ function partsIn(at: string | number | Date, timeZone: string): LocalParts {
 export function formatDay(at: string | number | Date | null, timeZone: string): string {
   if (at === null) return unknown;
   const { year, month, day: date } = partsIn(at, timeZone);
-  return `${date} ${months[month - 1] ?? ''} ${year}`;
+  return `${date} ${monthNames[month - 1] ?? ''} ${year}`;
 }
 
 /** A moment in the site's zone: 3 Aug 2026, 14:05. */
@@ -90,7 +103,8 @@ export function formatPeriod(from: string, to: string, timeZone: string): string
   const last = partsIn(Date.parse(to) - 1, timeZone);
   const end = formatDay(Date.parse(to) - 1, timeZone);
   if (first.year !== last.year) return `${formatDay(from, timeZone)} to ${end}`;
-  if (first.month !== last.month) return `${first.day} ${months[first.month - 1] ?? ''} to ${end}`;
+  if (first.month !== last.month)
+    return `${first.day} ${monthNames[first.month - 1] ?? ''} to ${end}`;
   return first.day === last.day ? end : `${first.day} to ${end}`;
 }
 

@@ -47,12 +47,10 @@ export function FloorSection({
               levels: levels?.zones.find((zone) => zone.zoneId === id)?.wipMean ?? [],
             })}
             wrap={(basin, picture) => (
-              <Link
-                to={linkTo(basin.id)}
-                aria-label={basinInWords(rowOf(basin.id), unit)}
-                className="group no-underline"
-              >
-                {picture}
+              <Link to={linkTo(basin.id)} className="group no-underline">
+                <g role="img" aria-label={basinInWords(rowOf(basin.id), unit)}>
+                  {picture}
+                </g>
               </Link>
             )}
           />
