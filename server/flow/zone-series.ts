@@ -1,6 +1,7 @@
 import type { SeriesPoint, Step } from '../../shared/contracts/figures.ts';
 import { stepBorders } from '../../shared/local-time.ts';
 import { levelSteps } from '../methods/level-steps.ts';
+import { agesByStep, readAgeInside } from './age-inside.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { readFlowTimes } from './flow-times.ts';
 import { readLevelBlocks } from './level-blocks.ts';
@@ -42,11 +43,16 @@ export async function readZoneSeries(
     const track = tracks.get(trackKey(zone.id, measure));
     return levelSteps(borders, track?.level ?? 0, track?.blocks ?? []);
   };
-  const departures = steps('inside_jobs').reduce((sum, each) => sum + each.downs, 0);
+  const jobSteps = steps('inside_jobs');
+  const departures = jobSteps.reduce((sum, each) => sum + each.downs, 0);
   // An hour has few departures, and the bins know days only.
   const approximate = departures > exactDepartures && step !== 'hour';
   const readFlow = approximate ? readBinnedFlowTimes : readFlowTimes;
   const flow = (await readFlow(reader, [zone.id], borders)).get(zone.id) ?? [];
+  const ages = agesByStep(
+    await readAgeInside(reader, zone.id, whole.from),
+    jobSteps.map((each, index) => ({ ...each, flowSum: flow[index]?.flowSum ?? 0 })),
+  );
   const [insideSteps, processSteps] = [steps(inside), steps(inProcess)];
   const points = insideSteps.map((insideStep, index) => {
     const [start, end] = [borders[index] ?? 0, borders[index + 1] ?? 0];
@@ -59,6 +65,7 @@ export async function readZoneSeries(
       ...(known
         ? stepFigures(zone, (end - start) / 1000, insideStep, processStep, flowStep)
         : unknownFigures),
+      ageMeanSeconds: known ? (ages[index] ?? null) : null,
     };
   });
   const partial = zone.dataUntil === null || whole.to > zone.dataUntil;

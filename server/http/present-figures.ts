@@ -1,5 +1,11 @@
-import type { FloorRow, InsideStay, Summary } from '../../shared/contracts/figures.ts';
+import type {
+  FloorRow,
+  InsideStay,
+  Summary,
+  DepartedStay,
+} from '../../shared/contracts/figures.ts';
 import type { Zone } from '../../shared/contracts/zones.ts';
+import type { DepartureRow } from '../flow/departures-within.ts';
 import type { InsideRow } from '../flow/inside-at.ts';
 import type { FloorZone } from '../flow/site-floor.ts';
 import type { FigureZone, Period } from '../flow/zone-reader.ts';
@@ -81,6 +87,20 @@ export function presentInside(row: InsideRow): InsideStay {
     queueSeconds: row.queue_seconds,
     processSeconds: row.process_seconds,
     ageSeconds: row.age_seconds,
+    finishInferred: row.finish_inferred,
+    record: { uploadId: row.upload_id, line: row.line },
+  };
+}
+
+export function presentDeparture(row: DepartureRow): DepartedStay {
+  return {
+    jobKey: row.job_key,
+    entered: row.entered.toISOString(),
+    started: isoOrNull(row.started),
+    left: row.left_at.toISOString(),
+    queueSeconds: row.queue_seconds,
+    processSeconds: row.process_seconds,
+    flowSeconds: row.flow_seconds,
     finishInferred: row.finish_inferred,
     record: { uploadId: row.upload_id, line: row.line },
   };

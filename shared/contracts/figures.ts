@@ -47,6 +47,8 @@ export const seriesPointSchema = z.object({
   start: instantSchema,
   end: instantSchema,
   ...figureFields,
+  /** Mean age of the jobs inside just before the step's end. */
+  ageMeanSeconds: number,
 });
 export type SeriesPoint = z.infer<typeof seriesPointSchema>;
 
@@ -173,6 +175,24 @@ export const readInside = contract({
     stays: z.array(insideStaySchema),
     nextCursor: z.string().nullable(),
   }),
+});
+
+export const departedStaySchema = insideStaySchema
+  .omit({ ageSeconds: true })
+  .extend({ left: instantSchema, flowSeconds: z.number() });
+export type DepartedStay = z.infer<typeof departedStaySchema>;
+
+export const readDepartures = contract({
+  name: 'readDepartures',
+  method: 'get',
+  path: '/api/sites/:siteId/zones/:zoneId/departures',
+  summary: 'Who left a zone within the period, latest first',
+  action: 'figures.read',
+  params: zoneParams,
+  query: z
+    .object({ ...periodFields, limit: z.coerce.number().int().min(1).max(1000).default(100) })
+    .refine(inOrder, orderMessage),
+  response: z.object({ zoneId: z.int(), stays: z.array(departedStaySchema) }),
 });
 
 /** One row of the Floor: a zone with its figures over the period. */

@@ -5,14 +5,20 @@ import { framed, type Frame } from './frame.ts';
 const day = 86_400;
 const hour = 3600;
 
-/** The unit in which flow times are best read, by the longest of them. */
+/** The unit in which flow times and ages are best read, by the longest of them. */
 export function flowUnit(points: readonly DrawnPoint[]): { name: string; seconds: number } {
-  const longest = Math.max(0, ...points.map((point) => point.flowP85Seconds ?? 0));
+  const longest = Math.max(
+    0,
+    ...points.map((point) => Math.max(point.flowP85Seconds ?? 0, point.ageMeanSeconds ?? 0)),
+  );
   if (longest > 3 * day) return { name: 'days', seconds: day };
   return longest > 2 * hour ? { name: 'hours', seconds: hour } : { name: 'minutes', seconds: 60 };
 }
 
-/** Median of the flow times of those that left, with the band up to P85. Steps without departures are gaps. */
+/**
+ * Median of the flow times of those that left, with the band up to P85, and as dots the mean age of those
+ * inside at the end of each step. Steps without departures are gaps.
+ */
 export function flowTimeChart(
   frame: Frame,
   points: readonly DrawnPoint[],
@@ -42,7 +48,12 @@ export function flowTimeChart(
         y: (point: DrawnPoint) => inUnit(point.flowP50Seconds),
         stroke: 'var(--wm-ink)',
         strokeWidth: 1.5,
-        marker: points.length < 40 ? 'dot' : 'none',
+      }),
+      Plot.dot(points, {
+        x: 'end',
+        y: (point: DrawnPoint) => inUnit(point.ageMeanSeconds),
+        r: points.length < 120 ? 2 : 1,
+        fill: 'var(--wm-water)',
       }),
       Plot.ruleY([0], { stroke: 'var(--wm-ink)' }),
     ],

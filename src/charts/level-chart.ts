@@ -2,11 +2,15 @@ import * as Plot from '@observablehq/plot';
 import type { DrawnPoint } from './figure-point.ts';
 import { framed, type Frame } from './frame.ts';
 
-/** Mean level by step: waiting above in process, the peak as mist. Unknown steps are gaps. */
+/**
+ * Mean level by step: waiting above in process, the peak as mist, the cap as a heavy mark. Unknown steps are
+ * gaps.
+ */
 export function levelChart(
   frame: Frame,
   points: readonly DrawnPoint[],
   ticks: readonly Date[] | null,
+  cap: number | null = null,
 ): Plot.PlotOptions {
   const known = points.filter((point) => point.wipMean !== null);
   const line = 'wipMean';
@@ -49,6 +53,19 @@ export function levelChart(
         strokeWidth: 1.5,
       }),
       Plot.ruleY([0], { stroke: 'var(--wm-ink)' }),
+      ...(cap === null
+        ? []
+        : [
+            Plot.ruleY([cap], { stroke: 'var(--wm-ink)', strokeWidth: 3 }),
+            Plot.text([cap], {
+              text: (limit: number) => `cap ${limit}`,
+              y: (limit: number) => limit,
+              frameAnchor: 'right',
+              textAnchor: 'end',
+              dy: -9,
+              fill: 'var(--wm-ink)',
+            }),
+          ]),
     ],
     {},
   );

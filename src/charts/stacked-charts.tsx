@@ -19,12 +19,15 @@ export function StackedCharts({
   timeZone,
   unit,
   step,
+  cap,
   onPick,
 }: {
   points: readonly SeriesPoint[];
   timeZone: string;
   unit: string;
   step: string;
+  /** A cap in the unit shown, where there is one. */
+  cap: number | null;
   onPick: (at: Date) => void;
 }) {
   const [holder, width] = useWidth<HTMLDivElement>();
@@ -67,7 +70,7 @@ export function StackedCharts({
         }}
         onKeyDown={steer}
       >
-        {frame ? <Charts frame={frame} steps={steps} unit={unit} step={step} /> : null}
+        {frame ? <Charts frame={frame} steps={steps} unit={unit} step={step} cap={cap} /> : null}
         {frame && cursor ? (
           <svg
             className="pointer-events-none absolute inset-0"
@@ -100,11 +103,13 @@ function Charts({
   steps,
   unit,
   step,
+  cap,
 }: {
   frame: Frame;
   steps: readonly DrawnPoint[];
   unit: string;
   step: string;
+  cap: number | null;
 }) {
   const charts = useMemo(() => {
     const ticks = timeTicks(
@@ -115,7 +120,7 @@ function Charts({
       {
         title: 'WIP level',
         about: `${unit}, waiting above in process, peak behind`,
-        options: levelChart(frame, steps, null),
+        options: levelChart(frame, steps, null, cap),
       },
       {
         title: 'Arrivals and departures',
@@ -124,7 +129,7 @@ function Charts({
       },
       {
         title: 'Flow time',
-        about: `${flowUnit(steps).name}, median and P85 of those that left`,
+        about: `${flowUnit(steps).name}, median and P85 of those that left; dots: mean age of those inside`,
         options: flowTimeChart(frame, steps, null),
       },
       {
@@ -133,7 +138,7 @@ function Charts({
         options: littleChart(frame, steps, ticks),
       },
     ];
-  }, [frame, steps, unit, step]);
+  }, [frame, steps, unit, step, cap]);
   return charts.map(({ title, about, options }) => (
     <section key={title} className="mb-2">
       <h2 className="text-body">
@@ -161,7 +166,8 @@ function CursorFoot({
           <strong>{formatMoment(point.start, timeZone)}</strong>: mean{' '}
           {formatNumber(point.wipMean, 1)} {unit}, peak {formatCount(point.wipPeak)},{' '}
           {formatCount(point.arrivals)} in, {formatCount(point.departures)} out, flow time median{' '}
-          {formatDuration(point.flowP50Seconds)}, P85 {formatDuration(point.flowP85Seconds)}
+          {formatDuration(point.flowP50Seconds)}, P85 {formatDuration(point.flowP85Seconds)}, age of
+          those inside {formatDuration(point.ageMeanSeconds)}
         </>
       ) : (
         <span className="text-soft">

@@ -8,9 +8,10 @@ import { paths } from '../app/paths.ts';
 import { StackedCharts } from '../charts/stacked-charts.tsx';
 import { usePeriod, type Period } from '../features/period/use-period.ts';
 import { BooksPanel } from '../features/zones/books-panel.tsx';
+import { DepartedList } from '../features/zones/departed-list.tsx';
 import { InsideList } from '../features/zones/inside-list.tsx';
 import { LittlesPanel } from '../features/zones/littles-panel.tsx';
-import { PeriodPanel } from '../features/zones/period-panel.tsx';
+import { fewDepartures, PeriodPanel } from '../features/zones/period-panel.tsx';
 import { seriesQuery, summaryQuery, zoneQuery } from '../features/zones/queries.ts';
 import { SeriesTable } from '../features/zones/series-table.tsx';
 import { zoneSentence } from '../features/zones/zone-sentence.ts';
@@ -67,6 +68,7 @@ export function Component() {
                 timeZone={site.timeZone}
                 unit={unit}
                 step={step}
+                cap={zone.cap?.unit === unit ? zone.cap.limit : null}
                 onPick={setAt}
               />
               <details>
@@ -93,12 +95,23 @@ export function Component() {
             <LittlesPanel summary={summary.data} timeZone={site.timeZone} />
             <BooksPanel summary={summary.data} />
             <PeriodPanel summary={summary.data} />
+            {isFew(summary.data) ? (
+              <DepartedList
+                siteId={site.id}
+                zoneId={zoneId}
+                asked={asked}
+                jobLink={(jobKey) => paths.job(site.id, jobKey) + search}
+              />
+            ) : null}
           </aside>
         ) : null}
       </div>
     </div>
   );
 }
+
+const isFew = ({ departures }: Summary) =>
+  departures !== null && departures > 0 && departures < fewDepartures;
 
 /** The step in the address; by the length of the period where it names none. */
 function useStep(period: Period): [Step, (step: Step) => void] {

@@ -1,4 +1,5 @@
 import {
+  readDepartures,
   readFloor,
   readFloorLevels,
   readInside,
@@ -8,6 +9,7 @@ import {
 } from '../../../shared/contracts/figures.ts';
 import { withTenant } from '../../db/tenant.ts';
 import { ApiError, invalidInput, notFound } from '../../errors.ts';
+import { readDeparturesWithin } from '../../flow/departures-within.ts';
 import { readerOfSite, readFigureZones } from '../../flow/figure-zones.ts';
 import { readFloorLevels as readLevelsOfFloor } from '../../flow/floor-levels.ts';
 import { readInsideAt } from '../../flow/inside-at.ts';
@@ -23,7 +25,12 @@ import { findSite } from '../../sites/present-site.ts';
 import { readZones } from '../../sites/read-zones.ts';
 import type { Api, Call } from '../api.ts';
 import { createFigureCache } from '../figure-cache.ts';
-import { presentFloorRow, presentInside, presentSummary } from '../present-figures.ts';
+import {
+  presentDeparture,
+  presentFloorRow,
+  presentInside,
+  presentSummary,
+} from '../present-figures.ts';
 import { placeOfCursor, cursorOfPlace } from '../inside-cursor.ts';
 
 /** At most so many points a call; a longer period asks for a longer step. */
@@ -120,6 +127,15 @@ export function registerFigures({ route, deps }: Api): void {
         };
       }),
     ),
+  );
+
+  route(readDepartures, (call) =>
+    inZone(call, call.params.zoneId, async (reader, zone) => {
+      refuseWorkingHours(call.query.hours);
+      const period = periodOf(call.query);
+      const rows = await readDeparturesWithin(reader, zone.id, period, call.query.limit);
+      return { zoneId: zone.id, stays: rows.map(presentDeparture) };
+    }),
   );
 
   route(readFloor, (call) =>

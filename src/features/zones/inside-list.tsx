@@ -1,8 +1,9 @@
-import { useQuery } from '@tanstack/react-query';
+import { useInfiniteQuery } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
 import type { InsideStay } from '../../../shared/contracts/figures.ts';
 import { ApiError } from '../../api/api-error.ts';
 import { formatCount, formatDuration, formatMoment } from '../../lib/format.ts';
+import { Button } from '../../ui/button.tsx';
 import { DataTable, type Column } from '../../ui/data-table.tsx';
 import { PanelHeading } from '../../ui/heading.tsx';
 import { Loading } from '../../ui/loading.tsx';
@@ -25,7 +26,9 @@ export function InsideList({
   jobLink: (jobKey: string) => string;
   rowLink: (uploadId: number, line: number) => string;
 }) {
-  const inside = useQuery(insideQuery(siteId, zoneId, at));
+  const inside = useInfiniteQuery(insideQuery(siteId, zoneId, at));
+  const stays = inside.data?.pages.flatMap((page) => page.stays) ?? [];
+  const total = inside.data?.pages[0]?.total;
   const columns: Column<InsideStay>[] = [
     {
       id: 'job',
@@ -64,22 +67,28 @@ export function InsideList({
     <section className="flex flex-col gap-2" aria-live="polite">
       <PanelHeading>
         Inside on {formatMoment(at, timeZone)}
-        {inside.data ? `: ${formatCount(inside.data.total)}, longest first` : ''}
+        {total === undefined ? '' : `: ${formatCount(total)}, longest first`}
       </PanelHeading>
       {inside.error instanceof ApiError ? <ProblemNotice problem={inside.error.problem} /> : null}
       {inside.data ? (
-        inside.data.stays.length > 0 ? (
+        stays.length > 0 ? (
           <>
             <DataTable
               label="Inside then, longest first"
               columns={columns}
-              rows={inside.data.stays}
+              rows={stays}
               fileName="inside.csv"
             />
-            {inside.data.nextCursor ? (
-              <p className="text-soft">
-                The {formatCount(inside.data.stays.length)} longest are listed.
-              </p>
+            {inside.hasNextPage ? (
+              <div className="no-print flex items-center gap-3 text-soft">
+                The {formatCount(stays.length)} longest are listed.
+                <Button
+                  isDisabled={inside.isFetchingNextPage}
+                  onPress={() => void inside.fetchNextPage()}
+                >
+                  List more
+                </Button>
+              </div>
             ) : null}
           </>
         ) : (
