@@ -29,7 +29,7 @@ const settings = {
   DATABASE_URL: postgresUrl.optional(),
   DATABASE_APP_URL: postgresUrl.optional(),
   WEIRMARK_DATA_DIR: z.string().min(1).optional(),
-  WEIRMARK_DEMO: flag(true),
+  WEIRMARK_DEMO: z.enum(['0', '1', 'empty'], 'Use 0, 1 or empty.').default('1'),
   WEIRMARK_UPLOAD_LIMIT_MB: z.coerce
     .number('Use a number of megabytes.')
     .int('Use whole megabytes.')
@@ -62,7 +62,8 @@ export const settingPurposes: Record<keyof typeof settings, string> = {
   DATABASE_APP_URL:
     'the role for requests and jobs, where the owner may not create roles; it must be granted weirmark_app',
   WEIRMARK_DATA_DIR: 'where the local PostgreSQL keeps its data',
-  WEIRMARK_DEMO: '1 makes the demo organisations and accounts in an empty database, 0 starts empty',
+  WEIRMARK_DEMO:
+    '1 makes the demo with its plant in an empty database, empty the same without data, 0 nothing',
   WEIRMARK_UPLOAD_LIMIT_MB: 'largest file that is taken in, in megabytes',
   WEIRMARK_ORIGIN:
     'origin under which people reach the server, where it differs from the address it listens on',

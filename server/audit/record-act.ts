@@ -1,4 +1,4 @@
-import type { Actor } from '../auth/actor.ts';
+import type { Doer } from '../auth/actor.ts';
 import type { Transaction } from '../db/client.ts';
 import { auditEntry } from '../db/schema/audit.ts';
 
@@ -8,7 +8,7 @@ export interface Act {
   /** Left out where the act concerns the organisation as a whole. */
   siteId?: number;
   at: Date;
-  actor: Actor;
+  actor: Doer;
   /** What was done, in the words of shared/permissions. */
   action: string;
   subjectKind: string;

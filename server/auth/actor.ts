@@ -23,6 +23,12 @@ export type Actor =
   | { kind: 'machine'; accessKeyId: number; organisationId: number; siteId: number }
   | { kind: 'stranger' };
 
+/** Who did something, as far as the audit trail tells it. */
+export type Doer =
+  | { kind: 'person'; personId: number }
+  | { kind: 'machine'; accessKeyId: number }
+  | { kind: 'stranger' };
+
 /** The organisation of the site in the path, where there is one, and the version of its figures. */
 export interface SiteOfRequest {
   organisationId: number;

@@ -5,21 +5,18 @@ import { recordAct } from '../audit/record-act.ts';
 import { createSiteIn } from '../sites/create-site.ts';
 import { createArea } from '../sites/write-areas.ts';
 import { fellgate, lowmoor, makeDemoAccounts } from './accounts.ts';
+import { areas } from './plant/plan.ts';
 
-/** The areas of the Main depot, in order of flow. */
-const depotAreas = [
-  'Receiving',
-  'Strip-down',
-  'Cleaning',
-  'Repair bench',
-  'Burn-in',
-  'Calibration',
-  'Final check',
-  'Dispatch',
-];
+/** The demo's site with the plant's data. */
+export const mainDepot = 'Main depot';
 
 const sites = [
-  { firm: lowmoor, name: 'Main depot', timeZone: 'Europe/Dublin', areas: depotAreas },
+  {
+    firm: lowmoor,
+    name: mainDepot,
+    timeZone: 'Europe/Dublin',
+    areas: areas.map((area) => area.name),
+  },
   { firm: fellgate, name: 'Works', timeZone: 'Europe/London', areas: [] },
 ];
 

@@ -1,8 +1,9 @@
+import type { Readable } from 'node:stream';
 import type { Request } from 'express';
 import { and, eq } from 'drizzle-orm';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import { recordAct } from '../audit/record-act.ts';
-import type { Actor } from '../auth/actor.ts';
+import type { Doer } from '../auth/actor.ts';
 import type { Clock } from '../clock.ts';
 import type { Database } from '../db/client.ts';
 import { upload } from '../db/schema/uploads.ts';
@@ -11,14 +12,17 @@ import type { UploadKey } from './original.ts';
 import { readPlanPart } from './plan-part.ts';
 import { receiveParts, type ReceivedParts } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
-import { discardReceipt } from './store-original.ts';
+import { discardReceipt, storeOriginal } from './store-original.ts';
 
 export interface ReceiptContext {
   db: Database;
   clock: Clock;
-  actor: Actor;
+  actor: Doer;
   requestId?: string;
-  /** The largest file that is taken, in MiB. */
+}
+
+/** Of a request, also how large a file may be, in MiB. */
+export interface RequestContext extends ReceiptContext {
   limitMb: number;
 }
 
@@ -31,16 +35,10 @@ export interface ReceiptContext {
 export async function receiveUpload(
   request: Request,
   site: SiteKey,
-  context: ReceiptContext,
+  context: RequestContext,
 ): Promise<number> {
-  const { db, clock, actor, limitMb } = context;
-  const receipt = {
-    ...site,
-    receivedAt: clock.now(),
-    receivedBy: actor.kind === 'person' ? actor.personId : null,
-    receivedKey: actor.kind === 'machine' ? actor.accessKeyId : null,
-  };
-  const received = await receiveParts(request, db, receipt, limitMb);
+  const { db, limitMb } = context;
+  const received = await receiveParts(request, db, receiptOf(site, context), limitMb);
   const key = { ...site, uploadId: received.stored.uploadId };
   try {
     const plan = await readPlanPart(db, site, received.planPart);
@@ -52,9 +50,33 @@ export async function receiveUpload(
   return key.uploadId;
 }
 
+/**
+ * Receives a file that lies on the server's own disk, to be read by the plan that is detected.
+ *
+ * @returns the upload's id
+ */
+export async function receiveFile(
+  file: Readable,
+  fileName: string,
+  site: SiteKey,
+  context: ReceiptContext,
+): Promise<number> {
+  const receipt = { ...receiptOf(site, context), fileName };
+  const stored = await storeOriginal(context.db, receipt, file);
+  await accept({ ...site, uploadId: stored.uploadId }, { stored, fileName }, null, context);
+  return stored.uploadId;
+}
+
+const receiptOf = (site: SiteKey, { clock, actor }: ReceiptContext) => ({
+  ...site,
+  receivedAt: clock.now(),
+  receivedBy: actor.kind === 'person' ? actor.personId : null,
+  receivedKey: actor.kind === 'machine' ? actor.accessKeyId : null,
+});
+
 async function accept(
   key: UploadKey,
-  { stored, fileName }: ReceivedParts,
+  { stored, fileName }: Pick<ReceivedParts, 'stored' | 'fileName'>,
   planGiven: ColumnPlan | null,
   { db, clock, actor, requestId }: ReceiptContext,
 ): Promise<void> {

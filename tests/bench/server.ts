@@ -25,6 +25,7 @@ export class BenchServer {
           ...process.env,
           DATABASE_URL: databaseUrl,
           PORT: '0',
+          WEIRMARK_DEMO: 'empty',
           LOG_LEVEL: 'warn',
           WEIRMARK_UPLOAD_LIMIT_MB: '8192',
         },

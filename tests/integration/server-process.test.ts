@@ -34,6 +34,7 @@ function run(env: Record<string, string>) {
       ...process.env,
       DATABASE_URL: database.migratingUrl,
       PORT: '0',
+      WEIRMARK_DEMO: 'empty',
       LOG_LEVEL: 'fatal',
       ...env,
     },

@@ -26,6 +26,7 @@ export async function startServer(dataFolder: string, port = 0): Promise<ServerP
       HOST: '127.0.0.1',
       PORT: String(port),
       WEIRMARK_DATA_DIR: dataFolder,
+      WEIRMARK_DEMO: 'empty',
       LOG_LEVEL: 'silent',
     },
     stdio: ['ignore', 'pipe', 'pipe'],

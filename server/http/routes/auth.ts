@@ -41,7 +41,7 @@ export function registerAuth({ route, deps }: Api): void {
   });
 
   route(readSession, async ({ actor }) => {
-    const accounts = deps.env.WEIRMARK_DEMO ? await demoAccounts(deps.db) : [];
+    const accounts = deps.env.WEIRMARK_DEMO !== '0' ? await demoAccounts(deps.db) : [];
     return {
       session:
         actor.kind === 'person'
