@@ -10,6 +10,7 @@ import { securityHeaders } from './http/middleware/security-headers.ts';
 import { registerAccessKeys } from './http/routes/access-keys.ts';
 import { registerAuth } from './http/routes/auth.ts';
 import { registerFigures } from './http/routes/figures.ts';
+import { registerDemo } from './http/routes/demo.ts';
 import { registerJobs } from './http/routes/jobs.ts';
 import { registerServer } from './http/routes/server.ts';
 import { registerSites } from './http/routes/sites.ts';
@@ -55,6 +56,7 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   registerZones(api);
   registerFigures(api);
   registerJobs(api);
+  registerDemo(api);
   registerAccessKeys(api);
   app.use(router);
   app.use('/api', unknownCall);

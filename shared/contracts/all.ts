@@ -1,6 +1,7 @@
 import * as accessKeys from './access-keys.ts';
 import * as auth from './auth.ts';
 import type { Contract } from './contract.ts';
+import * as demo from './demo.ts';
 import * as figures from './figures.ts';
 import * as jobs from './jobs.ts';
 import * as server from './server.ts';
@@ -16,6 +17,7 @@ export const contracts: readonly Contract[] = [
   zones,
   figures,
   jobs,
+  demo,
   accessKeys,
   server,
 ].flatMap((module) => Object.values(module).filter(isContract));

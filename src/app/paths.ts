@@ -10,5 +10,6 @@ export const paths = {
   job: (siteId: number, jobKey: string) => `/sites/${siteId}/jobs/${encodeURIComponent(jobKey)}`,
   row: (siteId: number, uploadId: number, line: number) =>
     `/sites/${siteId}/uploads/${uploadId}/rows/${line}`,
+  planted: (siteId: number) => `/sites/${siteId}/planted`,
   accessKeys: (siteId: number) => `/sites/${siteId}/access-keys`,
 } as const;

@@ -55,6 +55,7 @@ export function createRouter(client: QueryClient) {
             { path: 'zones/:zoneId', lazy: () => import('../pages/zone.tsx') },
             { path: 'jobs/:jobKey', lazy: () => import('../pages/job.tsx') },
             { path: 'uploads/:uploadId/rows/:line', lazy: () => import('../pages/row.tsx') },
+            { path: 'planted', lazy: () => import('../pages/planted.tsx') },
             { path: 'access-keys', lazy: () => import('../pages/access-keys.tsx') },
             { path: '*', element: <NotFoundPage /> },
           ],

@@ -1,6 +1,7 @@
-import { useQueryClient } from '@tanstack/react-query';
+import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { Suspense, useEffect, type ReactNode } from 'react';
 import { Link, NavLink, Outlet, useParams } from 'react-router-dom';
+import { plantedQuery } from '../features/demo/queries.ts';
 import { TimeRuler } from '../features/period/time-ruler.tsx';
 import { UnitSwitch } from '../features/period/unit-switch.tsx';
 import { usePeriod } from '../features/period/use-period.ts';
@@ -115,10 +116,12 @@ function OfflineNotice() {
 }
 
 function Navigation({ site, search }: { site: Site; search: string }) {
+  const planted = useQuery(plantedQuery(site.id)).data?.planted;
   const mayKeys = useMay('access-key.read', site.organisationId);
   const links = [
     { to: paths.floor(site.id), label: 'Floor' },
     { to: paths.intake(site.id), label: 'Intake' },
+    ...(planted ? [{ to: paths.planted(site.id), label: 'What is planted' }] : []),
     ...(mayKeys ? [{ to: paths.accessKeys(site.id), label: 'Access keys' }] : []),
   ];
   return (

@@ -66,6 +66,8 @@ function BasinPicture({
   const { x, width, top, floor, levelY } = basin;
   const middle = x + width / 2;
   const size = compact ? 15 : 22;
+  // Where the water stands too high for the number to stand on it, it stands in it.
+  const onWater = levelY - 7 - size > top;
   return (
     <>
       <rect x={x} y={top - 22} width={width} height={floor - top + 24} fill="transparent" />
@@ -83,10 +85,10 @@ function BasinPicture({
       <WallMarks basin={basin} />
       <text
         x={middle}
-        y={Math.max(top + size, levelY - 7)}
+        y={onWater ? levelY - 7 : levelY + size + 2}
         textAnchor="middle"
         className="fill-ink font-medium"
-        style={{ fontSize: size, paintOrder: 'stroke', stroke: 'var(--wm-white)', strokeWidth: 4 }}
+        style={{ fontSize: size }}
       >
         {formatAmount(basin.level)}
       </text>

@@ -44,7 +44,7 @@ export function Component() {
       {floor.data ? (
         <>
           <Sentence>
-            {floorSentence(floor.data.rows, unit).map((clause) =>
+            {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) =>
               clause.zoneId === undefined ? (
                 <span key={clause.text}>{clause.text}</span>
               ) : (

@@ -38,8 +38,12 @@ const row = (kind: 'area' | 'site', name: string, given: Partial<FloorRow> = {})
   warmingUp: false,
   ...given,
 });
+const end = '2026-11-30T00:00:00.000Z';
+const until = (dataUntil: string): Partial<FloorRow> => ({
+  zone: { ...row('site', 'Depot').zone, dataUntil },
+});
 const words = (rows: FloorRow[], unit: 'jobs' | 'units' = 'jobs') =>
-  floorSentence(rows, unit)
+  floorSentence(rows, unit, end)
     .map((clause) => clause.text)
     .join('');
 
@@ -60,7 +64,7 @@ describe('the sentence of the Floor', () => {
       row('area', 'Bench', { wipEnd: 40, arrivals: 70, departures: 40 }),
       row('site', 'Depot', { wipEnd: 60 }),
     ];
-    const clauses = floorSentence(rows, 'jobs');
+    const clauses = floorSentence(rows, 'jobs', end);
     expect(clauses[0]).toEqual({
       text: 'Bench holds 40 jobs, 30 more than at the start: 70 came and 40 left. ',
       zoneId: 5,
@@ -87,10 +91,38 @@ describe('the sentence of the Floor', () => {
   it('says what to mind about the data', () => {
     const text = words([
       row('area', 'Oven', { warmingUp: true }),
-      row('site', 'Depot', { partial: true, flowP50Seconds: null }),
+      row('site', 'Depot', { ...until('2026-11-27T12:00:00.000Z'), flowP50Seconds: null }),
     ]);
     expect(text).toContain('none has left in this period');
     expect(text).toContain('The period reaches past what the data speak for.');
     expect(text).toContain('At its start 1 area still fills up from an empty log.');
+  });
+
+  it('keeps silent about a last day that is not whole', () => {
+    const text = words([
+      row('area', 'Oven'),
+      row('site', 'Depot', until('2026-11-29T21:53:00.000Z')),
+    ]);
+    expect(text).not.toContain('reaches past');
+  });
+
+  it('tells several truths at once, the worst first', () => {
+    const books = { wipStart: 1, arrivals: 1, departures: 1, wipEnd: 2, balance: false };
+    const text = words([
+      row('area', 'Saw', { books }),
+      row('area', 'Bench', { wipEnd: 40, arrivals: 70, departures: 40 }),
+      row('area', 'Oven', { warmingUp: true }),
+      row('area', 'Lathe', { warmingUp: true }),
+      row('site', 'Depot', { ...until('2026-11-20T00:00:00.000Z'), wipEnd: 1234 }),
+    ]);
+    const places = [
+      'The books of Saw do not balance',
+      'Bench holds 40 jobs, 30 more than at the start',
+      'On the whole site are 1,234 jobs',
+      'The period reaches past what the data speak for.',
+      'At its start 2 areas still fill up from an empty log.',
+    ].map((clause) => text.indexOf(clause));
+    expect(places.every((place) => place >= 0)).toBe(true);
+    expect(places).toEqual([...places].sort((one, other) => one - other));
   });
 });

@@ -16,11 +16,20 @@ const growth = (row: FloorRow) => (row.wipEnd ?? 0) - (row.wipStart ?? 0);
  * What the Floor's figures say, worst first: books that do not balance, areas that have grown, the site
  * as a whole, and what to mind about the data.
  */
-export function floorSentence(rows: readonly FloorRow[], unit: 'jobs' | 'units'): Clause[] {
+export function floorSentence(
+  rows: readonly FloorRow[],
+  unit: 'jobs' | 'units',
+  periodEnd: string,
+): Clause[] {
   const site = rows.find((row) => row.zone.kind === 'site');
   const areas = rows.filter((row) => row.zone.kind === 'area' && row.wipMean !== null);
   if (!site || site.wipMean === null || areas.length === 0) return [];
-  return [...unbalanced(rows), ...grown(areas, unit), ...whole(site, unit), ...mind(rows)];
+  return [
+    ...unbalanced(rows),
+    ...grown(areas, unit),
+    ...whole(site, unit),
+    ...mind(site, rows, periodEnd),
+  ];
 }
 
 function unbalanced(rows: readonly FloorRow[]): Clause[] {
@@ -57,8 +66,12 @@ function whole(site: FloorRow, unit: 'jobs' | 'units'): Clause[] {
   ];
 }
 
-function mind(rows: readonly FloorRow[]): Clause[] {
-  const partial = rows.some((row) => row.partial && row.zone.kind === 'site');
+/** The last day need not be whole: only more than that is worth telling. */
+const partialWorthTelling = 86_400_000;
+
+function mind(site: FloorRow, rows: readonly FloorRow[], periodEnd: string): Clause[] {
+  const until = site.zone.dataUntil;
+  const partial = until !== null && Date.parse(periodEnd) - Date.parse(until) > partialWorthTelling;
   const warming = rows.filter((row) => row.warmingUp && row.zone.kind === 'area').length;
   return [
     ...(partial ? [{ text: 'The period reaches past what the data speak for. ' }] : []),

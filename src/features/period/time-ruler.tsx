@@ -48,7 +48,6 @@ export function TimeRuler({ site }: { site: Site }) {
         <div ref={holder} className="relative" style={{ height }}>
           {width > 0 ? (
             <>
-              <LoadedSpan site={site} scale={scale} />
               <RulerBracket
                 scale={scale}
                 days={days}
@@ -62,6 +61,7 @@ export function TimeRuler({ site }: { site: Site }) {
                   )
                 }
               />
+              <LoadedSpan site={site} scale={scale} />
             </>
           ) : null}
         </div>
@@ -95,12 +95,12 @@ function LoadedSpan({ site, scale }: { site: Site; scale: RulerScale }) {
     <svg
       width={scale.width}
       height={height}
-      className="absolute inset-0"
+      className="pointer-events-none absolute inset-0"
       role="img"
       aria-label={spanInWords(site, span)}
     >
       {labels.map(({ x, text }) => (
-        <text key={text} x={x + 3} y={14} className="fill-soft text-[11px]">
+        <text key={text} x={x + 5} y={16} className="fill-soft text-[11px]">
           {text}
         </text>
       ))}
