@@ -1,11 +1,12 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { Link, useParams } from 'react-router-dom';
-import type { JobRecord } from '../../shared/contracts/jobs.ts';
 import { paths } from '../app/paths.ts';
+import { JobLanes } from '../features/jobs/job-lanes.tsx';
 import { JobRecords } from '../features/jobs/job-records.tsx';
+import { jobSentence } from '../features/jobs/job-sentence.ts';
 import { jobQuery } from '../features/jobs/queries.ts';
 import { usePeriod } from '../features/period/use-period.ts';
-import { formatDuration, formatMoment, plural } from '../lib/format.ts';
+import { formatDuration, formatMoment } from '../lib/format.ts';
 import { Breadcrumbs } from '../ui/breadcrumbs.tsx';
 import { PageHeading, PanelHeading, Sentence } from '../ui/heading.tsx';
 import { useSiteOfPage, useTitle } from './use-page.ts';
@@ -21,8 +22,16 @@ export function Component() {
       <Breadcrumbs links={[{ to: paths.floor(site.id) + search, label: 'Floor' }]} here={jobKey} />
       <PageHeading>{jobKey}</PageHeading>
       <Sentence>{jobSentence(job.records, site.timeZone)}</Sentence>
+      <section className="flex flex-col gap-3">
+        <PanelHeading>Its way</PanelHeading>
+        <JobLanes
+          records={job.records}
+          timeZone={site.timeZone}
+          until={Date.parse(site.dataUntil ?? '')}
+        />
+      </section>
       <section>
-        <PanelHeading>Its way, in order</PanelHeading>
+        <PanelHeading>Its records, in order</PanelHeading>
         <JobRecords
           records={job.records}
           timeZone={site.timeZone}
@@ -49,13 +58,4 @@ export function Component() {
       </section>
     </div>
   );
-}
-
-function jobSentence(records: readonly JobRecord[], timeZone: string): string {
-  const open = records.find((record) => record.left === null && record.entered !== null);
-  const areas = new Set(records.map((record) => record.areaId)).size;
-  const where = open
-    ? `It is in ${open.areaName} since ${formatMoment(open.entered, timeZone)}.`
-    : `It was last seen ${formatMoment(records.at(-1)?.left ?? null, timeZone)}.`;
-  return `${plural(records.length, 'record')} in ${plural(areas, 'area')}. ${where}`;
 }

@@ -1,9 +1,23 @@
 import { Link } from 'react-router-dom';
 import type { JobRecord } from '../../../shared/contracts/jobs.ts';
-import { formatCount, formatDuration, formatMoment } from '../../lib/format.ts';
-import { FigureList } from '../../ui/figure-list.tsx';
+import { formatCount, formatDay, formatDuration, formatMoment } from '../../lib/format.ts';
+import { recordAnchor } from './record-in-words.ts';
 
-/** The records of a job in order, each with what told of it. */
+const headers = [
+  ['area', false],
+  ['entered', false],
+  ['started', false],
+  ['left', false],
+  ['waiting', true],
+  ['in process', true],
+  ['flow time', true],
+  ['also told', false],
+  ['told by', false],
+] as const;
+
+type RowLink = (uploadId: number, line: number) => string;
+
+/** The records of a job in order: the table behind the lanes, each record with the rows that told of it. */
 export function JobRecords({
   records,
   timeZone,
@@ -11,61 +25,101 @@ export function JobRecords({
 }: {
   records: readonly JobRecord[];
   timeZone: string;
-  rowLink: (uploadId: number, line: number) => string;
+  rowLink: RowLink;
 }) {
   return (
-    <ol className="flex flex-col">
-      {records.map((record) => (
-        <li
-          key={`${record.record.uploadId} ${record.record.line} ${record.areaId}`}
-          className="grid gap-x-8 gap-y-2 border-b border-hair py-4 md:grid-cols-3"
-        >
-          <div>
-            <h3 className="font-bold">{record.areaName}</h3>
-            {record.pass > 1 ? <p className="text-soft">pass {record.pass}</p> : null}
-            <FigureList
-              rows={[
-                ['waiting', formatDuration(record.queueSeconds)],
-                ['in process', formatDuration(record.processSeconds)],
-                ['flow time', formatDuration(record.flowSeconds)],
-                ...(record.quantity === null
-                  ? []
-                  : [['quantity', formatCount(record.quantity)] as const]),
-                ...Object.entries(record.told),
-              ]}
+    <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Records">
+      <table className="w-full" aria-label="Records of the job, in order">
+        <thead>
+          <tr className="border-b border-ink text-soft">
+            {headers.map(([header, isFigure]) => (
+              <th
+                key={header}
+                scope="col"
+                className={`px-2 py-1.5 align-bottom ${isFigure ? 'text-right' : 'text-left'}`}
+              >
+                {header}
+              </th>
+            ))}
+          </tr>
+        </thead>
+        <tbody>
+          {records.map((record) => (
+            <RecordRow
+              key={recordAnchor(record)}
+              record={record}
+              timeZone={timeZone}
+              rowLink={rowLink}
             />
-          </div>
-          <FigureList
-            rows={[
-              ['entered', formatMoment(record.entered, timeZone)],
-              ['arrived', formatMoment(record.arrived, timeZone)],
-              ['started', formatMoment(record.started, timeZone)],
-              [
-                'left',
-                record.left === null
-                  ? 'still inside'
-                  : formatMoment(record.left, timeZone) +
-                    (record.finishInferred ? ' (inferred from a later start)' : ''),
-              ],
-            ]}
-          />
-          <div>
-            <p className="text-soft">Told by</p>
-            <ul>
-              {record.versions.map((version) => (
-                <li key={`${version.uploadId} ${version.line}`}>
-                  <Link to={rowLink(version.uploadId, version.line)}>
-                    {version.fileName}, line {version.line}
-                  </Link>{' '}
-                  <span className="text-soft">
-                    {version.outcome === 'same' ? 'same as before' : version.outcome}
-                  </span>
-                </li>
-              ))}
-            </ul>
-          </div>
+          ))}
+        </tbody>
+      </table>
+    </div>
+  );
+}
+
+function RecordRow({
+  record,
+  timeZone,
+  rowLink,
+}: {
+  record: JobRecord;
+  timeZone: string;
+  rowLink: RowLink;
+}) {
+  const moments = [record.entered, record.started].map((at) => formatMoment(at, timeZone));
+  const left =
+    record.left === null
+      ? 'still inside'
+      : `${formatMoment(record.left, timeZone)}${record.finishInferred ? ' (inferred)' : ''}`;
+  const lengths = [record.queueSeconds, record.processSeconds, record.flowSeconds];
+  return (
+    <tr id={recordAnchor(record)} className="border-b border-hair align-top target:bg-mist">
+      <th scope="row" className="px-2 py-1 text-left font-medium whitespace-nowrap">
+        {record.areaName}
+        {record.pass > 1 ? <span className="text-soft"> · pass {record.pass}</span> : null}
+      </th>
+      {[...moments, left].map((moment, index) => (
+        <td key={headers[index + 1]?.[0]} className="px-2 py-1 whitespace-nowrap">
+          {moment}
+        </td>
+      ))}
+      {lengths.map((seconds, index) => (
+        <td key={headers[index + 4]?.[0]} className="px-2 py-1 text-right whitespace-nowrap">
+          {formatDuration(seconds)}
+        </td>
+      ))}
+      <td className="px-2 py-1 whitespace-nowrap text-soft">{toldBeside(record, timeZone)}</td>
+      <td className="px-2 py-1">
+        <ToldBy record={record} rowLink={rowLink} />
+      </td>
+    </tr>
+  );
+}
+
+/** The rows that told of a record, earliest first: the last is the one that holds. */
+function ToldBy({ record, rowLink }: { record: JobRecord; rowLink: RowLink }) {
+  return (
+    <ul>
+      {record.versions.map((version) => (
+        <li key={`${version.uploadId} ${version.line}`} className="whitespace-nowrap">
+          <Link to={rowLink(version.uploadId, version.line)}>
+            {version.fileName}, line {version.line}
+          </Link>{' '}
+          <span className="text-soft">
+            {version.outcome === 'same' ? 'same as before' : version.outcome}
+          </span>
         </li>
       ))}
-    </ol>
+    </ul>
   );
+}
+
+const names: Record<string, string> = { workContent: 'work content', record: 'record id' };
+
+function toldBeside({ quantity, told }: JobRecord, timeZone: string): string {
+  const parts = Object.entries(told).map(([name, value]) =>
+    name === 'due' ? `due ${formatDay(value, timeZone)}` : `${names[name] ?? name} ${value}`,
+  );
+  return [...(quantity === null ? [] : [`quantity ${formatCount(quantity)}`]), ...parts].join(', ');
 }
