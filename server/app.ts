@@ -1,4 +1,5 @@
 import { readFileSync } from 'node:fs';
+import { fileURLToPath } from 'node:url';
 import express, { type Express } from 'express';
 import { pinoHttp } from 'pino-http';
 import type { Dependencies } from './dependencies.ts';
@@ -13,6 +14,7 @@ import { registerFigures } from './http/routes/figures.ts';
 import { registerDemo } from './http/routes/demo.ts';
 import { registerJobs } from './http/routes/jobs.ts';
 import { registerServer } from './http/routes/server.ts';
+import { registerSetUp } from './http/routes/set-up.ts';
 import { registerSites } from './http/routes/sites.ts';
 import { registerUploads } from './http/routes/uploads.ts';
 import { registerZones } from './http/routes/zones.ts';
@@ -57,9 +59,11 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   registerFigures(api);
   registerJobs(api);
   registerDemo(api);
+  registerSetUp(api);
   registerAccessKeys(api);
   app.use(router);
   app.use('/api', unknownCall);
+  serveSample(app);
   client?.(app);
   app.use(answerErrors(deps.log));
   return app;
@@ -79,4 +83,13 @@ export function serveClient(folder: string): (app: Express) => void {
       res.type('html').send(page);
     });
   };
+}
+
+const sampleFile = fileURLToPath(new URL('../samples/depot-two-weeks.csv', import.meta.url));
+
+/** A small export to try the product with; it is invented, and open to everybody. */
+function serveSample(app: Express): void {
+  app.get('/samples/depot-two-weeks.csv', (_req, res) => {
+    res.type('text/csv').attachment('depot-two-weeks.csv').sendFile(sampleFile);
+  });
 }

@@ -5,6 +5,7 @@ import * as demo from './demo.ts';
 import * as figures from './figures.ts';
 import * as jobs from './jobs.ts';
 import * as server from './server.ts';
+import * as setUp from './set-up.ts';
 import * as sites from './sites.ts';
 import * as uploads from './uploads.ts';
 import * as zones from './zones.ts';
@@ -18,6 +19,7 @@ export const contracts: readonly Contract[] = [
   figures,
   jobs,
   demo,
+  setUp,
   accessKeys,
   server,
 ].flatMap((module) => Object.values(module).filter(isContract));

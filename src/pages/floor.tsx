@@ -3,12 +3,14 @@ import { Link } from 'react-router-dom';
 import { dayMs } from '../../shared/local-time.ts';
 import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
+import { FirstSteps } from '../features/first-steps/first-steps.tsx';
 import { FloorSection } from '../features/floor/floor-section.tsx';
 import { FloorTable } from '../features/floor/floor-table.tsx';
 import { floorLevelsQuery, floorQuery } from '../features/floor/queries.ts';
 import { floorSentence } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
-import { EmptyState } from '../ui/empty-state.tsx';
+import { useMay } from '../features/session/queries.ts';
+import { SetUpPanel } from '../features/set-up/set-up-panel.tsx';
 import { PageHeading, Sentence } from '../ui/heading.tsx';
 import { Loading } from '../ui/loading.tsx';
 import { ProblemNotice } from '../ui/notice.tsx';
@@ -26,15 +28,18 @@ export function Component() {
     ...floorLevelsQuery(site.id, { ...period, unit }),
     enabled: site.dataUntil !== null,
   });
+  const mayUpload = useMay('upload.create', site.organisationId);
+  const mayChange = useMay('zone.change', site.organisationId);
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
   if (site.dataUntil === null)
     return (
       <>
         <PageHeading>Floor</PageHeading>
-        <EmptyState title="There are no data yet.">
-          <Link to={paths.intake(site.id) + search}>Upload an export</Link> with a row for each job
-          at each area: its start and its finish are enough.
-        </EmptyState>
+        <FirstSteps
+          intakePath={paths.intake(site.id) + search}
+          mayUpload={mayUpload}
+          isBusy={site.busy}
+        />
       </>
     );
   return (
@@ -54,6 +59,7 @@ export function Component() {
               ),
             )}
           </Sentence>
+          {mayChange ? <SetUpPanel siteId={site.id} /> : null}
           <FloorSection
             rows={floor.data.rows}
             levels={levels.data}
