@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { z } from 'zod';
-import type { readFloor } from '../../shared/contracts/figures.ts';
+import type { FloorLevels, readFloor } from '../../shared/contracts/figures.ts';
 import { zoneRules, stepBorders } from '../../shared/local-time.ts';
 import type { Series } from '../../server/flow/zone-series.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
@@ -72,6 +72,12 @@ async function expectFloor(site: TestSite, from: number, to: number) {
     closeTo(row.oldestInsideSeconds, summary.oldestInsideSeconds);
     expect(row.books).toEqual(summary.books);
   }
+  const levels = await site.get<FloorLevels>('/floor/levels', asked);
+  for (const { zoneId, wipMean } of levels.zones) {
+    const { points } = await site.get<Series>(`/zones/${zoneId}/series`, { ...asked, step: 'day' });
+    expect(points.map((point) => point.start)).toEqual(levels.borders.slice(0, -1));
+    for (const [index, point] of points.entries()) closeTo(wipMean[index] ?? null, point.wipMean);
+  }
 }
 
 type Expected = ReturnType<typeof oracleFigures>;
@@ -94,6 +100,13 @@ function expectStep(
   closeTo(actual.wipMean, expected.wipMean);
   closeTo(actual.flowMeanSeconds, expected.flowMeanSeconds);
   closeTo(actual.flowP85Seconds, expected.flowP85Seconds);
+  expectAge(actual.ageMeanSeconds, expected.ageMeanSeconds);
+}
+
+/** Ages by step are carried along from step to step: right to a microsecond or so, whatever their size. */
+function expectAge(actual: number | null, expected: number | null) {
+  if (expected === null) expect(actual).toBeNull();
+  else expect(Math.abs((actual ?? NaN) - expected)).toBeLessThan(1e-5);
 }
 
 async function expectSteps(

@@ -31,6 +31,9 @@ export function oracleFigures(stays: readonly OracleStay[], from: number, to: nu
   ] as number[];
   const left = stays.filter((stay) => within(stay.left));
   const flows = left.map((stay) => ((stay.left ?? 0) - stay.entered) / 1000).sort((a, b) => a - b);
+  const inside = stays.filter(
+    (stay) => stay.entered < to && (stay.left === null || stay.left >= to),
+  );
   const weigh = (some: readonly OracleStay[]) =>
     some.reduce((sum, stay) => sum + weightOf(stay), 0);
   return {
@@ -45,6 +48,9 @@ export function oracleFigures(stays: readonly OracleStay[], from: number, to: nu
       ? flows.reduce((sum, flow) => sum + flow, 0) / flows.length
       : null,
     flowP85Seconds: flows.length ? typeSeven(flows, 0.85) : null,
+    ageMeanSeconds: inside.length
+      ? inside.reduce((sum, stay) => sum + (to - stay.entered) / 1000, 0) / inside.length
+      : null,
   };
 }
 
