@@ -13,6 +13,7 @@ export function JobSearch({ siteId, search }: { siteId: number; search: string }
   return (
     <form
       role="search"
+      className="no-print"
       onSubmit={(event) => {
         event.preventDefault();
         const key = begins.trim();

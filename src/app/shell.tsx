@@ -25,7 +25,7 @@ export function SiteShell() {
   const role = useRole(site.organisationId);
   useFreshFigures(site);
   return (
-    <div className="flex min-h-dvh flex-col">
+    <div className="flex min-h-dvh flex-col print:min-h-0">
       <SkipLink />
       <Header role={role}>
         <span>

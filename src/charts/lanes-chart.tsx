@@ -27,7 +27,12 @@ export function LanesChart({
 }) {
   const bottom = lanes.names.length * laneHeight + 12;
   return (
-    <svg width={width} height={bottom + foot} className="block overflow-visible">
+    <svg
+      width={width}
+      height={bottom + foot}
+      viewBox={`0 0 ${width} ${bottom + foot}`}
+      className="block h-auto max-w-full overflow-visible"
+    >
       {lanes.names.map((name, lane) => (
         <g key={name}>
           <text x={0} y={middleOf(lane) + 4} className="fill-ink text-label">

@@ -31,7 +31,12 @@ export function SectionChart({
   wrap: (basin: DrawnBasin, picture: ReactNode) => ReactNode;
 }) {
   return (
-    <svg width={width} height={section.height} className="block overflow-visible">
+    <svg
+      width={width}
+      height={section.height}
+      viewBox={`0 0 ${width} ${section.height}`}
+      className="block h-auto max-w-full overflow-visible"
+    >
       {section.arrows.map((arrow) => (
         <Arrow key={`${arrow.x} ${arrow.y}`} arrow={arrow} formatRate={formatRate} />
       ))}

@@ -51,7 +51,7 @@ export function Component() {
       ) : (
         <Loading what="the figures" />
       )}
-      <div className="grid gap-8 xl:grid-cols-[minmax(0,1fr)_20rem]">
+      <div className="grid gap-8 xl:grid-cols-[minmax(0,1fr)_20rem] print:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-5">
           <div className="no-print w-40">
             <Select
@@ -71,7 +71,7 @@ export function Component() {
                 cap={zone.cap?.unit === unit ? zone.cap.limit : null}
                 onPick={setAt}
               />
-              <details>
+              <details className="no-print">
                 <summary className="cursor-pointer">The figures behind the charts</summary>
                 <SeriesTable points={series.data.points} timeZone={site.timeZone} />
               </details>
@@ -80,14 +80,16 @@ export function Component() {
             <Loading what="the charts" />
           )}
           {at ? (
-            <InsideList
-              siteId={site.id}
-              zoneId={zoneId}
-              at={at}
-              timeZone={site.timeZone}
-              jobLink={(jobKey) => paths.job(site.id, jobKey) + search}
-              rowLink={(uploadId, line) => paths.row(site.id, uploadId, line) + search}
-            />
+            <div className="no-print">
+              <InsideList
+                siteId={site.id}
+                zoneId={zoneId}
+                at={at}
+                timeZone={site.timeZone}
+                jobLink={(jobKey) => paths.job(site.id, jobKey) + search}
+                rowLink={(uploadId, line) => paths.row(site.id, uploadId, line) + search}
+              />
+            </div>
           ) : null}
         </div>
         {summary.data ? (

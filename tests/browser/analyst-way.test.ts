@@ -103,7 +103,7 @@ describe('an analyst', () => {
       .click();
 
     // The job, and the row of the file that told of it.
-    await page.getByText('Its way, in order').waitFor();
+    await page.getByRole('heading', { name: 'Its way' }).waitFor();
     await expectAccessible(page);
     await page
       .getByRole('link', { name: /week-40\.csv, line/ })

@@ -1,5 +1,4 @@
 import { useId, useState } from 'react';
-import { Button as AriaButton, Dialog, DialogTrigger, Popover } from 'react-aria-components';
 import type { Site } from '../../../shared/contracts/sites.ts';
 import { localDay, readLocal, stepBorders, zoneRules } from '../../../shared/local-time.ts';
 import { Button } from '../../ui/button.tsx';
@@ -15,26 +14,36 @@ export function PeriodPicker({
   period: Period;
   onPick: (period: Period) => void;
 }) {
+  const [isOpen, setOpen] = useState(false);
+  const id = useId();
   return (
-    <DialogTrigger>
-      <AriaButton className="min-h-6 cursor-pointer underline decoration-hair underline-offset-3 hover:text-ink hover:decoration-ink">
+    <span
+      onKeyDown={(event) => {
+        if (event.key === 'Escape') setOpen(false);
+      }}
+    >
+      <button
+        type="button"
+        aria-expanded={isOpen}
+        aria-controls={id}
+        onClick={() => setOpen(!isOpen)}
+        className="min-h-6 cursor-pointer underline decoration-hair underline-offset-3 hover:text-ink hover:decoration-ink"
+      >
         dates
-      </AriaButton>
-      <Popover placement="bottom start" className="border border-ink bg-panel p-4">
-        <Dialog aria-label="First and last day" className="outline-none">
-          {({ close }) => (
-            <Days
-              site={site}
-              period={period}
-              onPick={(picked) => {
-                onPick(picked);
-                close();
-              }}
-            />
-          )}
-        </Dialog>
-      </Popover>
-    </DialogTrigger>
+      </button>
+      {isOpen ? (
+        <span id={id} className="absolute z-20 mt-1 block border border-ink bg-panel p-4 text-ink">
+          <Days
+            site={site}
+            period={period}
+            onPick={(picked) => {
+              onPick(picked);
+              setOpen(false);
+            }}
+          />
+        </span>
+      ) : null}
+    </span>
   );
 }
 
@@ -67,8 +76,8 @@ function Days({
       }}
     >
       {[
-        { name: 'First day', value: first, set: setFirst },
-        { name: 'Last day', value: last, set: setLast },
+        { name: 'From', value: first, set: setFirst },
+        { name: 'To the end of', value: last, set: setLast },
       ].map(({ name, value, set }) => (
         <div key={name} className="flex items-center justify-between gap-3">
           <label htmlFor={`${id}-${name}`}>{name}</label>
