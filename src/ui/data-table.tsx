@@ -1,5 +1,9 @@
 import {
+  columnFilteringFeature,
+  createFilteredRowModel,
   createSortedRowModel,
+  filterFns,
+  globalFilteringFeature,
   rowSortingFeature,
   sortFns,
   tableFeatures,
@@ -7,11 +11,15 @@ import {
   type ColumnDef,
 } from '@tanstack/react-table';
 import { useVirtualizer } from '@tanstack/react-virtual';
-import { useMemo, useRef, type ReactNode } from 'react';
+import { useId, useMemo, useRef, useState, type ReactNode } from 'react';
 import { downloadText, toCsv } from '../lib/csv.ts';
 import { Button } from './button.tsx';
 
 const features = tableFeatures({
+  columnFilteringFeature,
+  globalFilteringFeature,
+  filteredRowModel: createFilteredRowModel(),
+  filterFns,
   rowSortingFeature,
   sortedRowModel: createSortedRowModel(),
   sortFns,
@@ -37,16 +45,26 @@ export function DataTable<Row extends object>({
   columns,
   rows,
   fileName,
+  filterLabel,
 }: {
   label: string;
   columns: readonly Column<Row>[];
   rows: readonly Row[];
   /** Name of the CSV; without one there is none to take. */
   fileName?: string;
+  /** Names the field that filters the rows by what stands in them; without one there is none. */
+  filterLabel?: string;
 }) {
+  const [filter, setFilter] = useState('');
   const definitions = useMemo(() => columns.map(toDefinition), [columns]);
   const data = useMemo(() => [...rows], [rows]);
-  const table = useTable({ features, columns: definitions, data });
+  const table = useTable({
+    features,
+    columns: definitions,
+    data,
+    globalFilterFn: 'includesString',
+    state: { globalFilter: filter },
+  });
   const shown = table.getRowModel().rows;
   const scroller = useRef<HTMLDivElement>(null);
   const isLong = shown.length > virtualFrom;
@@ -63,6 +81,15 @@ export function DataTable<Row extends object>({
   const below = isLong ? virtual.getTotalSize() - (drawn.at(-1)?.end ?? 0) : 0;
   return (
     <div className="flex flex-col items-start gap-2">
+      {filterLabel ? (
+        <FilterField
+          label={filterLabel}
+          value={filter}
+          found={shown.length}
+          of={rows.length}
+          onChange={setFilter}
+        />
+      ) : null}
       <div
         ref={scroller}
         className={`w-full overflow-x-auto ${isLong ? 'max-h-112 overflow-y-auto' : ''}`}
@@ -130,6 +157,33 @@ export function DataTable<Row extends object>({
           </Button>
         </div>
       ) : null}
+    </div>
+  );
+}
+
+function FilterField(given: {
+  label: string;
+  value: string;
+  found: number;
+  of: number;
+  onChange: (value: string) => void;
+}) {
+  const id = useId();
+  return (
+    <div className="no-print flex flex-wrap items-center gap-3">
+      <label htmlFor={id} className="text-soft">
+        {given.label}
+      </label>
+      <input
+        id={id}
+        type="search"
+        value={given.value}
+        onChange={(event) => given.onChange(event.target.value)}
+        className="w-48 border border-soft bg-white px-2 py-1 text-ink"
+      />
+      <span role="status" className="text-soft">
+        {given.value === '' ? '' : `${given.found} of ${given.of} rows`}
+      </span>
     </div>
   );
 }

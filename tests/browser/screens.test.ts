@@ -1,3 +1,4 @@
+import { readFileSync } from 'node:fs';
 import type { Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
@@ -108,6 +109,29 @@ describe('the section of the Floor', () => {
     await page.getByRole('button', { name: /give each its own/ }).click();
     await page.getByRole('button', { name: /use one for all/ }).waitFor();
     expect(page.url()).toContain('scale=own');
+    await expectAccessible(page);
+  });
+});
+
+describe('the table of the Floor', () => {
+  it('is sorted and filtered, and its CSV holds what is shown', async () => {
+    const { page } = await open('/floor');
+    const table = page.getByRole('table', { name: 'Areas' });
+    await page.getByLabel('Rows with').fill('ing');
+    await page.getByText('3 of 4 rows').waitFor();
+    await table.getByRole('button', { name: 'mean' }).click();
+    const [download] = await Promise.all([
+      page.waitForEvent('download'),
+      page.getByRole('button', { name: 'Save these rows as CSV' }).click(),
+    ]);
+    const lines = readFileSync(await download.path(), 'utf8')
+      .trim()
+      .split('\r\n');
+    const names = lines.slice(1).map((line) => line.split(',')[0]);
+    expect(names).toEqual(await table.locator('tbody').getByRole('link').allTextContents());
+    expect(names.toSorted()).toEqual(['Grinding', 'Sawing', 'Turning']);
+    await page.getByLabel('Rows with').fill('none such');
+    await page.getByText('0 of 4 rows').waitFor();
     await expectAccessible(page);
   });
 });

@@ -53,22 +53,25 @@ export async function startTestBrowser(options: { demo?: boolean } = {}): Promis
   };
 }
 
+/** Without a window, and without looking anything up by itself. */
+export const chromiumArguments = [
+  '--headless',
+  '--no-sandbox',
+  '--disable-gpu',
+  '--disable-quic',
+  '--no-first-run',
+  '--disable-background-networking',
+  '--disable-component-update',
+  '--disable-sync',
+];
+
 async function launch(): Promise<Browser> {
   const executablePath = findChromium();
   if (executablePath === null)
     throw new Error('There is no Chromium. Run npm test, which gets it.');
   return chromium.launch({
     executablePath,
-    args: [
-      '--headless',
-      '--no-sandbox',
-      '--disable-gpu',
-      '--disable-quic',
-      '--no-first-run',
-      '--disable-background-networking',
-      '--disable-component-update',
-      '--disable-sync',
-    ],
+    args: chromiumArguments,
   });
 }
 

@@ -43,7 +43,15 @@ export function FloorTable({
       ),
     },
   ];
-  return <DataTable label="Areas" columns={columns} rows={rows} fileName="floor.csv" />;
+  return (
+    <DataTable
+      label="Areas"
+      columns={columns}
+      rows={rows}
+      fileName="floor.csv"
+      filterLabel="Rows with"
+    />
+  );
 }
 
 const nameOf = (row: FloorRow) => (row.zone.kind === 'site' ? 'Whole site' : row.zone.name);

@@ -78,6 +78,7 @@ export function InsideList({
               columns={columns}
               rows={stays}
               fileName="inside.csv"
+              filterLabel="Rows with"
             />
             {inside.hasNextPage ? (
               <div className="no-print flex items-center gap-3 text-soft">
