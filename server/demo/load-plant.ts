@@ -1,7 +1,8 @@
 import { createReadStream } from 'node:fs';
 import { readdir } from 'node:fs/promises';
+import path from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { and, eq, inArray, ne } from 'drizzle-orm';
+import { and, eq, ne } from 'drizzle-orm';
 import { organisation, person } from '../db/schema/people.ts';
 import { site } from '../db/schema/sites.ts';
 import { upload } from '../db/schema/uploads.ts';
@@ -9,19 +10,13 @@ import { withTenant } from '../db/tenant.ts';
 import { receiveFile } from '../intake/receive-upload.ts';
 import { workOnSite, type SiteWork } from '../jobs/site-work.ts';
 import { lowmoor } from './accounts.ts';
+import { declareAgreedCap, type Depot } from './declare-agreed-cap.ts';
 import { mainDepot } from './load-demo.ts';
 
 const samples = fileURLToPath(new URL('../../samples/', import.meta.url));
 const isPlantExport = (name: string) => /^lowmoor-\d{4}-\d{2}\.csv$/.test(name);
 /** Of servers that start together one loads, the others wait for it. */
 const loadingLock = 7_261_908;
-
-/** The demo's depot, and the person in whose name its exports are handed over. */
-interface Depot {
-  organisationId: number;
-  siteId: number;
-  personId: number;
-}
 
 /**
  * Loads the demo plant into the demo's depot, export by export through the intake: what is missing of it, so
@@ -43,11 +38,12 @@ export async function loadPlant(
     const names = (await readdir(folder)).filter(isPlantExport).sort();
     const given = await uploadsOf(work, depot);
     if (given.some(({ fileName }) => !names.includes(fileName))) return;
+    await declareAgreedCap(work, depot);
     for (const [index, name] of names.entries()) {
-      const known = given.some(({ fileName }) => fileName === name);
-      if (known && !(await anyWaiting(work, depot))) continue;
+      const known = given.find(({ fileName }) => fileName === name);
+      if (known && !isUnderWay(known)) continue;
       say(`Loading the demo plant, file ${index + 1} of ${names.length} …`);
-      if (!known) await hand(work, depot, folder + name);
+      if (!known) await hand(work, depot, path.join(folder, name));
       await finishWork(work, depot, stopping);
     }
   } finally {
@@ -75,7 +71,7 @@ async function findDepot({ db }: SiteWork): Promise<Depot | null> {
 const uploadsOf = ({ db }: SiteWork, { organisationId, siteId }: Depot) =>
   withTenant(db, organisationId, (tx) =>
     tx
-      .select({ fileName: upload.fileName })
+      .select({ fileName: upload.fileName, status: upload.status })
       .from(upload)
       .where(
         and(
@@ -87,24 +83,11 @@ const uploadsOf = ({ db }: SiteWork, { organisationId, siteId }: Depot) =>
       ),
   );
 
-async function anyWaiting({ db }: SiteWork, { organisationId, siteId }: Depot): Promise<boolean> {
-  const waiting = await withTenant(db, organisationId, (tx) =>
-    tx
-      .select({ id: upload.id })
-      .from(upload)
-      .where(
-        and(
-          eq(upload.organisationId, organisationId),
-          eq(upload.siteId, siteId),
-          inArray(upload.status, ['waiting', 'reading', 'loading']),
-        ),
-      ),
-  );
-  return waiting.length > 0;
-}
+const isUnderWay = ({ status }: { status: string }) =>
+  ['waiting', 'reading', 'loading'].includes(status);
 
-async function hand(work: SiteWork, { personId, ...key }: Depot, path: string): Promise<void> {
-  await receiveFile(createReadStream(path), path.slice(path.lastIndexOf('/') + 1), key, {
+async function hand(work: SiteWork, { personId, ...key }: Depot, file: string): Promise<void> {
+  await receiveFile(createReadStream(file), path.basename(file), key, {
     db: work.db,
     clock: work.clock,
     actor: { kind: 'person', personId },
@@ -118,7 +101,7 @@ async function finishWork(work: SiteWork, depot: Depot, stopping: AbortSignal): 
   for (;;) {
     await workOnSite(work, depot.organisationId, depot.siteId, stopping);
     stopping.throwIfAborted();
-    if (!(await anyWaiting(work, depot))) return;
+    if (!(await uploadsOf(work, depot)).some(isUnderWay)) return;
     await new Promise((resolve) => setTimeout(resolve, lookEveryMs));
   }
 }

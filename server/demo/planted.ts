@@ -33,6 +33,7 @@ export async function readPlantedOf(
         eq(upload.organisationId, organisationId),
         eq(upload.siteId, siteId),
         eq(upload.fileName, firstExport),
+        eq(upload.status, 'loaded'),
         eq(organisation.name, lowmoor),
       ),
     )
@@ -43,6 +44,7 @@ export async function readPlantedOf(
     .from(zone)
     .where(and(eq(zone.organisationId, organisationId), eq(zone.siteId, siteId)));
   const named = (...names: string[]) => zones.filter(({ name }) => names.includes(name));
+  const loop = named(agreedCap.name);
   const rests = calibrationRests.map(({ from }) => from);
   return [
     {
@@ -63,7 +65,7 @@ export async function readPlantedOf(
     },
     {
       kind: 'overrun',
-      zones: named(...agreedCap.areas),
+      zones: loop.length > 0 ? loop : named(...agreedCap.areas),
       from: iso(Math.min(...rests) - day),
       to: iso(span.until),
       since: null,

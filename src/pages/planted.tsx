@@ -16,8 +16,7 @@ export function Component() {
   useTitle('What is planted here');
   const site = useSiteOfPage();
   const answer = useQuery(plantedQuery(site.id));
-  const linkTo = (zoneId: number, { from, to }: Planted) =>
-    `${paths.zone(site.id, zoneId)}?${new URLSearchParams({ from, to }).toString()}`;
+  const searchOf = ({ from, to }: Planted) => `?${new URLSearchParams({ from, to }).toString()}`;
   return (
     <div className="flex max-w-4xl flex-col gap-6">
       <PageHeading>What is planted here</PageHeading>
@@ -41,11 +40,16 @@ export function Component() {
                 <ul className="flex flex-wrap gap-x-6 gap-y-1">
                   {planted.zones.map((zone) => (
                     <li key={zone.id}>
-                      <Link to={linkTo(zone.id, planted)}>
+                      <Link to={paths.zone(site.id, zone.id) + searchOf(planted)}>
                         {zone.name}, {formatPeriod(planted.from, planted.to, site.timeZone)}
                       </Link>
                     </li>
                   ))}
+                  <li>
+                    <Link to={paths.floor(site.id) + searchOf(planted)}>
+                      the Floor in that period
+                    </Link>
+                  </li>
                 </ul>
               </section>
             );

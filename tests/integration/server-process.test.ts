@@ -44,15 +44,22 @@ function run(env: Record<string, string>) {
   return server;
 }
 
-async function start(env: Record<string, string> = {}) {
-  const server = run(env);
+const isReady = /^Weirmark is ready at (\S+)$/;
+
+/** What a server says, until it says something like this. */
+async function saysUntil(server: ReturnType<typeof run>, last: RegExp): Promise<string[]> {
   const lines: string[] = [];
   for await (const line of createInterface({ input: server.stdout })) {
     lines.push(line);
-    const origin = /^Weirmark is ready at (\S+)$/.exec(line)?.[1];
-    if (origin !== undefined) return { server, origin, lines };
+    if (last.test(line)) return lines;
   }
-  throw new Error(`The server did not start: ${lines.join(' ')}`);
+  throw new Error(`The server ended before that: ${lines.join(' ')}`);
+}
+
+async function start(env: Record<string, string> = {}) {
+  const server = run(env);
+  const lines = await saysUntil(server, isReady);
+  return { server, origin: isReady.exec(lines.at(-1) ?? '')?.[1] ?? '', lines };
 }
 
 async function signIn(origin: string): Promise<string> {
@@ -147,6 +154,24 @@ describe('the server process', () => {
       first.account.same + second.account.same,
     ]).toEqual([rows, rows]);
   });
+
+  it('killed while it loads the demo plant, the next one goes on, and is ready with the whole', async () => {
+    const demo = { WEIRMARK_DEMO: '1' };
+    const first = run(demo);
+    const file = (number: number) => `Loading the demo plant, file ${number} of 6 …`;
+    expect(await saysUntil(first, /file 3 of 6/)).toEqual([1, 2, 3].map(file));
+    await ended(first);
+    const second = await start(demo);
+    // The third was begun; the two before it are not told of again.
+    expect(second.lines.slice(0, -1)).toEqual([3, 4, 5, 6].map(file));
+    const answer = await fetch(`${second.origin}/api/sites/1/uploads`, {
+      headers: { Cookie: await signIn(second.origin) },
+    });
+    const uploads = (await answer.json()) as Upload[];
+    expect(uploads.map(({ fileName, status }) => [fileName.slice(8, 15), status])).toEqual(
+      ['11', '10', '09', '08', '07', '06'].map((month) => [`2026-${month}`, 'loaded']),
+    );
+  }, 180_000);
 
   it('tells in one sentence what is wrong with a setting', async () => {
     const server = run({ PORT: 'eighty' });

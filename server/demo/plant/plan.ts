@@ -48,7 +48,12 @@ export const slowBench = { from: Date.parse('2026-09-06T23:00:00Z'), factor: 1.2
 export const chamberSlots = 24;
 
 /** The cap that is agreed for Calibration and Final check together, and is overrun when calibration rests. */
-export const agreedCap = { areas: ['Calibration', 'Final check'], limit: 24 } as const;
+export const agreedCap = {
+  name: 'Calibration + Final check',
+  areas: ['Calibration', 'Final check'],
+  limit: 24,
+  note: 'Agreed by both areas: no more than the test room holds.',
+} as const;
 
 /** Stretches in which calibration takes up no job: each drives the two areas over their cap. */
 export const calibrationRests = [

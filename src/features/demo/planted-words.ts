@@ -19,8 +19,8 @@ export function plantedWords(planted: Planted, timeZone: string): { title: strin
       };
     case 'overrun':
       return {
-        title: `${name} overrun their cap`,
-        text: `The two are to hold ${limit} jobs together at most. On some days in October and November calibration takes nothing up for hours, and together they go over it; on the next day they are back. Neither rises.`,
+        title: `The cap of ${name} is overrun`,
+        text: `It is agreed that the two hold ${limit} jobs together at most. On some days in October and November calibration takes nothing up for hours, and together they go over it; within a day they are back. Neither rises.`,
       };
     case 'lost-finishes':
       return {
