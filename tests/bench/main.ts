@@ -12,6 +12,7 @@ import {
   upkeep,
   windowQuerySeconds,
 } from './database.ts';
+import { measureClient } from './client.ts';
 import { median, medianSeconds, report } from './measure.ts';
 import { BenchServer } from './server.ts';
 import { writeSimulatedLog } from './simulated-log.ts';
@@ -152,6 +153,22 @@ try {
     unit: '×',
     atMost: 1.5,
   });
+  const years = await server.makeSite('Three years');
+  await server.upload(
+    years,
+    await logFile('Y', 40_000, 5, { from: new Date('2023-01-02T00:00:00Z'), days: 1095 }),
+  );
+  const [oneZone] = await server.call<Zone[]>(`/api/sites/${years}/zones`);
+  const client = await measureClient(server.origin, years, oneZone?.id ?? 0);
+  if (client === null) say('There is no Chromium: the client was not measured.');
+  else {
+    const { firstLoadKilobytes: value, longestTaskMs, framesPerSecond } = client;
+    bar({ what: 'client: first load of Floor, compressed', value, unit: 'kB', atMost: 250 });
+    const dragged = 'client: ruler dragged over three years of days,';
+    bar({ what: `${dragged} longest task`, value: longestTaskMs, unit: 'ms', atMost: 50 });
+    // A frame may come a little early or late; 60 a second in the middle is told as 59 to 61.
+    bar({ what: `${dragged} frames`, value: framesPerSecond, unit: '/ s', atLeast: 59 });
+  }
   say(
     `\nIn this run: import ${imported.seconds.toFixed(1)} s, Floor ${(largeFloor * 1000).toFixed(0)} ms, refresh ${refreshed.seconds.toFixed(2)} s, withdraw ${withdrawn.toFixed(2)} s, rebuild ${rebuilt.toFixed(1)} s.`,
   );

@@ -8,12 +8,12 @@ import type { Upload } from '../../shared/contracts/uploads.ts';
 /** The server as it is started for people, in a process of its own, used through its API. */
 export class BenchServer {
   readonly #process: ChildProcess;
-  readonly #origin: string;
+  readonly origin: string;
   #cookie = '';
 
   private constructor(process: ChildProcess, origin: string) {
     this.#process = process;
-    this.#origin = origin;
+    this.origin = origin;
   }
 
   static async start(databaseUrl: string): Promise<BenchServer> {
@@ -54,7 +54,7 @@ export class BenchServer {
   }
 
   private async signIn(): Promise<void> {
-    const response = await fetch(`${this.#origin}/api/auth/sign-in`, {
+    const response = await fetch(`${this.origin}/api/auth/sign-in`, {
       method: 'POST',
       headers: { 'Content-Type': 'application/json' },
       body: JSON.stringify({ email: 'analyst@lowmoor.example', password: demoPassword }),
@@ -63,7 +63,7 @@ export class BenchServer {
   }
 
   async call<Body>(path: string, init: RequestInit = {}): Promise<Body> {
-    const response = await fetch(this.#origin + path, {
+    const response = await fetch(this.origin + path, {
       ...init,
       headers: { ...init.headers, Cookie: this.#cookie },
     });
