@@ -15,7 +15,7 @@ const takenAt = [
   { month: '2026-07', at: '2026-07-31T23:00Z' },
   { month: '2026-08', at: '2026-08-31T23:00Z' },
   { month: '2026-09', at: '2026-09-30T23:00Z' },
-  { month: '2026-10', at: '2026-10-31T23:00Z' },
+  { month: '2026-10', at: '2026-11-01T00:00Z' },
   { month: '2026-11', at: new Date(span.until).toISOString() },
 ].map(({ month, at }) => ({ month, at: Date.parse(at) }));
 

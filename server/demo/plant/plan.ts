@@ -25,10 +25,10 @@ export const areas = [
   { name: 'Receiving', servers: 7, processMs: 2 * hour },
   { name: 'Strip-down', servers: 10, processMs: 3.6 * hour },
   { name: 'Cleaning', servers: 5, processMs: 1.6 * hour },
-  { name: 'Repair bench', servers: 6, processMs: 2.45 * hour },
+  { name: 'Repair bench', servers: 24, processMs: 10.4 * hour },
   { name: 'Burn-in', servers: 24, processMs: 11 * hour, gated: true },
-  { name: 'Calibration', servers: 8, processMs: 2.9 * hour },
-  { name: 'Final check', servers: 6, processMs: 2 * hour },
+  { name: 'Calibration', servers: 12, processMs: 3.2 * hour },
+  { name: 'Final check', servers: 9, processMs: 2.1 * hour },
   { name: 'Dispatch', servers: 4, processMs: 1.2 * hour },
 ] as const satisfies readonly PlantArea[];
 
@@ -42,7 +42,7 @@ export const dayShift = { from: 6 * hour, until: 18 * hour, share: 0.75 };
 export const failingShare = 0.04;
 
 /** From this Monday on the repair bench takes so much longer for a job that it keeps up no more. */
-export const slowBench = { from: Date.parse('2026-09-06T23:00:00Z'), factor: 1.235 };
+export const slowBench = { from: Date.parse('2026-08-02T23:00:00Z'), factor: 1.138 };
 
 /** Chamber slots of Burn-in: never more are inside, though no cap is declared. */
 export const chamberSlots = 24;
@@ -62,15 +62,15 @@ export const calibrationRests = [
   '2026-10-14T07:00Z',
   '2026-10-21T10:00Z',
   '2026-10-30T08:00Z',
-  '2026-11-05T11:00Z',
+  '2026-11-05T08:00Z',
   '2026-11-12T08:00Z',
   '2026-11-18T09:00Z',
   '2026-11-25T07:00Z',
-].map((from) => ({ from: Date.parse(from), until: Date.parse(from) + 9 * hour }));
+].map((from) => ({ from: Date.parse(from), until: Date.parse(from) + 9.25 * hour }));
 
 /** In this ISO week Dispatch lost finishes, which no later start can heal. */
 export const lostWeek = {
-  from: Date.parse('2026-07-26T23:00:00Z'),
-  until: Date.parse('2026-08-02T23:00:00Z'),
+  from: Date.parse('2026-09-06T23:00:00Z'),
+  until: Date.parse('2026-09-13T23:00:00Z'),
   everyNth: 25,
 };
