@@ -277,6 +277,14 @@ describe('wrong input', () => {
 });
 
 describe('a long series', () => {
+  it('refuses levels of every zone over more years than a picture holds', async () => {
+    const site = await makeSite(test);
+    const asked = { from: '1900-01-01T00:00:00Z', to: '1941-01-01T00:00:00Z' };
+    const path = `/api/sites/${site.id}/floor/levels`;
+    const refused = await site.agent.get(path).query(asked).expect(400);
+    expect(refused.body).toMatchObject({ code: 'invalid-input', errors: [{ field: 'to' }] });
+  });
+
   it('answers at least 10,000 points', async () => {
     const site = await makeSite(test);
     await site.upload(stays(['J', 'Bench', null, 1, 3]));

@@ -20,7 +20,7 @@ import { readServerSeconds } from '../../flow/utilisation.ts';
 import type { FigureZone, Period, SiteReader } from '../../flow/zone-reader.ts';
 import { readZoneSeries } from '../../flow/zone-series.ts';
 import { readZoneSummary } from '../../flow/zone-summary.ts';
-import { stepBorders } from '../../../shared/local-time.ts';
+import { dayMs, stepBorders } from '../../../shared/local-time.ts';
 import { findSite } from '../../sites/present-site.ts';
 import { readZones } from '../../sites/read-zones.ts';
 import type { Api, Call } from '../api.ts';
@@ -104,9 +104,11 @@ export function registerFigures({ route, deps }: Api): void {
       withTenant(db, call.organisationId, async (tx) => {
         const { unit, hours } = call.query;
         refuseWorkingHours(hours);
+        const period = periodOf(call.query);
+        refuseTooLong(period);
         const reader = await readerOfSite(tx, call.organisationId, call.siteId);
         const zones = await readFigureZones(reader);
-        const levels = await readLevelsOfFloor(reader, zones, periodOf(call.query), unit);
+        const levels = await readLevelsOfFloor(reader, zones, period, unit);
         return { borders: levels.borders.map(iso), zones: levels.zones };
       }),
     ),
@@ -179,6 +181,16 @@ function refuseWorkingHours(hours: 'clock' | 'working'): void {
       'Figures in working hours are not available yet. Ask for hours=clock.',
       { errors: [{ field: 'hours', message: 'Use clock.' }] },
     );
+}
+
+/** Of every zone at once, so many years are the most that a small picture is made of. */
+const mostYears = 40;
+
+function refuseTooLong({ from, to }: Period): void {
+  if (to - from <= mostYears * 366 * dayMs) return;
+  throw invalidInput('The period is too long for levels of every zone.', [
+    { field: 'to', message: `Ask for at most ${mostYears} years.` },
+  ]);
 }
 
 function refuseTooManyPoints(
