@@ -1,5 +1,6 @@
 import type { ReactNode } from 'react';
 import type { DrawnVisit, Lanes } from './lanes-layout.ts';
+import { shortened } from './shortened.ts';
 
 const laneHeight = 26;
 const barHeight = 16;
@@ -36,7 +37,7 @@ export function LanesChart({
       {lanes.names.map((name, lane) => (
         <g key={name}>
           <text x={0} y={middleOf(lane) + 4} className="fill-ink text-label">
-            {name.length > 17 ? `${name.slice(0, 16)}…` : name}
+            {shortened(name, 17)}
           </text>
           <line
             x1={laneNamesWidth}

@@ -76,7 +76,11 @@ function BasinPicture({
   return (
     <>
       <rect x={x} y={top - 22} width={width} height={floor - top + 24} fill="transparent" />
-      <text x={x} y={top - 9} className="fill-ink text-body font-medium group-hover:underline">
+      <text
+        x={x}
+        y={top - 9}
+        className={`fill-ink font-medium group-hover:underline ${compact ? 'text-label' : 'text-body'}`}
+      >
         {basin.label}
       </text>
       <rect x={x} y={top} width={width} height={floor - top} className="fill-white" />

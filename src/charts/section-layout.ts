@@ -1,3 +1,5 @@
+import { shortened } from './shortened.ts';
+
 /** One area of the section: what is in it, and how it is named. Amounts in jobs or units. */
 export interface Basin {
   id: number;
@@ -63,7 +65,10 @@ const roomy: Measures = { least: 124, most: 200, arrow: 46, depth: 176, above: 2
 const close: Measures = { least: 92, most: 140, arrow: 34, depth: 96, above: 24, below: 44 };
 /** Beyond so many places basins are drawn small, so that forty areas still read. */
 const mostRoomy = 16;
-const characterWidth = 7.2;
+/** Widths of a character of the names, in the face of the labels. */
+const characterWidth = { roomy: 7.8, compact: 7.2 };
+/** What a name may take beyond its basin, where nothing stands beside it. */
+const nameOverhang = 22;
 const gapBetweenShared = 8;
 
 /** How many places stand beside each other: as many as fit, in rows of the same length. */
@@ -113,6 +118,10 @@ export function layoutSection(
           top,
           depth: measures.depth,
           most: scale === 'shared' ? tallest : Math.max(1, reach(basin)),
+          characters: Math.floor(
+            (share + (shared.length > 1 ? 0 : nameOverhang)) /
+              characterWidth[compact ? 'compact' : 'roomy'],
+          ),
         }),
       );
     if (index < places.length - 1)
@@ -145,11 +154,10 @@ const fullShare = 0.92;
 
 function drawBasin(
   basin: Basin,
-  at: { x: number; width: number; top: number; depth: number; most: number },
+  at: { x: number; width: number; top: number; depth: number; most: number; characters: number },
 ): DrawnBasin {
   const floor = at.top + at.depth;
   const y = (amount: number) => floor - (amount / at.most) * at.depth * fullShare;
-  const room = Math.max(3, Math.floor((at.width + 28) / characterWidth));
   return {
     ...basin,
     x: at.x,
@@ -161,6 +169,6 @@ function drawBasin(
     meanY: y(basin.mean),
     peakY: y(basin.peak),
     capY: basin.cap === null ? null : y(basin.cap),
-    label: basin.name.length > room ? `${basin.name.slice(0, room - 1)}…` : basin.name,
+    label: shortened(basin.name, at.characters),
   };
 }

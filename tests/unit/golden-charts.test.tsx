@@ -5,6 +5,7 @@ import { LanesChart } from '../../src/charts/lanes-chart.tsx';
 import { layoutLanes, type Visit } from '../../src/charts/lanes-layout.ts';
 import { SectionChart } from '../../src/charts/section-chart.tsx';
 import { layoutSection, type Basin } from '../../src/charts/section-layout.ts';
+import { shortened } from '../../src/charts/shortened.ts';
 import { roundedSvg } from '../support/rounded-svg.ts';
 
 const basin = (id: number, name: string, given: Partial<Basin> = {}): Basin => ({
@@ -164,5 +165,16 @@ describe('the way of a job in lanes', () => {
     expect(lanes.names).toHaveLength(20);
     expect(Math.min(...lanes.visits.map(({ width }) => width))).toBeGreaterThanOrEqual(3);
     expect(lanes.visits.at(-1)?.visit).toBe(10);
+  });
+});
+
+describe('a name that is too long', () => {
+  it.each([
+    ['Saw', 5, 'Saw'],
+    ['Work centre 16', 10, 'Work c… 16'],
+    ['Receiving', 4, 'Rec…'],
+  ])('%s in %d characters is %s', (name, most, expected) => {
+    expect(shortened(name, most)).toBe(expected);
+    expect(shortened(name, most).length).toBeLessThanOrEqual(most);
   });
 });
