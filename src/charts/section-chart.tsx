@@ -92,9 +92,12 @@ function BasinPicture({
         strokeWidth={1.5}
       />
       <WallMarks basin={basin} />
+      {onWater ? null : (
+        <Plate x={middle} y={levelY + 4} text={formatAmount(basin.level)} size={size} />
+      )}
       <text
         x={middle}
-        y={onWater ? levelY - 7 : levelY + size + 2}
+        y={onWater ? levelY - 7 : levelY + size + 3}
         textAnchor="middle"
         className="fill-ink font-medium"
         style={{ fontSize: size }}
@@ -118,6 +121,12 @@ function BasinPicture({
       ))}
     </>
   );
+}
+
+/** What a number stands on in the water, so that it is read as on white. */
+function Plate({ x, y, text, size }: { x: number; y: number; text: string; size: number }) {
+  const width = text.length * size * 0.62 + 8;
+  return <rect x={x - width / 2} y={y} width={width} height={size + 4} className="fill-white" />;
 }
 
 /** Waiting above in process; one colour where they cannot be told apart. */

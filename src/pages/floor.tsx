@@ -7,7 +7,7 @@ import { FirstSteps } from '../features/first-steps/first-steps.tsx';
 import { FloorSection } from '../features/floor/floor-section.tsx';
 import { FloorTable } from '../features/floor/floor-table.tsx';
 import { floorLevelsQuery, floorQuery } from '../features/floor/queries.ts';
-import { floorSentence } from '../features/floor/sentence.ts';
+import { floorSentence, type Clause } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
 import { useMay } from '../features/session/queries.ts';
 import { SetUpPanel } from '../features/set-up/set-up-panel.tsx';
@@ -31,6 +31,10 @@ export function Component() {
   const mayUpload = useMay('upload.create', site.organisationId);
   const mayChange = useMay('zone.change', site.organisationId);
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
+  const evidenceOf = ({ evidence }: Clause) => {
+    if (evidence === 'uploads') return paths.intake(site.id) + search;
+    return evidence === 'areas' ? `${search}#areas` : linkTo(evidence.zoneId);
+  };
   if (site.dataUntil === null)
     return (
       <>
@@ -49,15 +53,11 @@ export function Component() {
       {floor.data ? (
         <>
           <Sentence>
-            {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) =>
-              clause.zoneId === undefined ? (
-                <span key={clause.text}>{clause.text}</span>
-              ) : (
-                <Link key={clause.text} to={linkTo(clause.zoneId)}>
-                  {clause.text}
-                </Link>
-              ),
-            )}
+            {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) => (
+              <Link key={clause.text} to={evidenceOf(clause)}>
+                {clause.text}
+              </Link>
+            ))}
           </Sentence>
           {mayChange ? <SetUpPanel siteId={site.id} /> : null}
           <FloorSection
@@ -67,7 +67,9 @@ export function Component() {
             unit={floor.data.unit}
             linkTo={linkTo}
           />
-          <FloorTable rows={floor.data.rows} days={daysOf(floor.data)} linkTo={linkTo} />
+          <div id="areas">
+            <FloorTable rows={floor.data.rows} days={daysOf(floor.data)} linkTo={linkTo} />
+          </div>
           {floor.data.approximate ? (
             <p className="text-soft">Percentiles are read from bins and right within 1 %.</p>
           ) : null}

@@ -36,6 +36,7 @@ const texts = [
   ['soft', 'paper'],
   ['soft', 'panel'],
   ['soft', 'mist'],
+  ['soft', 'white'],
   ['over', 'panel'],
   ['over', 'paper'],
   ['drift', 'panel'],
@@ -46,6 +47,9 @@ const texts = [
 const marks = [
   ['water', 'panel'],
   ['water', 'paper'],
+  ['water', 'white'],
+  ['ink', 'wash'],
+  ['ink', 'white'],
   ['slate', 'panel'],
   ['over', 'panel'],
   ['drift', 'panel'],

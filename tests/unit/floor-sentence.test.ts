@@ -67,7 +67,7 @@ describe('the sentence of the Floor', () => {
     const clauses = floorSentence(rows, 'jobs', end);
     expect(clauses[0]).toEqual({
       text: 'Bench holds 40 jobs, 30 more than at the start: 70 came and 40 left. ',
-      zoneId: 5,
+      evidence: { zoneId: 5 },
     });
     expect(clauses[1]?.text).toMatch(/^Oven holds 20 jobs, 10 more/);
   });

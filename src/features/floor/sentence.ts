@@ -1,10 +1,10 @@
 import type { FloorRow } from '../../../shared/contracts/figures.ts';
 import { formatCount, formatDuration, formatPerDay, inUnit, plural } from '../../lib/format.ts';
 
-/** A piece of the sentence; with a zone it links to that zone. */
+/** A piece of the sentence, and where its evidence is: a zone, the table of areas, or the uploads. */
 export interface Clause {
   text: string;
-  zoneId?: number;
+  evidence: { zoneId: number } | 'areas' | 'uploads';
 }
 
 /** So much growth over the period is told first: a tenth of what was there, and five at least. */
@@ -37,7 +37,7 @@ function unbalanced(rows: readonly FloorRow[]): Clause[] {
     .filter((row) => !row.books.balance)
     .map((row) => ({
       text: `The books of ${row.zone.name} do not balance: tell your administrator. `,
-      zoneId: row.zone.id,
+      evidence: { zoneId: row.zone.id },
     }));
 }
 
@@ -45,10 +45,11 @@ function grown(areas: readonly FloorRow[], unit: 'jobs' | 'units'): Clause[] {
   const risen = areas
     .filter((row) => growth(row) >= growthWorthTelling(row))
     .sort((one, other) => growth(other) - growth(one));
-  if (risen.length === 0) return [{ text: 'No area holds much more now than at the start. ' }];
+  if (risen.length === 0)
+    return [{ text: 'No area holds much more now than at the start. ', evidence: 'areas' }];
   return risen.slice(0, 3).map((row) => ({
     text: `${row.zone.name} holds ${inUnit(row.wipEnd, unit)}, ${formatCount(growth(row))} more than at the start: ${formatCount(row.arrivals)} came and ${formatCount(row.departures)} left. `,
-    zoneId: row.zone.id,
+    evidence: { zoneId: row.zone.id },
   }));
 }
 
@@ -61,7 +62,7 @@ function whole(site: FloorRow, unit: 'jobs' | 'units'): Clause[] {
   return [
     {
       text: `On the whole site ${inside === 1 ? 'is' : 'are'} ${inUnit(inside, unit)}; ${formatPerDay(site.throughputPerHour)} leave a day, and ${flow}. `,
-      zoneId: site.zone.id,
+      evidence: { zoneId: site.zone.id },
     },
   ];
 }
@@ -74,11 +75,19 @@ function mind(site: FloorRow, rows: readonly FloorRow[], periodEnd: string): Cla
   const partial = until !== null && Date.parse(periodEnd) - Date.parse(until) > partialWorthTelling;
   const warming = rows.filter((row) => row.warmingUp && row.zone.kind === 'area').length;
   return [
-    ...(partial ? [{ text: 'The period reaches past what the data speak for. ' }] : []),
+    ...(partial
+      ? [
+          {
+            text: 'The period reaches past what the data speak for. ',
+            evidence: 'uploads' as const,
+          },
+        ]
+      : []),
     ...(warming > 0
       ? [
           {
             text: `At its start ${plural(warming, 'area')} still ${warming === 1 ? 'fills' : 'fill'} up from an empty log. `,
+            evidence: 'areas' as const,
           },
         ]
       : []),
