@@ -17,12 +17,16 @@ export interface Depot {
   personId: number;
 }
 
-/** Makes the loop whose cap was agreed and declares that cap from the plant's first day on; once. */
-export async function declareAgreedCap({ db, clock }: SiteWork, depot: Depot): Promise<void> {
+/**
+ * Makes the loop whose cap was agreed, and declares that cap from the plant's first day on.
+ *
+ * @returns whether it did: a site that has a loop already is left as it is
+ */
+export async function declareAgreedCap({ db, clock }: SiteWork, depot: Depot): Promise<boolean> {
   const { organisationId, siteId, personId } = depot;
-  await withTenant(db, organisationId, async (tx) => {
+  return withTenant(db, organisationId, async (tx) => {
     const areaIds = await areasWithoutLoop(tx, depot);
-    if (areaIds.length < agreedCap.areas.length) return;
+    if (areaIds.length < agreedCap.areas.length) return false;
     const writer = { tx, organisationId, siteId };
     const zoneId = await createLoop(writer, { name: agreedCap.name, areaIds });
     const declared = {
@@ -41,6 +45,7 @@ export async function declareAgreedCap({ db, clock }: SiteWork, depot: Depot): P
         ...{ organisationId, siteId, at: clock.now(), actor: { kind: 'person', personId } },
         ...{ action, subjectKind: 'zone', subjectId: zoneId, after },
       });
+    return true;
   });
 }
 

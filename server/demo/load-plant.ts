@@ -38,7 +38,6 @@ export async function loadPlant(
     const names = (await readdir(folder)).filter(isPlantExport).sort();
     const given = await uploadsOf(work, depot);
     if (given.some(({ fileName }) => !names.includes(fileName))) return;
-    await declareAgreedCap(work, depot);
     for (const [index, name] of names.entries()) {
       const known = given.find(({ fileName }) => fileName === name);
       if (known && !isUnderWay(known)) continue;
@@ -46,6 +45,8 @@ export async function loadPlant(
       if (!known) await hand(work, depot, path.join(folder, name));
       await finishWork(work, depot, stopping);
     }
+    // Last: a loop is derived quickest from records that the database knows already.
+    if (await declareAgreedCap(work, depot)) await finishWork(work, depot, stopping);
   } finally {
     await client.query('select pg_advisory_unlock($1)', [loadingLock]);
     client.release();

@@ -88,11 +88,13 @@ export async function rebuildSite(derivation: Derivation): Promise<void> {
 export async function deriveZone(derivation: Derivation, zoneId: number): Promise<void> {
   const { organisationId, siteId } = derivation;
   const zones = await tellZones(derivation);
+  await joinByHash(derivation, true);
   await replaceStays(
     derivation,
     sql`select job_key from record where organisation_id = ${organisationId} and site_id = ${siteId}`,
     zoneId,
   );
+  await joinByHash(derivation, false);
   await deriveLevels(
     derivation,
     zones.filter((zone) => zone.id === zoneId),
@@ -102,8 +104,8 @@ export async function deriveZone(derivation: Derivation, zoneId: number): Promis
 }
 
 /**
- * A load that brings most of a site works on whole tables, of which the planner has no count yet: it would
- * look each row up. Until set back, it joins by hash.
+ * A load that brings most of a site, and a zone that is new, work on whole tables, of which the planner may
+ * have no count yet: it would look each row up. Until set back, it joins by hash.
  */
 async function joinByHash({ tx }: Derivation, hash: boolean): Promise<void> {
   await tx.execute(
