@@ -2,7 +2,7 @@ import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import { localDay, stepBorders } from '../../../shared/local-time.ts';
 import type { Derivation } from './derivation.ts';
-import { dayGrid, type DayGrid } from './local-grid.ts';
+import { gridOfHours, gridOfTouchedHours } from './grid-of-hours.ts';
 import { mergeRecords } from './merge-records.ts';
 import { refreshZones, tellZones, type DerivedZone } from './refresh-zones.ts';
 import { replaceFlowDays, replaceTouchedFlowDays } from './replace-flow-days.ts';
@@ -218,32 +218,6 @@ async function finish(derivation: Derivation): Promise<void> {
   await tx.execute(sql`/* new data version */
     update site set data_version = data_version + 1
     where organisation_id = ${organisationId} and id = ${siteId}`);
-}
-
-const spanRow = z.object({ first: z.coerce.date().nullable(), last: z.coerce.date().nullable() });
-
-async function gridOfHours({
-  tx,
-  rules,
-  organisationId,
-  siteId,
-}: Derivation): Promise<DayGrid | null> {
-  const { rows } = await tx.execute(sql`/* span of hours */
-    select min(hour) as first, max(hour) as last from level_hour
-    where organisation_id = ${organisationId} and site_id = ${siteId}`);
-  return gridOver(rules, rows[0]);
-}
-
-async function gridOfTouchedHours({ tx, rules }: Derivation): Promise<DayGrid | null> {
-  const { rows } = await tx.execute(
-    sql`/* span of touched hours */ select min(hour) as first, max(hour) as last from touched_hour`,
-  );
-  return gridOver(rules, rows[0]);
-}
-
-function gridOver(rules: Derivation['rules'], row: unknown): DayGrid | null {
-  const { first, last } = spanRow.parse(row);
-  return first && last ? dayGrid(rules, first.getTime(), last.getTime() + 1) : null;
 }
 
 async function removeDays(derivation: Derivation, zones: readonly number[]): Promise<void> {
