@@ -3,9 +3,10 @@ import type { Clock } from '../clock.ts';
 import type { Database, Transaction } from '../db/client.ts';
 import { recordAct } from '../audit/record-act.ts';
 import { createSiteIn } from '../sites/create-site.ts';
+import { declareServers } from '../sites/declare-servers.ts';
 import { createArea } from '../sites/write-areas.ts';
 import { fellgate, lowmoor, makeDemoAccounts } from './accounts.ts';
-import { areas } from './plant/plan.ts';
+import { areas, type PlantArea } from './plant/plan.ts';
 
 /** The demo's site with the plant's data. */
 export const mainDepot = 'Main depot';
@@ -15,7 +16,7 @@ const sites = [
     firm: lowmoor,
     name: mainDepot,
     timeZone: 'Europe/Dublin',
-    areas: areas.map((area) => area.name),
+    areas,
   },
   { firm: fellgate, name: 'Works', timeZone: 'Europe/London', areas: [] },
 ];
@@ -45,11 +46,13 @@ async function isEmpty(tx: Transaction): Promise<boolean> {
 async function makeDemoSite(
   outer: Transaction,
   organisationId: number,
-  { name, timeZone, areas }: { name: string; timeZone: string; areas: readonly string[] },
+  { name, timeZone, areas }: { name: string; timeZone: string; areas: readonly PlantArea[] },
   now: Date,
 ): Promise<void> {
   await createSiteIn(outer, organisationId, { name, timeZone }, now, async (tx, siteId) => {
-    for (const area of areas) await createArea({ tx, organisationId, siteId }, { name: area });
+    const writer = { tx, organisationId, siteId };
+    for (const area of areas)
+      await declareServers(writer, await createArea(writer, area), area.servers, null);
     await recordAct(tx, {
       organisationId,
       siteId,
