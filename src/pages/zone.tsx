@@ -8,6 +8,7 @@ import { paths } from '../app/paths.ts';
 import { StackedCharts } from '../charts/stacked-charts.tsx';
 import { usePeriod, type Period } from '../features/period/use-period.ts';
 import { BooksPanel } from '../features/zones/books-panel.tsx';
+import { CapCaution } from '../features/zones/cap-caution.tsx';
 import { DepartedList } from '../features/zones/departed-list.tsx';
 import { InsideList } from '../features/zones/inside-list.tsx';
 import { LittlesPanel } from '../features/zones/littles-panel.tsx';
@@ -79,6 +80,7 @@ export function Component() {
           ) : (
             <Loading what="the charts" />
           )}
+          {zone.cap ? <CapCaution /> : null}
           {at ? (
             <div className="no-print">
               <InsideList

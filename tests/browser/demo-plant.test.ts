@@ -46,6 +46,10 @@ it('the demo’s depot tells what is planted in it, and leads to each place', as
     await heading(page, place, 1);
     expect(page.url()).toMatch(/\/zones\/\d+\?from=2026-.*&to=2026-/);
     await page.getByRole('img', { name: /^WIP level/ }).waitFor();
+    // Where a cap is shown, the caution stands beside it, and nowhere else.
+    expect(await page.getByText(/^A cap decides who waits/).count()).toBe(
+      place.includes('+') ? 1 : 0,
+    );
     await page.goBack();
     await heading(page, 'What is planted here', 1);
   }
