@@ -6,6 +6,7 @@ import {
   pgTable,
   primaryKey,
   smallint,
+  text,
   timestamp,
 } from 'drizzle-orm/pg-core';
 import { instant, plainText, tenantColumns, tenantPolicy } from './columns.ts';
@@ -68,6 +69,8 @@ export const stay = pgTable(
     processTo: timestamp({ withTimezone: true }).array().notNull(),
     quantity: numeric(),
     finishInferred: boolean().notNull(),
+    /** `scrapped` or `cancelled` where the job's last record in the zone ended so. */
+    ending: text(),
     uploadId: integer().notNull(),
     line: integer().notNull(),
   },

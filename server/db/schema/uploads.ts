@@ -43,6 +43,8 @@ export const upload = pgTable(
     /** The column plan as it was asked for, and as it was resolved and used. */
     planGiven: jsonb(),
     plan: jsonb(),
+    /** What the file turned out to be: delimited text, a workbook, an event log in XES. */
+    fileKind: text(),
     receivedAt: instant().notNull(),
     receivedBy: integer().references(() => person.id),
     receivedKey: integer().references(() => accessKey.id),
@@ -113,6 +115,9 @@ export const uploadArea = pgTable(
     /** Whether any of its rows here carries a quantity, or a start. */
     hasQuantities: boolean().notNull(),
     hasStarts: boolean().notNull(),
+    /** The span, both ends in it, for which the file is the whole truth here; null where it adds to others. */
+    replacesFrom: instant(),
+    replacesUntil: instant(),
   },
   (table) => [
     primaryKey({ columns: [table.organisationId, table.siteId, table.uploadId, table.areaId] }),
@@ -132,6 +137,8 @@ export const toldColumns = () => ({
   value: numeric(),
   resource: text(),
   status: text(),
+  /** `scrapped` or `cancelled`: the stay ended, and not as a good departure. */
+  ending: text(),
   parent: text(),
 });
 
@@ -151,7 +158,10 @@ export const uploadRow = pgTable(
     arrived: instant(),
     started: instant(),
     finished: instant(),
+    /** Which of the three times an event told; null where the row told a stay. */
     event: text(),
+    /** Of an event at a local time that occurs twice, the second moment. */
+    secondReading: instant(),
     ...toldColumns(),
   },
   (table) => [

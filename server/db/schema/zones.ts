@@ -7,6 +7,7 @@ import {
   pgTable,
   primaryKey,
   text,
+  unique,
   type AnyPgColumn,
 } from 'drizzle-orm/pg-core';
 import { person } from './people.ts';
@@ -95,6 +96,41 @@ export const areaSpelling = pgTable(
       columns: [table.organisationId, table.siteId, table.areaId],
       foreignColumns: [area.organisationId, area.siteId, area.id],
     }).onDelete('cascade'),
+    tenantPolicy(),
+  ],
+).enableRLS();
+
+/**
+ * Rows told of one area that count for another: all of them, or from a moment on. Two spellings of one area
+ * are merged so, and an area that was given another name from a day on; taking the move back undoes it.
+ */
+export const areaMove = pgTable(
+  'area_move',
+  {
+    ...tenantColumns(),
+    id: integer().notNull().generatedAlwaysAsIdentity(),
+    areaId: integer().notNull(),
+    targetAreaId: integer().notNull(),
+    /** Rows whose start (arrival, else finish, where there is none) is not before it; null for all rows. */
+    validFrom: instant(),
+    movedBy: integer().references(() => person.id),
+    movedAt: instant().notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.organisationId, table.siteId, table.id] }),
+    unique('area_move_once')
+      .on(table.organisationId, table.siteId, table.areaId, table.validFrom)
+      .nullsNotDistinct(),
+    foreignKey({
+      name: 'area_move_from',
+      columns: [table.organisationId, table.siteId, table.areaId],
+      foreignColumns: [area.organisationId, area.siteId, area.id],
+    }).onDelete('cascade'),
+    foreignKey({
+      name: 'area_move_to',
+      columns: [table.organisationId, table.siteId, table.targetAreaId],
+      foreignColumns: [area.organisationId, area.siteId, area.id],
+    }),
     tenantPolicy(),
   ],
 ).enableRLS();
