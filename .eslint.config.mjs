@@ -67,6 +67,11 @@ export default tseslint.config(
         { allow: [{ from: 'lib', name: 'Response' }] },
       ],
       'no-console': 'error',
+      // An underscore stands for what a form of the language asks for and nothing needs.
+      '@typescript-eslint/no-unused-vars': [
+        'error',
+        { varsIgnorePattern: '^_$', argsIgnorePattern: '^_' },
+      ],
       '@typescript-eslint/consistent-type-imports': 'error',
       '@typescript-eslint/no-unnecessary-condition': 'off',
       'import-x/no-cycle': 'error',

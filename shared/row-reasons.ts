@@ -8,6 +8,8 @@ export const skipReasons = {
   'blank-line': 'The line is blank.',
   'only-delimiters': 'The row holds nothing between its delimiters.',
   'repeated-header': 'The row repeats the header.',
+  'above-header': 'The row stands above the header.',
+  'ignored-event': 'The column plan says that this event tells nothing of a stay.',
 } as const;
 
 /** Rows that cannot be taken as they came; each is kept with its line number for download. */
@@ -18,6 +20,8 @@ export const refusalReasons = {
   'unreadable-bytes': 'The job, the area or a time holds bytes that are no text.',
   'missing-job': 'The row names no job.',
   'missing-area': 'The row names no area.',
+  'missing-event': 'The row does not say what happened.',
+  'unknown-event': 'The column plan does not say what this word of the event column means.',
   'cell-too-long': 'A cell is longer than can be kept.',
   'unknown-area': 'The area is not known, and the column plan says to refuse unknown areas.',
   'unreadable-time': 'A time cannot be read.',
@@ -37,6 +41,11 @@ export const refusalReasons = {
 export const warningReasons = {
   'no-finish': 'No finish: the job is still there, or its finish is missing.',
   'no-start': 'No start: waiting and process time cannot be told apart.',
+  'finish-inferred':
+    'No finish: it was taken from the job’s next start, or from how the stay ended.',
+  'finish-without-start':
+    'A finish event for which no start is loaded: kept, and paired once one comes.',
+  'two-stays-at-once': 'The job was in another stay at the same time.',
   'ambiguous-local-time': 'A local time occurs twice, when clocks are set back.',
   'skipped-local-time': 'A local time does not occur, when clocks are set forward.',
   'area-spelling-folded': 'The area is written otherwise than where it first occurs in the file.',

@@ -89,6 +89,11 @@ export class BinaryCopy {
     this.bytes(encoded, 0, encoded.length);
   }
 
+  textOrNull(text: string | null): void {
+    if (text === null) this.null();
+    else this.text(text);
+  }
+
   /** A numeric that is a whole number below ten thousand. */
   smallWhole(value: number): void {
     this.#reserve(headroom);

@@ -1,4 +1,4 @@
-import type { ScannedRow } from './row-scanner.ts';
+import type { ScannedRow } from './text/row-scanner.ts';
 
 const space = 0x20;
 const delete_ = 0x7f;
@@ -23,6 +23,15 @@ export class Cell {
     }
     this.start = row.starts[index] as number;
     this.end = row.ends[index] as number;
+    this.#trim();
+    return this;
+  }
+
+  /** Moves to a text of its own. */
+  setText(text: string): this {
+    this.bytes = Buffer.from(text);
+    this.start = 0;
+    this.end = this.bytes.length;
     this.#trim();
     return this;
   }

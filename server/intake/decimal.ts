@@ -11,10 +11,23 @@ export interface Decimal {
 
 const written = /^([+-]?)0*(\d{0,15})(?:\.(\d{0,15}))?$/;
 
-/** Reads a number with a decimal point, of at most 15 digits on each side; null where it is none. */
-export function readDecimal(text: string): Decimal | null {
-  const found = written.exec(text);
-  if (!found || !/\d/.test(text)) return null;
+/** Whole numbers in groups of three, by what divides the groups: 1.234 or 1 234 where the comma is decimal. */
+const grouped = {
+  '.': /^[+-]?\d{1,3}(?:[, \u00A0\u202F’']\d{3})+(?=\.|$)/u,
+  ',': /^[+-]?\d{1,3}(?:[. \u00A0\u202F’']\d{3})+(?=,|$)/u,
+};
+
+/**
+ * Reads a number of at most 15 digits on each side of its decimal sign, perhaps in groups of three; null
+ * where it is none.
+ */
+export function readDecimal(text: string, decimalSign: '.' | ',' = '.'): Decimal | null {
+  const groups = grouped[decimalSign].exec(text)?.[0] ?? '';
+  const ungrouped = groups.replace(/[^\d+-]/gu, '') + text.slice(groups.length);
+  const plain = decimalSign === ',' ? ungrouped.replace(',', '.') : ungrouped;
+  if (decimalSign === ',' && ungrouped.includes('.')) return null;
+  const found = written.exec(plain);
+  if (!found || !/\d/.test(plain)) return null;
   const [, sign, whole = '', fraction = ''] = found;
   return { isNegative: sign === '-', whole, fraction };
 }

@@ -1,6 +1,8 @@
+import { IntakeFailure } from './failure.ts';
+import type { FileKind } from '../../shared/contracts/plan.ts';
+
 /** How a file of another kind begins, and what such a file is called. */
 const beginnings: readonly { bytes: readonly number[]; at?: number; kind: string }[] = [
-  { bytes: [0x50, 0x4b, 0x03, 0x04], kind: 'an XLSX workbook or another zip archive' },
   { bytes: [0x50, 0x4b, 0x05, 0x06], kind: 'an empty zip archive' },
   { bytes: [0xd0, 0xcf, 0x11, 0xe0, 0xa1, 0xb1, 0x1a, 0xe1], kind: 'an old office document (XLS)' },
   { bytes: [0x25, 0x50, 0x44, 0x46, 0x2d, 0x31, 0x2e], kind: 'a PDF document' },
@@ -23,7 +25,40 @@ const beginnings: readonly { bytes: readonly number[]; at?: number; kind: string
   { bytes: [0x4d, 0x5a, 0x90, 0x00], kind: 'a program' },
 ];
 
-const markup = /^\s*(?:<\?xml|<!doctype|<html|<log[\s>])/i;
+const markup = /^\s*(?:<\?xml|<!doctype|<html|<log[\s>]|<!--)/i;
+const log = /<log[\s>]/;
+/** Characters in which the root element of a markup document is looked for. */
+const rootWithin = 4000;
+
+const zip = [0x50, 0x4b, 0x03, 0x04];
+
+/** Whether a file is a zip archive, as workbooks are. */
+export const isZip = (head: Buffer): boolean => startsWith(head, zip, 0);
+
+/**
+ * The kind of a file by its first bytes, whatever its name or the sender say.
+ *
+ * @throws IntakeFailure that names what the file is, where it is of a kind that is not read
+ */
+export function kindOfFile(head: Buffer): FileKind {
+  if (isZip(head)) return 'workbook';
+  const text = asText(head.subarray(0, rootWithin));
+  if (markup.test(text) && log.test(text)) return 'xes';
+  const kind = foreignKind(head);
+  if (kind === null) return 'text';
+  throw new IntakeFailure(
+    'wrong-kind',
+    `The file is ${kind}, which holds no log that can be read.`,
+    'Export the log as CSV, XLSX or XES and upload that.',
+  );
+}
+
+/** Markup as text: it is told by ASCII alone, so wide encodings only have to lose their zero bytes. */
+const asText = (head: Buffer): string =>
+  head
+    .toString('latin1')
+    .replaceAll('\0', '')
+    .replace(/^(?:\xFF\xFE|\xFE\xFF|\xEF\xBB\xBF)/, '');
 
 /**
  * What kind of file the first bytes give away, where it is one that holds no delimited text.
@@ -35,7 +70,7 @@ export function foreignKind(head: Buffer): string | null {
   // A few letters could begin a header: a file of such a kind also holds control bytes early on.
   const isShortWord = found && found.bytes.length < 6 && found.bytes.every(isPrintable);
   if (found && (!isShortWord || hasControlBytes(head))) return found.kind;
-  if (markup.test(head.toString('latin1', 0, 200))) return 'an XML or HTML document';
+  if (markup.test(asText(head.subarray(0, 400)))) return 'an XML or HTML document';
   return null;
 }
 

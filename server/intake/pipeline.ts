@@ -1,16 +1,18 @@
 import type { PoolClient } from 'pg';
-import type { ColumnPlan } from '../../shared/contracts/plan.ts';
+import type { ColumnPlan, FileKind } from '../../shared/contracts/plan.ts';
 import type { RowAccount } from '../../shared/contracts/uploads.ts';
 import type { Database } from '../db/client.ts';
 import type { AreaRegister } from './area-register.ts';
-import { decideDateOrder } from './decide-date-order.ts';
-import { detect } from './detect.ts';
+import { setImmediate } from 'node:timers/promises';
+import { decideDateOrder } from './detect/decide-date-order.ts';
+import { detect } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
+import { openFile } from './open-file.ts';
+import type { OpenedFile } from './opened-file.ts';
 import { readOriginal } from './original.ts';
-import { readingOf, stayRowOf, type Reading, type RowContext } from './reading.ts';
+import { readingOf, shapeReaderOf, type Reading, type RowContext } from './reading.ts';
 import { StageReader } from './stage-reader.ts';
 import { Stage } from './stage.ts';
-import { openText, type TextSource } from './text-source.ts';
 
 export interface Progress {
   /** Rows read so far. */
@@ -19,7 +21,7 @@ export interface Progress {
   bytes: number;
 }
 
-export interface ReadingInput extends RowContext {
+export interface ReadingInput extends Omit<RowContext, 'dateSystem'> {
   organisationId: number;
   siteId: number;
   uploadId: number;
@@ -50,6 +52,7 @@ export interface StagedArea {
 export interface ReadingOutcome {
   /** The plan by which the file was read, complete. */
   plan: ColumnPlan;
+  fileKind: FileKind;
   areas: StagedArea[];
   /** Latest accepted time anywhere in the file, rounded up to the millisecond; null without any. */
   latestAt: Date | null;
@@ -69,13 +72,14 @@ export async function readIntoStage(
   client: PoolClient,
   input: ReadingInput,
 ): Promise<ReadingOutcome> {
-  const open = (): Promise<TextSource> => openText(readOriginal(input.db, input));
-  const { reading, source } = await prepareReading(input, open);
-  const { stayRow, areas } = stayRowOf(reading, input);
-  const stage = await Stage.open(client, stayRow.stagedColumns);
-  const reader = new StageReader(reading.delimiter, stayRow, stage);
+  const open = () => readOriginal(input.db, input);
+  const file = await openFile(open, input.plan ?? {});
+  const reading = await prepareReading(input, file);
+  const { shape, areas } = shapeReaderOf(reading, { ...input, dateSystem: file.dateSystem });
+  const stage = await Stage.open(client, shape.stagedColumns);
+  const reader = new StageReader(reading.headerLine, shape, stage);
   try {
-    await readBlocks(source, reader, input);
+    await readRows(file, reading, reader, stage, input.onProgress);
     await stage.close();
   } catch (error) {
     await stage.settle();
@@ -84,6 +88,7 @@ export async function readIntoStage(
   refuseWithoutRows(reader);
   return {
     plan: reading.plan,
+    fileKind: file.kind,
     areas: stagedAreas(areas),
     latestAt: latestOf(areas),
     account: reader.tally.account(),
@@ -92,26 +97,23 @@ export async function readIntoStage(
 }
 
 /** Finds out how to read the file; where its beginning does not tell day and month apart, the whole does. */
-async function prepareReading(
-  input: ReadingInput,
-  open: () => Promise<TextSource>,
-): Promise<{ reading: Reading; source: TextSource }> {
-  const source = await open();
-  const { sample: text, isWhole } = source;
-  const detection = detect({ text, isWhole, plan: input.plan, timeZone: input.site.timeZone });
+async function prepareReading(input: ReadingInput, file: OpenedFile): Promise<Reading> {
+  const detection = detect({ file, plan: input.plan, timeZone: input.site.timeZone });
   const reading = readingOf(detection);
-  if (detection.dateOrder !== 'unknown') return { reading, source };
-  const dateOrder = await decideDateOrder(reading, source);
-  return { reading: { ...reading, plan: { ...reading.plan, dateOrder } }, source: await open() };
+  if (detection.dateOrder !== 'unknown') return reading;
+  const dateOrder = await decideDateOrder(reading, file);
+  return { ...reading, plan: { ...reading.plan, dateOrder } };
 }
 
 /** Progress is told, and a wish to stop heard, each time so much of the file was read. */
 const progressBytes = 2_097_152;
 
-async function readBlocks(
-  source: TextSource,
+async function readRows(
+  file: OpenedFile,
+  reading: Reading,
   reader: StageReader,
-  { onProgress }: ReadingInput,
+  stage: Stage,
+  onProgress: ReadingInput['onProgress'],
 ): Promise<void> {
   let bytes = 0;
   let told = 0;
@@ -121,12 +123,14 @@ async function readBlocks(
     if (!goesOn)
       throw new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');
   };
-  for await (const block of source.blocks) {
-    bytes += block.bytes;
-    await reader.read(block.text, false);
+  for await (const taken of file.rows(reading, (row) => reader.take(row))) {
+    bytes = taken;
+    await stage.sendFull();
+    // Lets what is on its way move: judging rows never waits by itself.
+    await setImmediate();
     if (bytes - told >= progressBytes) await tell();
   }
-  await reader.read(Buffer.alloc(0), true);
+  await stage.sendFull();
   await tell();
 }
 

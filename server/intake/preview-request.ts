@@ -8,14 +8,17 @@ import { areaSpelling } from '../db/schema/zones.ts';
 import { withTenant } from '../db/tenant.ts';
 import { ApiError, invalidInput, notFound } from '../errors.ts';
 import { IntakeFailure } from './failure.ts';
+import { isZip } from './file-kind.ts';
 import { sampleBytes } from './limits.ts';
 import { readPlanPart } from './plan-part.ts';
 import { previewOf } from './preview.ts';
 import { runMulter } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
 
+const isWorkbook = (head: Buffer | undefined): boolean => head !== undefined && isZip(head);
+
 /** Of a whole file that is sent for a preview no more than this is taken. */
-const previewMb = 16;
+const previewMb = 64;
 
 /**
  * Shows what would be read of the file in a request, without keeping anything.
@@ -39,7 +42,7 @@ export async function previewRequest(
   const plan = await readPlanPart(db, siteKey, part);
   const context = await readContext(db, siteKey);
   try {
-    return previewOf({ bytes: head.bytes, plan, receivedAt, ...context });
+    return await previewOf({ bytes: head.bytes, isCut: head.isCut, plan, receivedAt, ...context });
   } catch (error) {
     if (error instanceof IntakeFailure) {
       throw new ApiError('invalid-input', error.advice, {
@@ -50,10 +53,15 @@ export async function previewRequest(
   }
 }
 
-/** Keeps the beginning of a file in memory and drops the rest. */
+/**
+ * Keeps the beginning of a file in memory and drops the rest; of a workbook, whose sheets may stand anywhere
+ * in it, as much as is taken.
+ */
 class HeadStorage implements StorageEngine {
   bytes: Buffer = Buffer.alloc(0);
   isFilled = false;
+  /** Whether there is more of the file than was kept. */
+  isCut = false;
 
   _handleFile(
     _request: Request,
@@ -63,11 +71,15 @@ class HeadStorage implements StorageEngine {
     const kept: Buffer[] = [];
     let length = 0;
     file.stream.on('data', (block: Buffer) => {
-      if (length < sampleBytes) length += kept.push(block) && block.length;
+      if (length < sampleBytes || isWorkbook(kept[0])) kept.push(block);
+      length += block.length;
     });
     file.stream.on('error', done);
     file.stream.on('end', () => {
-      this.bytes = Buffer.concat(kept).subarray(0, sampleBytes);
+      const bytes = Buffer.concat(kept);
+      this.bytes = isWorkbook(bytes) ? bytes : bytes.subarray(0, sampleBytes);
+      // A client that sends no more than a sample does not say whether there is more.
+      this.isCut = !isWorkbook(bytes) && length >= sampleBytes;
       this.isFilled = true;
       done(null, { size: length });
     });

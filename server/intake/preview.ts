@@ -1,23 +1,27 @@
+import { Readable } from 'node:stream';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import type { UploadPreview } from '../../shared/contracts/uploads.ts';
 import { rowReasonSentence } from '../../shared/row-reasons.ts';
-import { decodeBlock, recogniseText } from './decode.ts';
-import { detect, type Detection } from './detect.ts';
-import { sampleBytes } from './limits.ts';
-import { readingOf, stayRowOf, type RowContext } from './reading.ts';
+import { detect, type Detection } from './detect/detect.ts';
+import { IntakeFailure } from './failure.ts';
+import { openFile } from './open-file.ts';
+import type { OpenedFile } from './opened-file.ts';
+import { readingOf, shapeReaderOf, type RowContext } from './reading.ts';
 import { warningsOf } from './row-account.ts';
-import { RowScanner, type ScannedRow } from './row-scanner.ts';
 import { cellsOf } from './sample.ts';
-import type { StayRow } from './shapes/stay-row.ts';
+import type { RowOutcome, ShapeReader } from './shapes/shape-reader.ts';
+import type { ScannedRow } from './text/row-scanner.ts';
 
 /** Rows that a preview shows. */
 const rowsShown = 50;
 
 type PreviewRow = UploadPreview['rows'][number];
 
-export interface PreviewInput extends RowContext {
-  /** The beginning of the file, or all of it where it is shorter than a sample. */
+export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
+  /** The beginning of the file, or all of it. */
   bytes: Buffer;
+  /** Whether the file is longer than that. */
+  isCut: boolean;
   plan: ColumnPlan | null;
   timeZone: string;
 }
@@ -27,38 +31,53 @@ export interface PreviewInput extends RowContext {
  *
  * @throws IntakeFailure where the file could not be read at all, or not by the plan
  */
-export function previewOf(input: PreviewInput): UploadPreview {
-  const { bytes, plan, timeZone } = input;
-  const text = decodeBlock(recogniseText(bytes), Buffer.from(bytes), true);
-  const isWhole = bytes.length < sampleBytes;
-  const detection = detect({ text, isWhole, plan, timeZone });
+export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
+  const { bytes, isCut, plan, timeZone } = input;
+  const file = await openFile(() => blocksOf(bytes), plan ?? {}, isCut);
+  const detection = detect({ file, plan, timeZone });
   return {
-    delimiter: detection.delimiter as UploadPreview['delimiter'],
-    encoding: 'UTF-8',
+    fileKind: file.kind,
+    delimiter: detection.delimiter,
+    encoding: file.kind === 'text' ? (file.settled.encoding ?? 'utf-8') : null,
+    sheets: [...file.sheets],
     header: detection.header,
     plan: detection.plan,
+    dateOrder: detection.dateOrder,
     reasons: detection.reasons,
-    rows: previewRows(detection, text, isWhole, input),
+    rows: await previewRows(detection, file, { ...input, dateSystem: file.dateSystem }, isCut),
   };
 }
 
-function previewRows(
+/** The bytes as a stream; a copy, since a reading may change them in place. */
+const blocksOf = (bytes: Buffer): AsyncIterable<Buffer> => Readable.from([Buffer.from(bytes)]);
+
+async function previewRows(
   detection: Detection,
-  text: Buffer,
-  isWhole: boolean,
+  file: OpenedFile,
   context: RowContext,
-): PreviewRow[] {
-  const stayRow = detection.plan && stayRowOf(readingShown(detection), context).stayRow;
+  isCut: boolean,
+): Promise<PreviewRow[]> {
+  const shape = detection.plan && shapeReaderOf(readingShown(detection), context).shape;
   const rows: PreviewRow[] = [];
-  let hasHeader = false;
-  new RowScanner(detection.delimiter).scan(text, isWhole, (row) => {
-    const cells = cellsOf(row);
-    if (hasHeader) rows.push(stayRow ? judgedRow(row, stayRow, cells) : plainRow(row, cells));
-    else hasHeader = cells.some((cell) => cell.trim() !== '');
+  const take = (row: ScannedRow): boolean => {
+    if (row.line > detection.headerLine) {
+      const cells = cellsOf(row);
+      rows.push(...(shape ? judgedRows(row, shape, cells) : [plainRow(row, cells)]));
+    }
     return rows.length < rowsShown;
-  });
-  return rows;
+  };
+  try {
+    for await (const _ of file.rows(detection, take)) if (rows.length >= rowsShown) break;
+  } catch (error) {
+    // Where the bytes end early, so may what they say.
+    if (!(isCut && error instanceof IntakeFailure && rows.length > 0)) throw error;
+  }
+  return isCut && rows.length < rowsShown ? withoutLast(rows) : rows;
 }
+
+/** Without the row at which the bytes end, which may be cut. */
+const withoutLast = (rows: PreviewRow[]): PreviewRow[] =>
+  rows.filter(({ line }) => line !== rows.at(-1)?.line);
 
 /** Where the whole file has yet to tell the order of day and month, rows are shown day first. */
 function readingShown(detection: Detection) {
@@ -85,22 +104,28 @@ const plainRow = ({ line }: ScannedRow, cells: string[]): PreviewRow => ({
   ...untold,
 });
 
-function judgedRow(row: ScannedRow, stayRow: StayRow, cells: string[]): PreviewRow {
-  const outcome = stayRow.read(row);
-  const base = { ...untold, line: row.line, cells, outcome };
-  if (outcome === 'skipped') return { ...base, reason: rowReasonSentence(stayRow.skipReason) };
-  if (outcome === 'refused') return { ...base, reason: stayRow.refusal?.detail ?? null };
-  const instant = (index: number): string | null => {
-    const micros = stayRow.times.of(index);
-    return Number.isNaN(micros) ? null : new Date(Math.floor(micros / 1000)).toISOString();
-  };
+function judgedRows(row: ScannedRow, shape: ShapeReader, cells: string[]): PreviewRow[] {
+  const rows: PreviewRow[] = [];
+  for (let outcome: RowOutcome | null = shape.read(row); outcome; outcome = shape.next()) {
+    rows.push(judged(outcome, shape, { ...untold, line: row.line, cells, outcome }));
+  }
+  return rows;
+}
+
+function judged(outcome: RowOutcome, shape: ShapeReader, base: PreviewRow): PreviewRow {
+  if (outcome === 'skipped') return { ...base, reason: rowReasonSentence(shape.skipReason) };
+  if (outcome === 'refused') return { ...base, reason: shape.refusal?.detail ?? null };
+  const { job, area, ...times } = shape.told();
   return {
     ...base,
-    warnings: warningsOf(stayRow.warnings),
-    job: stayRow.job.text(),
-    area: stayRow.area?.name ?? null,
-    arrived: instant(0),
-    started: instant(1),
-    finished: instant(2),
+    warnings: warningsOf(shape.warnings),
+    job,
+    area,
+    arrived: instant(times.arrived),
+    started: instant(times.started),
+    finished: instant(times.finished),
   };
 }
+
+const instant = (micros: number): string | null =>
+  Number.isNaN(micros) ? null : new Date(Math.floor(micros / 1000)).toISOString();

@@ -1,11 +1,15 @@
-import type { ColumnPlan } from '../../shared/contracts/plan.ts';
+import type { ColumnPlan, Delimiter } from '../../shared/contracts/plan.ts';
 import { dayMs, readLocal, zoneRules } from '../../shared/local-time.ts';
 import { AreaRegister } from './area-register.ts';
-import type { Detection } from './detect.ts';
+import type { Detection } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
+import { EventRow } from './shapes/event-row.ts';
+import { JobRow } from './shapes/job-row.ts';
+import type { Places } from './shapes/places.ts';
+import { RowFrame } from './shapes/row-frame.ts';
+import type { RowRules, ShapeReader } from './shapes/shape-reader.ts';
 import { StayRow } from './shapes/stay-row.ts';
-import type { StayColumnPlaces } from './shapes/stay-columns.ts';
-import { AutoTimeReader } from './times/auto-time-reader.ts';
+import { AutoTimeReader, type DateSystem } from './times/auto-time-reader.ts';
 import { LocalClock } from './times/local-clock.ts';
 import { PatternTimeReader } from './times/pattern-time-reader.ts';
 import { compileTimePattern } from './times/time-pattern.ts';
@@ -14,22 +18,25 @@ import type { TimeReader } from './times/time-reader.ts';
 /** How a file is to be read: its plan, complete, with where each column stands. */
 export interface Reading {
   plan: ColumnPlan;
-  places: StayColumnPlaces;
+  places: Places;
   header: string[];
-  delimiter: string;
+  /** The line of the header; rows above it are passed over. */
+  headerLine: number;
+  delimiter: Delimiter | null;
 }
 
-/** What is told of the site and the receipt by which rows are judged. */
+/** What is told of the site, the receipt and the file by which rows are judged. */
 export interface RowContext {
   receivedAt: Date;
   /** The site's areas by folded spelling. */
   knownAreas: ReadonlyMap<string, number>;
+  dateSystem: DateSystem;
 }
 
 /** @throws IntakeFailure where no plan was given and none could be guessed */
 export function readingOf(detection: Detection): Reading {
-  const { plan, places, header, delimiter, missing } = detection;
-  if (plan && places) return { plan, places, header, delimiter };
+  const { plan, places, header, headerLine, delimiter, missing } = detection;
+  if (plan && places) return { plan, places, header, headerLine, delimiter };
   throw new IntakeFailure(
     'column-not-found',
     missing.join(' '),
@@ -38,29 +45,47 @@ export function readingOf(detection: Detection): Reading {
 }
 
 /** The rules of a reading, ready to judge row by row. */
-export function stayRowOf(
+export function shapeReaderOf(
   { plan, places, header }: Reading,
-  { receivedAt, knownAreas }: RowContext,
-): { stayRow: StayRow; areas: AreaRegister } {
-  const rules = zoneRules(plan.timeZone);
+  { receivedAt, knownAreas, dateSystem }: RowContext,
+): { shape: ShapeReader; areas: AreaRegister } {
+  const zone = zoneRules(plan.timeZone);
   const areas = new AreaRegister(knownAreas);
-  const stayRow = new StayRow({
-    header,
-    places,
-    times: timeReaderOf(plan),
+  const times = timeReaderOf(plan, dateSystem);
+  const rules: RowRules = {
+    frame: new RowFrame({
+      header,
+      job: places.job,
+      optional: places.optional,
+      times,
+      decimalSign: plan.decimalSign ?? '.',
+      statusWords: plan.statusWords ?? {},
+    }),
+    times,
     bounds: {
-      earliest: readLocal(rules, Date.UTC(1950, 0, 1)).at * 1000,
+      earliest: readLocal(zone, Date.UTC(1950, 0, 1)).at * 1000,
       latest: (receivedAt.getTime() + dayMs) * 1000,
     },
     areas,
     refuseUnknownAreas: plan.unknownAreas === 'refuse',
-  });
-  return { stayRow, areas };
+  };
+  return { shape: shapeOf(plan, places, rules), areas };
 }
 
-function timeReaderOf(plan: ColumnPlan): TimeReader {
+function shapeOf(plan: ColumnPlan, places: Places, rules: RowRules): ShapeReader {
+  switch (places.shape) {
+    case 'stay':
+      return new StayRow(places, rules);
+    case 'event':
+      return new EventRow(places, plan.shape === 'event' ? plan.eventWords : {}, rules);
+    case 'job':
+      return new JobRow(places, rules);
+  }
+}
+
+function timeReaderOf(plan: ColumnPlan, dateSystem: DateSystem): TimeReader {
   const clock = new LocalClock(zoneRules(plan.timeZone));
   return plan.timeFormat === 'auto'
-    ? new AutoTimeReader(clock, plan.dateOrder ?? null)
+    ? new AutoTimeReader(clock, plan.dateOrder ?? null, dateSystem)
     : new PatternTimeReader(compileTimePattern(plan.timeFormat), clock);
 }

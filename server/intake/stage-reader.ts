@@ -1,67 +1,61 @@
-import { setImmediate } from 'node:timers/promises';
 import { RowTally } from './row-account.ts';
-import { RowScanner, type ScannedRow } from './row-scanner.ts';
 import { rawOf } from './sample.ts';
+import type { ShapeReader } from './shapes/shape-reader.ts';
 import { SkippedRows } from './shapes/skipped-row.ts';
-import type { StayRow } from './shapes/stay-row.ts';
 import { refusedFields, type RowSink } from './stage.ts';
+import type { ScannedRow } from './text/row-scanner.ts';
 
-/** Reads text block by block: each row is judged, counted, and written to the stage. */
+/** Takes a file row by row: each is judged, counted, and written to the stage. */
 export class StageReader {
   readonly tally = new RowTally();
-  readonly #scanner: RowScanner;
-  readonly #stayRow: StayRow;
+  readonly #shape: ShapeReader;
   readonly #stage: RowSink;
-  readonly #fields: number;
+  readonly #headerLine: number;
   readonly #blank = new SkippedRows([]);
-  #hasHeader = false;
+  #isBelowHeader: boolean;
 
-  constructor(delimiter: string, stayRow: StayRow, stage: RowSink) {
-    this.#scanner = new RowScanner(delimiter);
-    this.#stayRow = stayRow;
+  /** @param headerLine the line of the header, which is no row; 0 where there is none */
+  constructor(headerLine: number, shape: ShapeReader, stage: RowSink) {
+    this.#headerLine = headerLine;
+    this.#isBelowHeader = headerLine === 0;
+    this.#shape = shape;
     this.#stage = stage;
-    this.#fields = stayRow.stagedColumns.length;
   }
 
-  /** @param isLast whether the text ends with this block */
-  async read(text: Buffer, isLast: boolean): Promise<void> {
-    this.#scanner.scan(text, isLast, (row) =>
-      this.#hasHeader ? this.#judge(row) : this.#passHeader(row),
-    );
-    await this.#stage.sendFull();
-    // Lets what is on its way move: judging rows never waits by itself.
-    await setImmediate();
+  take(row: ScannedRow): void {
+    if (this.#isBelowHeader) this.#judge(row);
+    else this.#passHeader(row);
   }
 
-  /** The first row that holds anything is the header, which is no row. */
   #passHeader(row: ScannedRow): void {
+    this.#isBelowHeader = row.line >= this.#headerLine;
+    if (row.line === this.#headerLine) return;
     const reason = row.trouble === null ? this.#blank.reasonFor(row) : null;
-    if (reason === null) this.#hasHeader = true;
-    else this.tally.skip(reason);
+    this.tally.skip(reason ?? 'above-header');
   }
 
   #judge(row: ScannedRow): void {
-    const stayRow = this.#stayRow;
-    switch (stayRow.read(row)) {
-      case 'accepted':
-        this.tally.accept(stayRow.warnings);
-        stayRow.write(this.#stage.rows, row.line, this.#fields);
-        break;
-      case 'skipped':
-        this.tally.skip(stayRow.skipReason);
-        break;
-      case 'refused':
-        this.#refuse(row);
+    const shape = this.#shape;
+    for (let outcome = shape.read(row); ;) {
+      if (outcome === 'accepted') {
+        this.tally.accept(shape.warnings);
+        shape.write(this.#stage.rows, row.line);
+      } else if (outcome === 'skipped') this.tally.skip(shape.skipReason);
+      else this.#refuse(row);
+      const next = shape.next();
+      if (next === null) return;
+      outcome = next;
     }
   }
 
   #refuse(row: ScannedRow): void {
-    const { refusal } = this.#stayRow;
+    const { refusal, part } = this.#shape;
     if (refusal === null) return;
     this.tally.refuse(refusal.reason);
     const { refused } = this.#stage;
     refused.beginRow(refusedFields);
     refused.int4(row.line);
+    refused.int2(part);
     refused.text(refusal.reason);
     refused.text(refusal.detail);
     refused.text(rawOf(row));

@@ -9,9 +9,12 @@ create temporary table staged_row (
   part smallint not null default 0,
   job_key text collate "C" not null,
   area_number integer not null,
+  event text,
   arrived timestamptz,
   started timestamptz,
   finished timestamptz,
+  second_reading timestamptz,
+  ending text,
   record_key text collate "C",
   quantity numeric,
   family text,
@@ -33,8 +36,8 @@ create temporary table staged_refused (
   raw text not null
 )`;
 
-const refusedColumns = 'line, reason, detail, raw';
-export const refusedFields = 4;
+const refusedColumns = 'line, part, reason, detail, raw';
+export const refusedFields = 5;
 
 /** Bytes that are sent in one COPY. Two lots of each kind are in memory: one fills while one is sent. */
 const lotBytes = 1_048_576;

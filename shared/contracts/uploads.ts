@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { contract, idParam, instantOrNull, instantSchema } from './contract.ts';
-import { columnPlanSchema, delimiters } from './plan.ts';
+import { columnPlanSchema, dateOrders, delimiters, encodings, fileKinds } from './plan.ts';
 import { siteParams } from './sites.ts';
 
 export const uploadStatuses = [
@@ -153,11 +153,17 @@ export const previewUpload = contract({
     plan: z.string().optional().describe('a column plan as JSON to read it by'),
   }),
   response: z.object({
-    delimiter: z.enum(delimiters),
-    encoding: z.string(),
+    fileKind: z.enum(fileKinds),
+    /** null where the file is no delimited text. */
+    delimiter: z.enum(delimiters).nullable(),
+    encoding: z.enum(encodings).nullable(),
+    /** Names of the sheets of a workbook. */
+    sheets: z.array(z.string()),
     header: z.array(z.string()),
     /** The plan that was given, or the guess; null where no guess could be made. */
     plan: columnPlanSchema.nullable(),
+    /** `unknown` where the beginning of the file does not tell day and month apart. */
+    dateOrder: z.enum([...dateOrders, 'unknown']).nullable(),
     /** Why each part of the guess was made, or what is missing, in sentences. */
     reasons: z.array(z.object({ about: z.string(), reason: z.string() })),
     rows: z.array(

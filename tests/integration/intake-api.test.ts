@@ -114,7 +114,7 @@ describe('a preview through the API', () => {
     const preview = answer.body as UploadPreview;
     expect(preview).toMatchObject({
       delimiter: ',',
-      encoding: 'UTF-8',
+      encoding: 'utf-8',
       header: ['job', 'area', 'start', 'finish'],
       plan: { columns: { started: 'start' } },
     });

@@ -1,13 +1,19 @@
-import type { ColumnPlan } from '../../shared/contracts/plan.ts';
-import { detect } from '../../server/intake/detect.ts';
-import { readingOf, stayRowOf } from '../../server/intake/reading.ts';
-import { RowTally, warningsOf } from '../../server/intake/row-account.ts';
-import { RowScanner } from '../../server/intake/row-scanner.ts';
+import { columnPlanSchema, type ColumnPlan } from '../../shared/contracts/plan.ts';
+import { BinaryCopy } from '../../server/intake/binary-copy.ts';
+import { detect } from '../../server/intake/detect/detect.ts';
+import { openFile } from '../../server/intake/open-file.ts';
+import { readingOf, shapeReaderOf } from '../../server/intake/reading.ts';
+import { warningsOf } from '../../server/intake/row-account.ts';
 import { rawOf } from '../../server/intake/sample.ts';
+import type { RowOutcome, ShapeReader } from '../../server/intake/shapes/shape-reader.ts';
+import { StageReader } from '../../server/intake/stage-reader.ts';
+import type { ScannedRow } from '../../server/intake/text/row-scanner.ts';
 
 /** One row of a text as intake judged it. Times are ISO 8601 in UTC, to the millisecond. */
 export interface JudgedRow {
   line: number;
+  /** Of a row per job, which of its areas. */
+  part: number;
   outcome: 'accepted' | 'skipped' | 'refused';
   reason: string | null;
   detail: string | null;
@@ -21,14 +27,14 @@ export interface JudgedRow {
 }
 
 export interface ReadTextOptions {
-  plan?: Partial<ColumnPlan>;
+  plan?: { columns?: object } & Partial<Omit<ColumnPlan, 'columns'>> & Record<string, unknown>;
   timeZone?: string;
   receivedAt?: string;
   knownAreas?: string[];
 }
 
 /** Reads a text as intake does, row by row, without a database. */
-export function readText(text: string | Buffer, options: ReadTextOptions = {}) {
+export async function readText(text: string | Buffer, options: ReadTextOptions = {}) {
   const bytes = Buffer.isBuffer(text) ? text : Buffer.from(text);
   const timeZone = options.timeZone ?? 'UTC';
   const settings = {
@@ -38,46 +44,81 @@ export function readText(text: string | Buffer, options: ReadTextOptions = {}) {
     unknownAreas: 'add' as const,
     mode: 'merge' as const,
   };
-  const { columns } = options.plan ?? {};
-  const plan = columns ? { ...settings, columns, ...options.plan } : null;
-  const reading = readingOf(detect({ text: bytes, isWhole: true, plan, timeZone }));
-  const { stayRow, areas } = stayRowOf(reading, {
+  const plan = options.plan?.columns
+    ? columnPlanSchema.parse({ ...settings, ...options.plan })
+    : null;
+  // A reading may change the bytes that it is given.
+  const open = async function* () {
+    await Promise.resolve();
+    yield Buffer.from(bytes);
+  };
+  const file = await openFile(open, plan ?? {});
+  const reading = readingOf(detect({ file, plan, timeZone }));
+  const { shape, areas } = shapeReaderOf(reading, {
     receivedAt: new Date(options.receivedAt ?? '2026-06-01T00:00:00Z'),
     knownAreas: new Map((options.knownAreas ?? []).map((folded, index) => [folded, index + 1])),
+    dateSystem: file.dateSystem,
   });
-  const tally = new RowTally();
   const rows: JudgedRow[] = [];
-  let hasHeader = false;
-  const iso = (micros: number): string | null =>
-    Number.isNaN(micros) ? null : new Date(Math.floor(micros / 1000)).toISOString();
-  new RowScanner(reading.delimiter).scan(bytes, true, (row) => {
-    if (!hasHeader && row.trouble === null && rawOf(row).trim() !== '') {
-      hasHeader = true;
-      return;
-    }
-    const outcome = stayRow.read(row);
-    if (outcome === 'accepted') tally.accept(stayRow.warnings);
-    else if (outcome === 'skipped') tally.skip(stayRow.skipReason);
-    else if (stayRow.refusal) tally.refuse(stayRow.refusal.reason);
+  const noted = notedBy(shape, rows);
+  const reader = new StageReader(reading.headerLine, noted, {
+    rows: new BinaryCopy(65_536),
+    refused: new BinaryCopy(65_536),
+    sendFull: () => Promise.resolve(),
+  });
+  for await (const _ of file.rows(reading, (row) => reader.take(row)));
+  return { rows, account: reader.tally.account(), areas: areas.accepted, plan: reading.plan };
+}
+
+/** The same reader of rows, noting what it judges. */
+function notedBy(shape: ShapeReader, rows: JudgedRow[]): ShapeReader {
+  let row: ScannedRow;
+  const note = (outcome: RowOutcome | null): RowOutcome | null => {
+    if (outcome === null) return null;
     const isAccepted = outcome === 'accepted';
+    const refusal = outcome === 'refused' ? shape.refusal : null;
+    const told = isAccepted ? shape.told() : null;
     rows.push({
       line: row.line,
+      part: shape.part,
       outcome,
-      reason:
-        outcome === 'refused'
-          ? (stayRow.refusal?.reason ?? null)
-          : outcome === 'skipped'
-            ? stayRow.skipReason
-            : null,
-      detail: outcome === 'refused' ? (stayRow.refusal?.detail ?? null) : null,
-      warnings: isAccepted ? warningsOf(stayRow.warnings) : [],
+      reason: refusal?.reason ?? (outcome === 'skipped' ? shape.skipReason : null),
+      detail: refusal?.detail ?? null,
+      warnings: isAccepted ? warningsOf(shape.warnings) : [],
       raw: rawOf(row),
-      job: isAccepted ? stayRow.job.text() : null,
-      area: isAccepted ? (stayRow.area?.name ?? null) : null,
-      arrived: isAccepted ? iso(stayRow.times.of(0)) : null,
-      started: isAccepted ? iso(stayRow.times.of(1)) : null,
-      finished: isAccepted ? iso(stayRow.times.of(2)) : null,
+      job: told?.job ?? null,
+      area: told?.area ?? null,
+      arrived: iso(told?.arrived),
+      started: iso(told?.started),
+      finished: iso(told?.finished),
     });
-  });
-  return { rows, account: tally.account(), areas: areas.accepted, plan: reading.plan };
+    return outcome;
+  };
+  return {
+    get stagedColumns() {
+      return shape.stagedColumns;
+    },
+    get part() {
+      return shape.part;
+    },
+    get warnings() {
+      return shape.warnings;
+    },
+    get skipReason() {
+      return shape.skipReason;
+    },
+    get refusal() {
+      return shape.refusal;
+    },
+    read(next) {
+      row = next;
+      return note(shape.read(next)) ?? 'skipped';
+    },
+    next: () => note(shape.next()),
+    write: (copy, line) => shape.write(copy, line),
+    told: () => shape.told(),
+  };
 }
+
+const iso = (micros = NaN): string | null =>
+  Number.isNaN(micros) ? null : new Date(Math.floor(micros / 1000)).toISOString();

@@ -3,7 +3,7 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { IntakeFailure } from '../../server/intake/failure.ts';
 import { rowByteLimit } from '../../server/intake/limits.ts';
-import { RowScanner } from '../../server/intake/row-scanner.ts';
+import { RowScanner } from '../../server/intake/text/row-scanner.ts';
 import { cellsOf, rawOf } from '../../server/intake/sample.ts';
 
 interface SeenRow {

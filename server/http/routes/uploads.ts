@@ -52,7 +52,7 @@ export function registerUploads({ route, deps }: Api): void {
     const { uploadId, line } = call.params;
     const found = await findUpload(db, keyOf(call));
     const plan = columnPlanSchema.nullable().parse(found.plan);
-    const row = await findRowOfFile(readOriginal(db, keyOf(call)), plan, line);
+    const row = await findRowOfFile(() => readOriginal(db, keyOf(call)), plan, line);
     if (!row) throw notFound(`A row that begins on line ${line}`);
     return { uploadId, fileName: found.fileName, line, ...row };
   });

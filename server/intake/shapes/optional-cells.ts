@@ -5,9 +5,8 @@ import { isPositive, readDecimal, readSmallWhole, type Decimal } from '../decima
 import { cellLengthLimit, keyLengthLimit } from '../limits.ts';
 import { quoteCell, type Refusal } from '../refusal.ts';
 import { warningBit } from '../row-account.ts';
-import type { ScannedRow } from '../row-scanner.ts';
+import type { ScannedRow } from '../text/row-scanner.ts';
 import type { TimeReader } from '../times/time-reader.ts';
-import type { StayColumnPlaces } from './stay-columns.ts';
 
 const numberWords: Partial<Record<OptionalColumn, string>> = {
   quantity: 'quantity',
@@ -35,8 +34,15 @@ export class OptionalCells {
   readonly #cells: readonly OptionalCell[];
   readonly #reader: TimeReader;
 
-  constructor(places: StayColumnPlaces, reader: TimeReader) {
+  readonly #decimalSign: '.' | ',';
+
+  constructor(
+    places: Partial<Record<OptionalColumn, number>>,
+    reader: TimeReader,
+    decimalSign: '.' | ',',
+  ) {
     this.#reader = reader;
+    this.#decimalSign = decimalSign;
     this.#cells = optionalColumns.flatMap((column) => {
       const place = places[column];
       if (place === undefined) return [];
@@ -45,9 +51,9 @@ export class OptionalCells {
     });
   }
 
-  /** The mapped columns, in the order in which `write` writes them. */
-  get columns(): OptionalColumn[] {
-    return this.#cells.map(({ column }) => column);
+  /** The columns of the staging table that `write` fills, in its order. */
+  get stagedColumns(): string[] {
+    return this.#cells.map(({ column }) => stagedColumn[column] ?? column);
   }
 
   read(row: ScannedRow): Refusal | null {
@@ -65,7 +71,7 @@ export class OptionalCells {
     if (!each.isGiven) return null;
     if (each.column === 'due') return this.#readDue(each);
     const word = numberWords[each.column];
-    return word === undefined ? this.#readText(each) : readNumber(each, word);
+    return word === undefined ? this.#readText(each) : readNumber(each, word, this.#decimalSign);
   }
 
   #readDue(due: OptionalCell): Refusal | null {
@@ -92,11 +98,17 @@ export class OptionalCells {
     return null;
   }
 
-  /** Writes one field for each of `columns`. */
-  write(copy: BinaryCopy): void {
+  /**
+   * Writes one field for each of `stagedColumns`.
+   *
+   * @param recordSuffix what makes the row's own id the id of one of its parts
+   */
+  write(copy: BinaryCopy, recordSuffix = ''): void {
     for (const { isGiven, column, cell, number, smallWhole, micros, replaced } of this.#cells) {
       if (!isGiven) copy.null();
-      else if (column === 'due') copy.timestamp(micros);
+      else if (column === 'record' && recordSuffix !== '') {
+        copy.text((replaced ?? cell.lossyText()) + recordSuffix);
+      } else if (column === 'due') copy.timestamp(micros);
       else if (smallWhole >= 0) copy.smallWhole(smallWhole);
       else if (number !== null) copy.numeric(number);
       else if (replaced !== null) copy.text(replaced);
@@ -105,7 +117,13 @@ export class OptionalCells {
   }
 }
 
-function readNumber(each: OptionalCell, word: string): Refusal | null {
+/** Names of staging columns that differ from those of the plan. */
+const stagedColumn: Readonly<Record<string, string>> = {
+  record: 'record_key',
+  workContent: 'work_content',
+};
+
+function readNumber(each: OptionalCell, word: string, decimalSign: '.' | ','): Refusal | null {
   const { cell } = each;
   each.smallWhole = readSmallWhole(cell);
   if (each.smallWhole > 0) return null;
@@ -113,7 +131,7 @@ function readNumber(each: OptionalCell, word: string): Refusal | null {
     each.isGiven = false;
     return null;
   }
-  each.number = readDecimal(cell.lossyText());
+  each.number = readDecimal(cell.lossyText(), decimalSign);
   if (each.number === null) {
     const detail = `The ${word} ${quoteCell(cell)} is not a number that can be read.`;
     return { reason: 'unreadable-number', detail };

@@ -1,6 +1,6 @@
 import type { SkipReason } from '../../../shared/row-reasons.ts';
 import { Cell } from '../cell.ts';
-import type { ScannedRow } from '../row-scanner.ts';
+import type { ScannedRow } from '../text/row-scanner.ts';
 
 /** Tells rows that say nothing from those that have to be read. */
 export class SkippedRows {

@@ -2,19 +2,21 @@ import { timeColumns, type TimeColumn } from '../../../shared/contracts/plan.ts'
 import { Cell } from '../cell.ts';
 import { quoteCell, type Refusal } from '../refusal.ts';
 import { warningBit } from '../row-account.ts';
-import type { ScannedRow } from '../row-scanner.ts';
+import type { ScannedRow } from '../text/row-scanner.ts';
 import type { TimeForm, TimeReader, TimeTrouble } from '../times/time-reader.ts';
-import type { StayColumnPlaces } from './stay-columns.ts';
+import type { TimePlaces } from './places.ts';
 
-const words: Readonly<Record<TimeColumn, string>> = {
+const words = {
   arrived: 'arrival',
   started: 'start',
   finished: 'finish',
-};
+} satisfies Record<TimeColumn, string>;
 
 /** One of the three times of the row in hand; `micros` is NaN where the row does not give it. */
 interface StayTime {
   readonly column: TimeColumn;
+  /** What it is called in a sentence. */
+  readonly word: string;
   readonly place: number;
   readonly cell: Cell;
   micros: number;
@@ -39,11 +41,13 @@ export class StayTimes {
   readonly #reader: TimeReader;
   readonly #bounds: TimeBounds;
 
-  constructor(places: StayColumnPlaces, reader: TimeReader, bounds: TimeBounds) {
+  /** @param word what its only time is called, where it is not told what kind of time it is */
+  constructor(places: TimePlaces, reader: TimeReader, bounds: TimeBounds, word?: string) {
     this.#reader = reader;
     this.#bounds = bounds;
     this.#times = timeColumns.map((column) => ({
       column,
+      word: word ?? words[column],
       place: places[column] ?? -1,
       cell: new Cell(),
       micros: NaN,
@@ -55,6 +59,31 @@ export class StayTimes {
   /** Microseconds since 1970 UTC, NaN where the row does not give it. */
   of(index: number): number {
     return (this.#times[index] as StayTime).micros;
+  }
+
+  /** Bits of the warnings that a start or a finish is missing. */
+  get missing(): number {
+    const noStart = Number.isNaN(this.of(1)) ? warningBit['no-start'] : 0;
+    return noStart | (Number.isNaN(this.of(2)) ? warningBit['no-finish'] : 0);
+  }
+
+  /** Of an only time at a local time that occurs twice, the second moment; else NaN. */
+  get second(): number {
+    return this.#times.find(({ place }) => place >= 0)?.second ?? NaN;
+  }
+
+  /** The three times in microseconds since 1970 UTC. */
+  told(): Record<TimeColumn, number> {
+    return { arrived: this.of(0), started: this.of(1), finished: this.of(2) };
+  }
+
+  /** Whether the row holds anything in the columns of these times. */
+  isFilled(row: ScannedRow): boolean {
+    return this.#times.some(({ place, cell }) => {
+      if (place < 0) return false;
+      cell.set(row, place);
+      return !cell.isEmpty && !cell.isNullWord;
+    });
   }
 
   read(row: ScannedRow): Refusal | null {
@@ -83,8 +112,7 @@ export class StayTimes {
     return null;
   }
 
-  #refuseUnreadable({ column, cell }: StayTime, trouble: TimeTrouble): Refusal {
-    const word = words[column];
+  #refuseUnreadable({ word, cell }: StayTime, trouble: TimeTrouble): Refusal {
     if (!cell.isText) {
       return { reason: 'unreadable-bytes', detail: `The ${word} ${quoteCell(cell)} is no text.` };
     }
@@ -117,16 +145,14 @@ export class StayTimes {
       before = time;
     }
     if (before === null) return { reason: 'no-time', detail: 'The row holds no time.' };
-    if (Number.isNaN(this.of(1))) this.warnings |= warningBit['no-start'];
-    if (Number.isNaN(this.of(2))) this.warnings |= warningBit['no-finish'];
     return null;
   }
 
   #checkBounds(): Refusal | null {
     const { earliest, latest } = this.#bounds;
     if (this.first >= earliest && this.latest <= latest) return null;
-    for (const { column, cell, micros } of this.#times) {
-      const told = `The ${words[column]} ${quoteCell(cell)}`;
+    for (const { word, cell, micros } of this.#times) {
+      const told = `The ${word} ${quoteCell(cell)}`;
       if (micros < earliest) {
         return { reason: 'time-before-1950', detail: `${told} lies before 1950.` };
       }
@@ -140,7 +166,7 @@ export class StayTimes {
 }
 
 function refuseOrder(time: StayTime, before: StayTime): Refusal {
-  const told = `The ${words[time.column]} ${quoteCell(time.cell)} lies before the ${words[before.column]} ${quoteCell(before.cell)}.`;
+  const told = `The ${time.word} ${quoteCell(time.cell)} lies before the ${before.word} ${quoteCell(before.cell)}.`;
   if (time.column === 'started') return { reason: 'start-before-arrival', detail: told };
   const reason = before.column === 'started' ? 'finish-before-start' : 'finish-before-arrival';
   return { reason, detail: told };

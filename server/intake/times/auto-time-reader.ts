@@ -8,11 +8,14 @@ import type { TimeForm, TimeReader, TimeTrouble } from './time-reader.ts';
 const dash = 0x2d;
 const slash = 0x2f;
 const dot = 0x2e;
+const comma = 0x2c;
 const letterT = 0x74;
 
 const secondsPerDay = 86_400;
 /** Spreadsheet serials count days from 1899-12-30; from 1900-03-01 on that agrees with the calendar. */
-const serialOf1970 = 25_569;
+/** Serial number of 1970-01-01 in each of the two systems in which spreadsheets count days. */
+const serialOf1970 = { 1900: 25_569, 1904: 24_107 } as const;
+export type DateSystem = keyof typeof serialOf1970;
 
 /**
  * Reads times in whatever form they come, told apart by their form alone: ISO 8601 with an offset or
@@ -33,10 +36,16 @@ export class AutoTimeReader implements TimeReader {
   readonly #time = new TimeOfDay();
   #days = 0;
 
-  /** @param dateOrder null where nothing is known: a dotted date is then day first, others unreadable */
-  constructor(clock: LocalClock, dateOrder: DateOrder | null) {
+  readonly #serialOf1970: number;
+
+  /**
+   * @param dateOrder null where nothing is known: a dotted date is then day first, others unreadable
+   * @param dateSystem by which serials count days
+   */
+  constructor(clock: LocalClock, dateOrder: DateOrder | null, dateSystem: DateSystem = 1900) {
     this.#clock = clock;
     this.#dateOrder = dateOrder;
+    this.#serialOf1970 = serialOf1970[dateSystem];
   }
 
   read(bytes: Buffer, start: number, end: number): TimeTrouble | null {
@@ -125,7 +134,7 @@ export class AutoTimeReader implements TimeReader {
 
   #readEpoch(sign: number, whole: number, length: number): boolean {
     const cursor = this.#cursor;
-    const hasPoint = cursor.skip(dot);
+    const hasPoint = cursor.skip(dot) || cursor.skip(comma);
     const fraction = hasPoint ? cursor.millionths() : 0;
     if (!cursor.ended || (hasPoint && cursor.taken === 0)) return false;
     const isSeconds = length <= 10;
@@ -138,7 +147,7 @@ export class AutoTimeReader implements TimeReader {
 
   #readSerial(whole: number): boolean {
     const cursor = this.#cursor;
-    const hasPoint = cursor.skip(dot);
+    const hasPoint = cursor.skip(dot) || cursor.skip(comma);
     const digits = hasPoint ? cursor.digits(15) : 0;
     const fraction = hasPoint ? digits / 10 ** cursor.taken : 0;
     if (hasPoint && cursor.taken === 0) return false;
@@ -146,7 +155,7 @@ export class AutoTimeReader implements TimeReader {
     if (!cursor.ended) return false;
     this.form = 'serial';
     const seconds = Math.round(fraction * secondsPerDay);
-    this.#setLocal((whole - serialOf1970) * secondsPerDay + seconds, 0);
+    this.#setLocal((whole - this.#serialOf1970) * secondsPerDay + seconds, 0);
     return true;
   }
 

@@ -54,8 +54,8 @@ function PreparedUpload({ site, file, onDone }: { site: Site; file: File; onDone
       <p>
         <strong>{file.name}</strong>{' '}
         <span className="text-soft">
-          {formatBytes(file.size)}, {guess.data.encoding}, delimiter{' '}
-          {delimiterWord(guess.data.delimiter)}
+          {formatBytes(file.size)}
+          {guess.data.delimiter ? `, delimiter ${delimiterWord(guess.data.delimiter)}` : ''}
         </span>
       </p>
       <ul className="list-inside list-disc text-soft">

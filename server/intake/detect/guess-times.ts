@@ -1,9 +1,9 @@
-import { zoneRules } from '../../shared/local-time.ts';
+import { zoneRules } from '../../../shared/local-time.ts';
 import { holdsTimes, type ColumnProfile } from './column-profile.ts';
 import { DateOrderEvidence } from './date-order.ts';
 import { isTaken, type FoundColumns, type GuessReason } from './found-columns.ts';
-import { AutoTimeReader } from './times/auto-time-reader.ts';
-import { LocalClock } from './times/local-clock.ts';
+import { AutoTimeReader } from '../times/auto-time-reader.ts';
+import { LocalClock } from '../times/local-clock.ts';
 
 /**
  * Where no header says which column is the start or the finish, two columns of times tell it themselves:

@@ -1,11 +1,11 @@
-import { timeColumns } from '../../shared/contracts/plan.ts';
-import type { StayColumn } from './shapes/stay-columns.ts';
+import { timeColumns, type TimeColumn } from '../../../shared/contracts/plan.ts';
+import type { GuessedColumn } from './found-columns.ts';
 
 /**
  * Words that headers commonly use for each column, in several languages (common practice, collected by
  * hand). A phrase is compared word by word, without accents and case.
  */
-const phrases: Readonly<Record<StayColumn, string>> = {
+const phrases: Readonly<Record<GuessedColumn, string>> = {
   job: `job, job no, job number, job id, job key, order, order no, order number, order id, work order,
     work order number, wo, wo number, shop order, production order, serial, serial no, serial number, sn,
     lot, lot id, lot number, batch, batch number, case, case id, ticket, traveller, traveler, unit id,
@@ -59,6 +59,14 @@ const phrases: Readonly<Record<StayColumn, string>> = {
     operator id, pracownik`,
   status: `status, state, result, outcome, disposition, zustand, ergebnis, statut, etat, resultat, estado,
     resultado, stato, esito, toestand, resultaat, situacao, tillstand, stan`,
+  event: `event, event type, event name, event code, transaction, transaction type, movement,
+    movement type, transition, lifecycle, lifecycle transition, action, activity type, booking type, kind,
+    what, ereignis, ereignistyp, ereignisart, buchungsart, meldungsart, bewegungsart, evenement,
+    type evenement, evento, tipo evento, tipo de evento, movimiento, gebeurtenis, handelse, zdarzenie`,
+  time: `time, timestamp, time stamp, date time, datetime, date, event time, event date, at, when, logged at,
+    recorded at, created at, booked at, transaction time, transaction date, zeit, zeitpunkt,
+    zeitstempel, uhrzeit, datum, buchungszeit, heure, horodatage, date heure, hora, fecha, fecha hora,
+    marca de tiempo, ora, data ora, tijd, tijdstip, momento, tid, tidpunkt, czas`,
   parent: `parent, parent job, parent order, parent lot, parent serial, master order, main order,
     hauptauftrag, ordre parent, orden padre, ordine padre, hoofdorder`,
 };
@@ -89,12 +97,18 @@ export function wordsOf(header: string): string[] {
     .filter((word) => word !== '');
 }
 
+/** Whether words speak of what was planned, or of something beside a thing, and so name none. */
+export const namesNothing = (words: readonly string[]): boolean =>
+  words.every(
+    (word) => besides.has(word) || plans.has(word) || word === 'actual' || word === 'process',
+  );
+
 const phraseWords = Object.fromEntries(
   Object.entries(phrases).map(([column, list]) => [
     column,
     list.split(',').map((phrase) => phrase.trim().split(/\s+/)),
   ]),
-) as unknown as Readonly<Record<StayColumn, readonly (readonly string[])[]>>;
+) as unknown as Readonly<Record<GuessedColumn, readonly (readonly string[])[]>>;
 
 /** From this score on the whole header is a phrase for the column. */
 export const wholeHeaderScore = 100;
@@ -103,7 +117,7 @@ export const wholeHeaderScore = 100;
  * How well a header fits a column by its words: 0 not at all; more for longer phrases, most where the
  * phrase is the whole header.
  */
-export function wordScore(column: StayColumn, words: readonly string[]): number {
+export function wordScore(column: GuessedColumn, words: readonly string[]): number {
   const fits = phraseWords[column].filter((phrase) => contains(words, phrase));
   if (fits.length === 0) return 0;
   const longest = Math.max(...fits.map((phrase) => phrase.length));
@@ -114,7 +128,12 @@ export function wordScore(column: StayColumn, words: readonly string[]): number 
   return meansOther ? 0 : Math.max(1, 10 * longest - rest.length);
 }
 
-const isTime = (column: StayColumn): boolean => timeColumns.some((each) => each === column);
+/** Phrases for one of the three times, word by word, longest first. */
+export const timePhrases: readonly { column: TimeColumn; words: readonly string[] }[] = timeColumns
+  .flatMap((column) => phraseWords[column].map((words) => ({ column, words })))
+  .sort((a, b) => b.words.length - a.words.length);
+
+const isTime = (column: GuessedColumn): boolean => timeColumns.some((each) => each === column);
 
 function contains(words: readonly string[], phrase: readonly string[]): boolean {
   return words.some((_, at) => phrase.every((word, index) => words[at + index] === word));

@@ -1,5 +1,5 @@
-import { IntakeFailure } from './failure.ts';
-import { columnLimit, rowByteLimit } from './limits.ts';
+import { IntakeFailure } from '../failure.ts';
+import { columnLimit, rowByteLimit } from '../limits.ts';
 import { findRowExtent, QuotedRowParser, withoutBlanks } from './quoted-row.ts';
 
 const quote = 0x22;

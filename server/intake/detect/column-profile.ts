@@ -1,9 +1,7 @@
-import { zoneRules } from '../../shared/local-time.ts';
 import { wordsOf } from './column-words.ts';
-import { readDecimal } from './decimal.ts';
-import type { Sample } from './sample.ts';
-import { AutoTimeReader } from './times/auto-time-reader.ts';
-import { LocalClock } from './times/local-clock.ts';
+import { readDecimal } from '../decimal.ts';
+import type { Sample } from './choose-cut.ts';
+import { isDigits, isTime, isWrittenTime } from './time-like.ts';
 
 /** What the cells of one column of a sample look like. Shares are of the cells that are not blank. */
 export interface ColumnProfile {
@@ -25,15 +23,9 @@ export interface ColumnProfile {
 }
 
 const numbersApart = /\d\D+\d/;
-const digits = /^-?\d+(?:\.\d+)?$/;
 
 /** Looks at each column of a sample. */
 export function profileColumns({ header, rows }: Sample): ColumnProfile[] {
-  const reader = new AutoTimeReader(new LocalClock(zoneRules('UTC')), null);
-  const isTime = (text: string): boolean => {
-    const bytes = Buffer.from(text);
-    return reader.read(bytes, 0, bytes.length) !== 'unreadable';
-  };
   return header.map((name, place) => {
     const cells = rows.map(({ cells: row }) => (row[place] ?? '').trim());
     const filled = cells.filter((cell) => cell !== '' && cell.toLowerCase() !== 'null');
@@ -45,18 +37,19 @@ export function profileColumns({ header, rows }: Sample): ColumnProfile[] {
       header: name,
       words: wordsOf(name),
       filled: filled.length,
-      timeShare: share((cell) => !digits.test(cell) && isTime(cell)),
-      digitTimeShare: share((cell) => digits.test(cell) && isTime(cell)),
-      timeLikeShare: share(
-        (cell) => isTime(cell) || (!digits.test(cell) && numbersApart.test(cell)),
-      ),
-      numberShare: share((cell) => readDecimal(cell) !== null),
+      timeShare: share(isWrittenTime),
+      digitTimeShare: share((cell) => isDigits(cell) && isTime(cell)),
+      timeLikeShare: share((cell) => isTime(cell) || (!isDigits(cell) && numbersApart.test(cell))),
+      numberShare: share(isNumber),
       distinctShare: filled.length === 0 ? 0 : distinct / filled.length,
       distinct,
       cells,
     };
   });
 }
+
+const isNumber = (cell: string): boolean =>
+  readDecimal(cell, '.') !== null || readDecimal(cell, ',') !== null;
 
 /** Share of cells from which a column counts as holding something of a kind: exports have slips. */
 export const mostly = 0.8;

@@ -1,5 +1,8 @@
 import type { ColumnProfile } from './column-profile.ts';
-import type { StayColumn } from './shapes/stay-columns.ts';
+import type { OptionalColumn, TimeColumn } from '../../../shared/contracts/plan.ts';
+
+/** What a column can be guessed to hold. */
+export type GuessedColumn = 'job' | 'area' | TimeColumn | OptionalColumn | 'event' | 'time';
 
 /** Why one part of a guess was made, or what is missing. */
 export interface GuessReason {
@@ -9,7 +12,7 @@ export interface GuessReason {
 }
 
 /** Profiles of the columns that were found so far. */
-export type FoundColumns = Partial<Record<StayColumn, ColumnProfile>>;
+export type FoundColumns = Partial<Record<GuessedColumn, ColumnProfile>>;
 
 /** Whether a column was found to hold something already. */
 export const isTaken = (found: FoundColumns, profile: ColumnProfile): boolean =>

@@ -1,4 +1,4 @@
-import type { DateOrder } from '../../shared/contracts/plan.ts';
+import type { DateOrder } from '../../../shared/contracts/plan.ts';
 
 const dayAndMonth = /^\s*(\d{1,2})([./-])(\d{1,2})\2(?:\d{4}|\d{2})(?!\d)/;
 

@@ -1,0 +1,56 @@
+import type { ColumnPlan, FileKind } from '../../shared/contracts/plan.ts';
+import { IntakeFailure } from './failure.ts';
+import { kindOfFile } from './file-kind.ts';
+import { sampleBytes } from './limits.ts';
+import type { OpenedFile, Opener } from './opened-file.ts';
+import { openText } from './text/open-text.ts';
+
+/** What a plan says of the file itself; what it leaves out is detected. */
+export type FileWishes = Partial<Pick<ColumnPlan, 'encoding' | 'delimiter' | 'sheet'>>;
+
+const refuse = (kind: string) => (): never => {
+  throw new IntakeFailure('wrong-kind', `The file is ${kind}.`, 'Export it as CSV.');
+};
+
+const openers: Readonly<
+  Record<
+    FileKind,
+    (open: Opener, head: Head, wishes: FileWishes) => OpenedFile | Promise<OpenedFile>
+  >
+> = {
+  text: openText,
+  workbook: refuse('an XLSX workbook or another zip archive'),
+  xes: refuse('an XES log'),
+};
+
+/** The beginning of a file, as much as is looked at. */
+export interface Head {
+  bytes: Buffer;
+  /** Whether it is all of the file. */
+  isWhole: boolean;
+}
+
+/**
+ * Looks at the beginning of a file and tells how it can be read.
+ *
+ * @param isCut whether the bytes are only the beginning of a longer file
+ * @throws IntakeFailure where it is empty, of a kind that is not read, or broken
+ */
+export async function openFile(
+  open: Opener,
+  wishes: FileWishes,
+  isCut = false,
+): Promise<OpenedFile> {
+  const head = await readHead(open, isCut);
+  return openers[kindOfFile(head.bytes)](open, head, wishes);
+}
+
+async function readHead(open: Opener, isCut: boolean): Promise<Head> {
+  const blocks: Buffer[] = [];
+  let length = 0;
+  for await (const block of open()) {
+    length += blocks.push(block) && block.length;
+    if (length >= sampleBytes) return { bytes: Buffer.concat(blocks), isWhole: false };
+  }
+  return { bytes: Buffer.concat(blocks), isWhole: !isCut };
+}
