@@ -10,6 +10,7 @@ import { requestId, requestIdOf } from './http/middleware/request-id.ts';
 import { securityHeaders } from './http/middleware/security-headers.ts';
 import { registerAccessKeys } from './http/routes/access-keys.ts';
 import { registerAuth } from './http/routes/auth.ts';
+import { registerColumnPlans } from './http/routes/column-plans.ts';
 import { registerFigures } from './http/routes/figures.ts';
 import { registerDemo } from './http/routes/demo.ts';
 import { registerJobs } from './http/routes/jobs.ts';
@@ -55,6 +56,7 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   registerAuth(api);
   registerSites(api);
   registerUploads(api);
+  registerColumnPlans(api);
   registerZones(api);
   registerFigures(api);
   registerJobs(api);

@@ -111,17 +111,26 @@ const keyRow = z.object({
   site_id: z.number(),
 });
 
-/** The machine that holds an access key, or null where the key is unknown or revoked. */
+/** The machine that holds an access key, or null where the key is unknown, expired or revoked. */
 export async function findMachine(
   db: Database,
   key: string,
+  now: Date,
 ): Promise<(Actor & { kind: 'machine' }) | null> {
   const { rows } = await db.execute(sql`/* which machine asks */
     select id, organisation_id, site_id from access_key
-    where key_hash = ${hashAccessKey(key)} and revoked_at is null`);
+    where key_hash = ${hashAccessKey(key)} and revoked_at is null
+      and (expires_at is null or expires_at > ${now.toISOString()}::timestamptz)`);
   const [first] = rows;
   if (!first) return null;
   const row = keyRow.parse(first);
+  await db.execute(sql`/* last use of a key, to the minute */
+    update access_key set last_used_at = ${now.toISOString()}::timestamptz
+    where id = ${row.id}
+      and (
+        last_used_at is null
+        or last_used_at < ${now.toISOString()}::timestamptz - interval '1 minute'
+      )`);
   return {
     kind: 'machine',
     accessKeyId: row.id,

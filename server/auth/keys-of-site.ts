@@ -18,7 +18,7 @@ export async function keepKey(
   tx: Transaction,
   key: Pick<
     AccessKeyRow,
-    'organisationId' | 'siteId' | 'name' | 'keyHash' | 'createdBy' | 'createdAt'
+    'organisationId' | 'siteId' | 'name' | 'keyHash' | 'createdBy' | 'createdAt' | 'expiresAt'
   >,
 ): Promise<AccessKeyRow> {
   const [row] = await tx.insert(accessKey).values(key).returning();

@@ -21,6 +21,7 @@ const toldFields = {
   value: amount,
   resource: text,
   status: text,
+  ending: text,
   parent: text,
 };
 

@@ -16,6 +16,7 @@ const fields = [
   'value',
   'resource',
   'status',
+  'ending',
   'parent',
 ] as const;
 

@@ -24,7 +24,7 @@ export async function authenticate(
   const stranger = { actor: { kind: 'stranger' }, site: null, byKey: false } as const;
   const bearer = /^Bearer (\S+)$/i.exec(req.headers.authorization ?? '')?.[1];
   if (bearer !== undefined) {
-    const actor = await findMachine(deps.db, bearer);
+    const actor = await findMachine(deps.db, bearer, deps.clock.now());
     if (!actor) return stranger;
     const site = siteId === actor.siteId ? { siteId, organisationId: actor.organisationId } : null;
     return { actor, site, byKey: true };

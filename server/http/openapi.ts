@@ -72,6 +72,12 @@ function operation(contract: Contract) {
 
 function answer(contract: Contract) {
   if (contract.responseKind === 'empty') return { description: 'done' };
-  const type = contract.responseKind === 'csv' ? 'text/csv' : 'application/json';
+  const type = mediaTypes[contract.responseKind];
   return { description: contract.summary, content: { [type]: { schema: contract.response } } };
 }
+
+const mediaTypes = {
+  json: 'application/json',
+  csv: 'text/csv',
+  file: 'application/octet-stream',
+} as const;

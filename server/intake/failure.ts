@@ -31,3 +31,7 @@ export class IntakeFailure extends Error {
     this.advice = remedy === undefined ? wrong : `${wrong} ${remedy}`;
   }
 }
+
+/** The failure of an upload that a person stopped. */
+export const stopped = (): IntakeFailure =>
+  new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');

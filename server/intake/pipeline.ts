@@ -6,8 +6,8 @@ import type { AreaRegister } from './area-register.ts';
 import { setImmediate } from 'node:timers/promises';
 import { decideDateOrder } from './detect/decide-date-order.ts';
 import { detect } from './detect/detect.ts';
-import { IntakeFailure } from './failure.ts';
-import { openFile } from './open-file.ts';
+import { IntakeFailure, stopped } from './failure.ts';
+import { openAndRecognise, type KnownPlan } from './detect/recognise-plan.ts';
 import type { OpenedFile } from './opened-file.ts';
 import { readOriginal } from './original.ts';
 import { readingOf, shapeReaderOf, type Reading, type RowContext } from './reading.ts';
@@ -27,6 +27,8 @@ export interface ReadingInput extends Omit<RowContext, 'dateSystem'> {
   uploadId: number;
   /** The plan that was asked for, or null to have one guessed. */
   plan: ColumnPlan | null;
+  /** Plans of the site, to recognise the file by its header where none was asked for. */
+  savedPlans: readonly KnownPlan[];
   site: { timeZone: string };
   /** Connections on which the original is read. */
   db: Database;
@@ -73,8 +75,8 @@ export async function readIntoStage(
   input: ReadingInput,
 ): Promise<ReadingOutcome> {
   const open = () => readOriginal(input.db, input);
-  const file = await openFile(open, input.plan ?? {});
-  const reading = await prepareReading(input, file);
+  const { file, plan } = await openAndRecognise(open, input.plan, input.savedPlans);
+  const reading = await prepareReading({ ...input, plan }, file);
   const { shape, areas } = shapeReaderOf(reading, { ...input, dateSystem: file.dateSystem });
   const stage = await Stage.open(client, shape.stagedColumns);
   const reader = new StageReader(reading.headerLine, shape, stage);
@@ -120,8 +122,7 @@ async function readRows(
   const tell = async (): Promise<void> => {
     told = bytes;
     const goesOn = await onProgress({ rows: reader.tally.rowsRead, bytes });
-    if (!goesOn)
-      throw new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');
+    if (!goesOn) throw stopped();
   };
   for await (const taken of file.rows(reading, (row) => reader.take(row))) {
     bytes = taken;

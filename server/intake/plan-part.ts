@@ -1,10 +1,8 @@
-import { and, eq, isNull } from 'drizzle-orm';
 import { columnPlanSchema, type ColumnPlan } from '../../shared/contracts/plan.ts';
 import type { Problem } from '../../shared/errors.ts';
 import type { Database } from '../db/client.ts';
-import { columnPlan } from '../db/schema/uploads.ts';
-import { withTenant } from '../db/tenant.ts';
 import { ApiError } from '../errors.ts';
+import { listSavedPlans } from './column-plans.ts';
 import { IntakeFailure } from './failure.ts';
 import { compileTimePattern } from './times/time-pattern.ts';
 
@@ -26,25 +24,30 @@ export async function readPlanPart(
   return /^\d{1,9}$/.test(text) ? readSavedPlan(db, site, Number(text)) : parsePlan(text);
 }
 
+/**
+ * The plan that a request asks for: a whole one, the id of a saved one, or none.
+ *
+ * @throws ApiError where the site has no such plan
+ */
+export function planAskedFor(
+  db: Database,
+  site: { organisationId: number; siteId: number },
+  plan: ColumnPlan | number | undefined,
+): Promise<ColumnPlan | null> {
+  if (plan === undefined) return Promise.resolve(null);
+  return typeof plan === 'number'
+    ? readSavedPlan(db, site, plan)
+    : Promise.resolve(checkPlan(plan));
+}
+
 async function readSavedPlan(
   db: Database,
-  { organisationId, siteId }: { organisationId: number; siteId: number },
+  site: { organisationId: number; siteId: number },
   id: number,
 ): Promise<ColumnPlan> {
-  const [saved] = await withTenant(db, organisationId, (tx) =>
-    tx
-      .select({ plan: columnPlan.plan })
-      .from(columnPlan)
-      .where(
-        and(
-          eq(columnPlan.organisationId, organisationId),
-          eq(columnPlan.siteId, siteId),
-          eq(columnPlan.id, id),
-          isNull(columnPlan.retiredOn),
-        ),
-      ),
-  );
-  if (saved) return checkPlan(saved.plan);
+  const saved = await listSavedPlans(db, site);
+  const found = saved.find((plan) => plan.id === id);
+  if (found) return checkPlan(found.plan);
   throw refuse([{ field: 'plan', message: `The site has no saved column plan ${id}.` }]);
 }
 
@@ -60,7 +63,8 @@ function parsePlan(text: string): ColumnPlan {
   return checkPlan(told);
 }
 
-function checkPlan(told: unknown): ColumnPlan {
+/** @throws ApiError with everything that is wrong with a plan */
+export function checkPlan(told: unknown): ColumnPlan {
   const checked = columnPlanSchema.safeParse(told);
   if (!checked.success) {
     throw refuse(
@@ -71,10 +75,6 @@ function checkPlan(told: unknown): ColumnPlan {
     );
   }
   refuseUnreadablePattern(checked.data.timeFormat);
-  if (checked.data.mode === 'replace-period') {
-    const message = 'Files that replace a period are not taken yet; leave the mode at merge.';
-    throw new ApiError('not-built', message, { errors: [{ field: 'plan.mode', message }] });
-  }
   return checked.data;
 }
 

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { columnPlanSchema } from '../../shared/contracts/plan.ts';
+import { columnPlanSchema, fileKinds } from '../../shared/contracts/plan.ts';
 import { rowAccountSchema, type RowAccount, type Upload } from '../../shared/contracts/uploads.ts';
 import type { upload } from '../db/schema/uploads.ts';
 
@@ -8,6 +8,7 @@ export type UploadRow = Omit<typeof upload.$inferSelect, 'receivedBy' | 'receive
   receivedBy: string | null;
 };
 
+const fileKindSchema = z.enum(fileKinds);
 const failureSchema = z.object({ code: z.string(), detail: z.string() }).nullable();
 
 const emptyAccount: RowAccount = {
@@ -21,6 +22,7 @@ const emptyAccount: RowAccount = {
   skippedBy: {},
   refusedBy: {},
   warnings: {},
+  voided: 0,
 };
 
 /** An upload as it is answered. One that is still arriving is not answered at all. */
@@ -31,6 +33,7 @@ export function presentUpload(row: UploadRow): Upload {
     id: row.id,
     status,
     fileName: row.fileName,
+    fileKind: row.fileKind === null ? null : fileKindSchema.parse(row.fileKind),
     receivedAt: row.receivedAt.toISOString(),
     receivedBy: row.receivedBy,
     withdrawing: row.withdrawRequestedAt !== null && status !== 'withdrawn',

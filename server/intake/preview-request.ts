@@ -7,6 +7,7 @@ import { site } from '../db/schema/sites.ts';
 import { areaSpelling } from '../db/schema/zones.ts';
 import { withTenant } from '../db/tenant.ts';
 import { ApiError, invalidInput, notFound } from '../errors.ts';
+import { listSavedPlans } from './column-plans.ts';
 import { IntakeFailure } from './failure.ts';
 import { isZip } from './file-kind.ts';
 import { sampleBytes } from './limits.ts';
@@ -41,8 +42,16 @@ export async function previewRequest(
   const { plan: part } = request.body as { plan?: string };
   const plan = await readPlanPart(db, siteKey, part);
   const context = await readContext(db, siteKey);
+  const savedPlans = await listSavedPlans(db, siteKey);
   try {
-    return await previewOf({ bytes: head.bytes, isCut: head.isCut, plan, receivedAt, ...context });
+    return await previewOf({
+      bytes: head.bytes,
+      isCut: head.isCut,
+      plan,
+      receivedAt,
+      savedPlans,
+      ...context,
+    });
   } catch (error) {
     if (error instanceof IntakeFailure) {
       throw new ApiError('invalid-input', error.advice, {

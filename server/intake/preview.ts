@@ -4,7 +4,7 @@ import type { UploadPreview } from '../../shared/contracts/uploads.ts';
 import { rowReasonSentence } from '../../shared/row-reasons.ts';
 import { detect, type Detection } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
-import { openFile } from './open-file.ts';
+import { openAndRecognise, type KnownPlan } from './detect/recognise-plan.ts';
 import type { OpenedFile } from './opened-file.ts';
 import { readingOf, shapeReaderOf, type RowContext } from './reading.ts';
 import { warningsOf } from './row-account.ts';
@@ -23,6 +23,8 @@ export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
   /** Whether the file is longer than that. */
   isCut: boolean;
   plan: ColumnPlan | null;
+  /** Plans of the site, to recognise the file by its header where no plan is given. */
+  savedPlans: readonly KnownPlan[];
   timeZone: string;
 }
 
@@ -32,8 +34,10 @@ export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
  * @throws IntakeFailure where the file could not be read at all, or not by the plan
  */
 export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
-  const { bytes, isCut, plan, timeZone } = input;
-  const file = await openFile(() => blocksOf(bytes), plan ?? {}, isCut);
+  const { bytes, isCut, timeZone } = input;
+  const open = () => blocksOf(bytes);
+  const opened = await openAndRecognise(open, input.plan, input.savedPlans, isCut);
+  const { file, plan, recognised } = opened;
   const detection = detect({ file, plan, timeZone });
   return {
     fileKind: file.kind,
@@ -41,12 +45,16 @@ export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
     encoding: file.kind === 'text' ? (file.settled.encoding ?? 'utf-8') : null,
     sheets: [...file.sheets],
     header: detection.header,
+    recognised: recognised && { id: recognised.id, name: recognised.name },
     plan: detection.plan,
     dateOrder: detection.dateOrder,
-    reasons: detection.reasons,
+    reasons: [...recognisedReason(recognised), ...detection.reasons],
     rows: await previewRows(detection, file, { ...input, dateSystem: file.dateSystem }, isCut),
   };
 }
+
+const recognisedReason = (plan: KnownPlan | null) =>
+  plan ? [{ about: 'plan', reason: `The header is that of the column plan “${plan.name}”.` }] : [];
 
 /** The bytes as a stream; a copy, since a reading may change them in place. */
 const blocksOf = (bytes: Buffer): AsyncIterable<Buffer> => Readable.from([Buffer.from(bytes)]);

@@ -56,6 +56,7 @@ export class RowTally {
       skippedBy: Object.fromEntries(this.#skipped),
       refusedBy: Object.fromEntries(this.#refused),
       warnings: this.#warnings(),
+      voided: 0,
     };
   }
 

@@ -3,7 +3,9 @@ import type { Database, Transaction } from '../db/client.ts';
 import { accessKey, person } from '../db/schema/people.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
+import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import { conflict, notFound } from '../errors.ts';
+import { stopped, type IntakeFailure } from './failure.ts';
 import type { UploadKey } from './original.ts';
 import type { UploadRow } from './present-upload.ts';
 
@@ -72,18 +74,74 @@ export async function requestStop(
 ): Promise<WishedUpload> {
   const status = await lockStatus(tx, key);
   if (status === 'waiting') {
-    const error = { code: 'stopped', detail: 'The upload was stopped. Nothing of it was kept.' };
-    await tx
-      .update(upload)
-      .set({ status: 'failed', error, stopRequestedAt: now, finishedAt: now })
-      .where(isUpload(key));
-    return { id: key.uploadId, status: 'failed' };
+    const ended = await endUpload(tx, key, stopped(), now);
+    return { id: key.uploadId, status: ended };
   }
   if (status !== 'reading' && status !== 'loading') {
     throw conflict(`The upload is ${status}; there is nothing to stop.`);
   }
   await tx.update(upload).set({ stopRequestedAt: now }).where(isUpload(key));
   return { id: key.uploadId, status };
+}
+
+/**
+ * Ends an upload that was not taken in: it failed, or, where an earlier reading of it stands, that goes on
+ * standing. The plan is then again the one by which it was read.
+ *
+ * @returns the status it has now
+ */
+export async function endUpload(
+  tx: Transaction,
+  key: UploadKey,
+  failure: IntakeFailure,
+  now: Date,
+): Promise<'failed' | 'loaded'> {
+  const [row] = await tx
+    .update(upload)
+    .set({
+      status: sql`(case when ${upload.account} is null then 'failed' else 'loaded' end)::upload_status`,
+      error: sql`jsonb_build_object(
+        'code', ${failure.code}::text,
+        'detail', case when ${upload.account} is null then ${failure.message}::text
+          else ${`${failure.advice} What was loaded of it before stands.`}::text end
+      )`,
+      stopRequestedAt: null,
+      finishedAt: now,
+    })
+    .where(isUpload(key))
+    .returning({ status: upload.status });
+  return row?.status === 'loaded' ? 'loaded' : 'failed';
+}
+
+/**
+ * Asks that the original of a loaded upload be read again; until that is done what stands goes on standing.
+ *
+ * @param plan by which to read it, or null for the plan of before
+ * @throws ApiError where there is no such upload, or it is not loaded
+ */
+export async function requestReading(
+  tx: Transaction,
+  key: UploadKey,
+  plan: ColumnPlan | null,
+): Promise<WishedUpload> {
+  const status = await lockStatus(tx, key);
+  if (status !== 'loaded') {
+    throw conflict(
+      `The upload is ${status}; only one that is loaded can be read again. Upload the file anew.`,
+    );
+  }
+  await tx
+    .update(upload)
+    .set({
+      status: 'waiting',
+      attempts: 0,
+      error: null,
+      ...(plan
+        ? { planGiven: plan }
+        : { planGiven: sql`coalesce(${upload.plan}, ${upload.planGiven})` }),
+    })
+    .where(isUpload(key));
+  return { id: key.uploadId, status: 'waiting' };
 }
 
 /**

@@ -1,9 +1,15 @@
+import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import { recordAct } from '../audit/record-act.ts';
 import type { Actor } from '../auth/actor.ts';
 import type { Database } from '../db/client.ts';
 import { withTenant } from '../db/tenant.ts';
 import type { UploadKey } from './original.ts';
-import { requestStop, requestWithdrawal, type WishedUpload } from './site-uploads.ts';
+import {
+  requestReading,
+  requestStop,
+  requestWithdrawal,
+  type WishedUpload,
+} from './site-uploads.ts';
 
 /** Who wishes it, when, and in which request. */
 export interface Wish {
@@ -17,6 +23,20 @@ export function stopUpload(db: Database, key: UploadKey, wish: Wish): Promise<Wi
   return withTenant(db, key.organisationId, async (tx) => {
     const wished = await requestStop(tx, key, wish.at);
     await recordAct(tx, { ...key, ...wish, ...subject(key), action: 'upload.stop' });
+    return wished;
+  });
+}
+
+/** Asks that an upload be read again, and notes who asked. @throws ApiError where it cannot be */
+export function readUploadAgain(
+  db: Database,
+  key: UploadKey,
+  plan: ColumnPlan | null,
+  wish: Wish,
+): Promise<WishedUpload> {
+  return withTenant(db, key.organisationId, async (tx) => {
+    const wished = await requestReading(tx, key, plan);
+    await recordAct(tx, { ...key, ...wish, ...subject(key), action: 'upload.read-again' });
     return wished;
   });
 }

@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { deriveTouchedJobs } from '../flow/derive/derive.ts';
 import type { Derivation } from '../flow/derive/derivation.ts';
 import { createTouchedJobs } from '../flow/derive/told-rows.ts';
+import { touchJobsOfReplacedPeriod } from '../flow/derive/voided-rows.ts';
 
 /**
  * Takes an upload's rows out of the site, in the transaction of the derivation: what other uploads said
@@ -9,26 +10,37 @@ import { createTouchedJobs } from '../flow/derive/told-rows.ts';
  * original and its account stay.
  */
 export async function withdrawRows(derivation: Derivation, uploadId: number): Promise<void> {
+  await createTouchedJobs(derivation.tx);
+  await takeRowsOut(derivation, uploadId);
+  await deriveTouchedJobs(derivation);
+  await removeUnheardAreas(derivation);
+}
+
+/** Takes an upload's rows out and adds the jobs of which they told, or which they kept silent, to `touched_job`. */
+export async function takeRowsOut(derivation: Derivation, uploadId: number): Promise<void> {
   const { tx, organisationId, siteId } = derivation;
   const ofUpload = sql`organisation_id = ${organisationId} and site_id = ${siteId}
     and upload_id = ${uploadId}`;
-  await createTouchedJobs(tx);
+  await touchJobsOfReplacedPeriod(derivation, uploadId);
   await tx.execute(sql`/* touch jobs of an upload */
     insert into touched_job
     with withdrawn as (select job_key, record_key from upload_row where ${ofUpload})
     select job_key from withdrawn
     union
     select upload_row.job_key from upload_row join withdrawn using (record_key)
-    where organisation_id = ${organisationId} and site_id = ${siteId}`);
+    where organisation_id = ${organisationId} and site_id = ${siteId}
+    on conflict do nothing`);
   await tx.execute(sql`analyze touched_job`);
   await tx.execute(sql`/* withdraw rows */ delete from upload_row where ${ofUpload}`);
   await tx.execute(sql`/* withdraw areas */ delete from upload_area where ${ofUpload}`);
-  await deriveTouchedJobs(derivation);
-  await removeUnheardAreas(derivation);
 }
 
 /** Removes areas that were found in files of which none is left, unless a person made something of them. */
-async function removeUnheardAreas({ tx, organisationId, siteId }: Derivation): Promise<void> {
+export async function removeUnheardAreas({
+  tx,
+  organisationId,
+  siteId,
+}: Derivation): Promise<void> {
   await tx.execute(sql`/* remove unheard areas */
     delete from zone using area
     where zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}

@@ -1,7 +1,6 @@
-import { and, eq } from 'drizzle-orm';
-import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
 import { IntakeFailure } from '../intake/failure.ts';
+import { endUpload } from '../intake/site-uploads.ts';
 import type { SiteTask } from './site-work.ts';
 
 /** After so many broken-off attempts an upload is given up. */
@@ -15,25 +14,16 @@ export async function failUpload(task: SiteTask, uploadId: number, error: unknow
   if (isLostConnection(error)) throw error;
   const failure =
     error instanceof IntakeFailure
-      ? { code: error.code as string, detail: error.message }
-      : {
-          code: 'internal-error',
-          detail:
-            'Something went wrong while this file was read. Nothing of it was kept. Upload it again, or tell your administrator: the log names this upload.',
-        };
+      ? error
+      : new IntakeFailure(
+          'internal-error',
+          'Something went wrong while this file was read.',
+          'Upload it again, or tell your administrator: the log names this upload.',
+        );
   if (failure.code === 'internal-error') task.log.error({ err: error, uploadId }, 'upload failed');
   const { organisationId, siteId } = task;
   await withTenant(task.db, organisationId, (tx) =>
-    tx
-      .update(upload)
-      .set({ status: 'failed', error: failure, finishedAt: task.clock.now() })
-      .where(
-        and(
-          eq(upload.organisationId, organisationId),
-          eq(upload.siteId, siteId),
-          eq(upload.id, uploadId),
-        ),
-      ),
+    endUpload(tx, { organisationId, siteId, uploadId }, failure, task.clock.now()),
   );
 }
 

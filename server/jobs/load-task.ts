@@ -5,15 +5,13 @@ import { areaSpelling } from '../db/schema/zones.ts';
 import { site } from '../db/schema/sites.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
-import { IntakeFailure } from '../intake/failure.ts';
+import { listSavedPlans } from '../intake/column-plans.ts';
+import { IntakeFailure, stopped } from '../intake/failure.ts';
 import { loadStagedRows } from '../intake/load.ts';
 import { readIntoStage } from '../intake/pipeline.ts';
 import { inDerivation } from './derivation-of-site.ts';
 import { attemptLimit } from './fail-upload.ts';
 import type { SiteTask } from './site-work.ts';
-
-const stopped = () =>
-  new IntakeFailure('stopped', 'The upload was stopped. Nothing of it was kept.');
 
 /**
  * Takes one upload in: reads its file into the stage, then loads the stage in one transaction. Whatever
@@ -38,18 +36,22 @@ export async function loadUpload(task: SiteTask, uploadId: number): Promise<void
     plan: begun.planGiven === null ? null : columnPlanSchema.parse(begun.planGiven),
     site: { timeZone: begun.timeZone },
     knownAreas: begun.knownAreas,
+    savedPlans: await listSavedPlans(task.db, task),
     db: task.db,
     onProgress: (progress) => keepProgress(task, uploadId, progress),
   });
-  await setUpload(task, uploadId, { status: 'loading', plan: outcome.plan });
+  const isAgain = begun.account !== null;
+  const { plan, fileKind } = outcome;
+  await setUpload(task, uploadId, { status: 'loading', fileKind, ...(isAgain ? {} : { plan }) });
   await cancelledByStop(task, uploadId, () =>
     inDerivation(task.connection, organisationId, siteId, async (derivation) => {
-      const account = await loadStagedRows(derivation, { uploadId, ...outcome });
+      const account = await loadStagedRows(derivation, { uploadId, isAgain, ...outcome });
       await derivation.tx
         .update(upload)
         // Last: until here the upload's row is free for whoever asks for a stop.
         .set({
           status: 'loaded',
+          plan,
           account,
           latestAt: outcome.latestAt,
           finishedAt: task.clock.now(),

@@ -6,6 +6,10 @@ export const accessKeySchema = z.object({
   id: z.int(),
   name: z.string(),
   createdAt: instantSchema,
+  /** From then on it opens nothing; null where it does not expire. */
+  expiresAt: instantOrNull,
+  /** To the minute. */
+  lastUsedAt: instantOrNull,
   revokedAt: instantOrNull,
 });
 
@@ -26,7 +30,7 @@ export const createAccessKey = contract({
   summary: 'Makes an access key for a machine; the key itself is shown this once',
   action: 'access-key.create',
   params: siteParams,
-  body: z.object({ name: nameSchema }),
+  body: z.object({ name: nameSchema, expiresAt: instantOrNull.optional() }),
   response: accessKeySchema.extend({ key: z.string() }),
   status: 201,
 });

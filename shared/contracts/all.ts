@@ -1,5 +1,6 @@
 import * as accessKeys from './access-keys.ts';
 import * as auth from './auth.ts';
+import * as columnPlans from './column-plans.ts';
 import type { Contract } from './contract.ts';
 import * as demo from './demo.ts';
 import * as figures from './figures.ts';
@@ -15,6 +16,7 @@ export const contracts: readonly Contract[] = [
   auth,
   sites,
   uploads,
+  columnPlans,
   zones,
   figures,
   jobs,

@@ -26,7 +26,7 @@ export interface Contract<
   /** `json` unless said otherwise; a multipart body is read by the route itself. */
   bodyKind: 'none' | 'json' | 'multipart';
   response: Response;
-  responseKind: 'json' | 'csv' | 'empty';
+  responseKind: 'json' | 'csv' | 'file' | 'empty';
   status: 200 | 201 | 202 | 204;
 }
 

@@ -26,6 +26,8 @@ export const rowAccountSchema = z.object({
   skippedBy: counts,
   refusedBy: counts,
   warnings: counts,
+  /** Rows of earlier uploads that it voided, being the whole truth for its areas over its span; no rows of its own. */
+  voided: z.int().default(0),
 });
 export type RowAccount = z.infer<typeof rowAccountSchema>;
 
@@ -33,6 +35,8 @@ export const uploadSchema = z.object({
   id: z.int(),
   status: z.enum(uploadStatuses),
   fileName: z.string(),
+  /** What the file turned out to be; null until it was looked at. */
+  fileKind: z.enum(fileKinds).nullable(),
   receivedAt: instantSchema,
   receivedBy: z.string().nullable(),
   /** True from the request to withdraw until it is done. */
@@ -128,6 +132,35 @@ export const stopUpload = contract({
   status: 202,
 });
 
+export const readUploadAgain = contract({
+  name: 'readUploadAgain',
+  method: 'post',
+  path: '/api/sites/:siteId/uploads/:uploadId/read-again',
+  summary:
+    'Reads the original again, by another plan or with the areas that are known by now, in place',
+  action: 'upload.read-again',
+  params: uploadParams,
+  body: z.object({
+    plan: z
+      .union([columnPlanSchema, z.int().min(1)])
+      .optional()
+      .describe('a column plan, or the id of a saved one; the same as before when left out'),
+  }),
+  response: uploadStub,
+  status: 202,
+});
+
+export const readOriginal = contract({
+  name: 'readOriginal',
+  method: 'get',
+  path: '/api/sites/:siteId/uploads/:uploadId/original',
+  summary: 'The file as it came',
+  action: 'upload.read',
+  params: uploadParams,
+  response: z.string(),
+  responseKind: 'file',
+});
+
 export const withdrawUpload = contract({
   name: 'withdrawUpload',
   method: 'delete',
@@ -160,7 +193,9 @@ export const previewUpload = contract({
     /** Names of the sheets of a workbook. */
     sheets: z.array(z.string()),
     header: z.array(z.string()),
-    /** The plan that was given, or the guess; null where no guess could be made. */
+    /** The saved plan that was recognised by the header, where no plan was given. */
+    recognised: z.object({ id: z.int(), name: z.string() }).nullable(),
+    /** The plan that was given, or the one that was recognised, or the guess; null where no guess could be made. */
     plan: columnPlanSchema.nullable(),
     /** `unknown` where the beginning of the file does not tell day and month apart. */
     dateOrder: z.enum([...dateOrders, 'unknown']).nullable(),

@@ -27,7 +27,7 @@ export async function call<C extends Contract>(
     throw new ApiError(problemOfText(response.status, text));
   }
   if (contract.responseKind === 'empty') return undefined as z.output<C['response']>;
-  const answer: unknown = contract.responseKind === 'csv' ? text : JSON.parse(text);
+  const answer: unknown = contract.responseKind !== 'json' ? text : JSON.parse(text);
   return contract.response.parse(answer) as z.output<C['response']>;
 }
 

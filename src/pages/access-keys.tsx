@@ -1,4 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
+import { addDays } from 'date-fns';
 import { useState } from 'react';
 import { Form } from 'react-aria-components';
 import { ApiError } from '../api/api-error.ts';
@@ -14,8 +15,19 @@ import { EmptyState } from '../ui/empty-state.tsx';
 import { PageHeading, PanelHeading, Sentence } from '../ui/heading.tsx';
 import { Loading } from '../ui/loading.tsx';
 import { Notice, ProblemNotice } from '../ui/notice.tsx';
+import { Select } from '../ui/select.tsx';
 import { TextField } from '../ui/text-field.tsx';
 import { useSiteOfPage, useTitle } from './use-page.ts';
+
+const never = '';
+const expiries = [
+  { value: '90', label: 'in 90 days' },
+  { value: '365', label: 'in a year' },
+  { value: never, label: 'never' },
+];
+
+const expiryOf = (days: string): string | null =>
+  days === never ? null : addDays(new Date(), Number(days)).toISOString();
 
 export function Component() {
   useTitle('Access keys');
@@ -24,6 +36,7 @@ export function Component() {
   const create = useCreateAccessKey(site.id);
   const revoke = useRevokeAccessKey(site.id);
   const [name, setName] = useState('');
+  const [days, setDays] = useState('365');
   return (
     <div className="flex max-w-3xl flex-col gap-6">
       <PageHeading>Access keys</PageHeading>
@@ -34,10 +47,11 @@ export function Component() {
         className="flex flex-wrap items-end gap-3"
         onSubmit={(event) => {
           event.preventDefault();
-          create.mutate(name, { onSuccess: () => setName('') });
+          create.mutate({ name, expiresAt: expiryOf(days) }, { onSuccess: () => setName('') });
         }}
       >
         <TextField label="What the key is for" isRequired value={name} onChange={setName} />
+        <Select label="Expires" value={days} choices={expiries} onChange={setDays} />
         <Button type="submit" kind="main" isDisabled={create.isPending}>
           Make an access key
         </Button>
@@ -68,6 +82,12 @@ export function Component() {
                 <strong>{key.name}</strong>{' '}
                 <span className="text-soft">
                   made {formatMoment(key.createdAt, site.timeZone)}
+                  {key.lastUsedAt
+                    ? `, last used ${formatMoment(key.lastUsedAt, site.timeZone)}`
+                    : ', not used yet'}
+                  {key.expiresAt && !key.revokedAt
+                    ? `, ${new Date(key.expiresAt) > new Date() ? 'expires' : 'expired'} ${formatMoment(key.expiresAt, site.timeZone)}`
+                    : ''}
                   {key.revokedAt ? `, revoked ${formatMoment(key.revokedAt, site.timeZone)}` : ''}
                 </span>
               </span>

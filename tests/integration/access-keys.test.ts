@@ -30,6 +30,8 @@ describe('an access key', () => {
       id,
       name: 'line 3',
       createdAt: '2026-11-30T12:00:00.000Z',
+      expiresAt: null,
+      lastUsedAt: null,
       revokedAt: null,
     });
     expect(JSON.stringify(listed.body)).not.toContain(key);
@@ -54,6 +56,28 @@ describe('an access key', () => {
     expect(read.body).toMatchObject({ status: 'loaded', account: { new: 1 } });
     const [entry] = await auditOf(test, 'upload.create', (sent.body as { id: number }).id);
     expect(entry).toMatchObject({ accessKeyId: id, personId: null });
+  });
+
+  it('tells when it was used last, to the minute', async () => {
+    const { key, id } = await make('counted');
+    await upload(key).expect(202);
+    const listed = (await admin.get(path).expect(200)).body as { id: number; lastUsedAt: string }[];
+    expect(listed.find((each) => each.id === id)?.lastUsedAt).toBe('2026-11-30T12:00:00.000Z');
+    await test.settled();
+  });
+
+  it('opens nothing once it has expired', async () => {
+    const expiresAt = '2026-12-30T12:00:00.000Z';
+    const made = await admin.post(path).send({ name: 'for a month', expiresAt }).expect(201);
+    const { key } = made.body as { key: string };
+    await upload(key).expect(202);
+    await test.settled();
+    const before = test.clock.now();
+    test.clock.set(new Date(expiresAt));
+    await upload(key).expect(401);
+    test.clock.set(before);
+    const late = { name: 'too late', expiresAt: '2026-01-01T00:00:00Z' };
+    expect(fieldsOf(await admin.post(path).send(late).expect(400))).toEqual(['expiresAt']);
   });
 
   it('opens no other site, nothing else of its own, and nothing that a cookie beside it would', async () => {

@@ -59,6 +59,7 @@ async function read(file: string | Buffer, more: Partial<ReadingInput> = {}) {
     plan: null,
     site: { timeZone: 'Europe/Dublin' },
     knownAreas: new Map(),
+    savedPlans: [],
     db: site.db,
     onProgress: () => Promise.resolve(true),
     ...more,
@@ -321,6 +322,7 @@ test('a lost connection ends the reading with its error', async () => {
     plan: null,
     site: { timeZone: 'UTC' },
     knownAreas: new Map(),
+    savedPlans: [],
     db: site.db,
     onProgress: async () => {
       const { rows } = await client.query(`select pg_terminate_backend(pid) from pg_stat_activity

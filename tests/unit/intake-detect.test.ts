@@ -168,6 +168,7 @@ describe('the preview', () => {
       timeZone: 'UTC',
       receivedAt: new Date('2026-06-01T00:00:00Z'),
       knownAreas: new Map(),
+      savedPlans: [],
     });
 
   test('shows the first rows as they would be read', async () => {

@@ -77,6 +77,10 @@ export const accessKey = pgTable('access_key', {
   keyHash: text().notNull().unique(),
   createdBy: integer().references(() => person.id),
   createdAt: instant().notNull(),
+  /** From then on it opens nothing; null where it does not expire. */
+  expiresAt: instant(),
+  /** To the minute. */
+  lastUsedAt: instant(),
   revokedAt: instant(),
 });
 

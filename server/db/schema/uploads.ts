@@ -14,6 +14,7 @@ import {
   primaryKey,
   smallint,
   text,
+  uniqueIndex,
   type AnyPgColumn,
 } from 'drizzle-orm/pg-core';
 import { accessKey, person } from './people.ts';
@@ -218,6 +219,9 @@ export const columnPlan = pgTable(
   },
   (table) => [
     primaryKey({ columns: [table.organisationId, table.siteId, table.id] }),
+    uniqueIndex('column_plan_name_once')
+      .on(table.organisationId, table.siteId, sql`lower(${table.name})`)
+      .where(sql`${table.retiredOn} is null`),
     toSite(table),
     tenantPolicy(),
   ],

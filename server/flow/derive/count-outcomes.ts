@@ -16,6 +16,7 @@ const columns = [
   'value',
   'resource',
   'status',
+  'ending',
   'parent',
 ] as const;
 
@@ -37,7 +38,8 @@ const each = (of: (column: SQL) => SQL, by: SQL): SQL =>
 /**
  * What the rows of one upload did to the records: the first row of a record is new; a later one corrects
  * where it gives another value than was given last, completes where it gives what was blank, and is the
- * same otherwise. Needs `told_row`.
+ * same otherwise. Of events, those of a record that the upload itself brought are new: each tells a part of
+ * it. Needs `told_row`.
  */
 export async function countOutcomes(
   { tx, organisationId, siteId }: Derivation,
@@ -62,6 +64,7 @@ export async function countOutcomes(
     compared as (
       select
         repeated.upload_id, repeated.version,
+        event is not null and repeated.upload_id = first_upload as begins,
         ${each(
           (column) => sql`${column} is not null and ${column} is distinct from lag(${column}) over (
             partition by ${record}, ${column} is null order by version
@@ -92,12 +95,13 @@ export async function countOutcomes(
     judged as (
       select
         count(*) filter (where corrects) as correcting,
-        count(*) filter (where completes and not corrects) as completing
+        count(*) filter (where completes and not corrects and not begins) as completing,
+        count(*) filter (where completes and not corrects and begins) as beginning
       from compared where upload_id = ${uploadId} and version > 1
     )
     select
-      total - retelling as new, completing, correcting,
-      retelling - completing - correcting as same
+      total - retelling + beginning as new, completing, correcting,
+      retelling - beginning - completing - correcting as same
     from told cross join judged`);
   return outcomeRow.parse(rows[0]);
 }

@@ -11,4 +11,14 @@ export interface Derivation {
   inferLostFinish: boolean;
   /** A job key that returns after an idle gap of more days is a new pass. */
   newPassAfterDays: number;
+  /** What the rows told so far are; set where they are gathered. */
+  told?: ToldKinds;
+}
+
+/** Kinds of told rows that most sites have none of, so that looking after them can be left out. */
+export interface ToldKinds {
+  /** Some rows tell one event each. */
+  events: boolean;
+  /** Some upload is the whole truth for its areas over its span. */
+  replaced: boolean;
 }

@@ -6,8 +6,8 @@ import { keyedRows } from './told-rows.ts';
 
 /**
  * Temporary table `merged_record`: the records of the touched jobs as they now stand, in the columns of
- * `record`. Of each field the last given value holds, so a given value beats a blank in any order.
- * Needs `told_row`.
+ * `record`, and whether each overlaps an earlier one of the job. Of each field the last given value holds,
+ * so a given value beats a blank in any order. Needs `told_row`.
  */
 export async function mergeRecords(derivation: Derivation): Promise<void> {
   await foldVersions(derivation);
@@ -43,6 +43,7 @@ async function foldVersions({ tx }: Derivation): Promise<void> {
         array_agg(value) filter (where value is not null) as value,
         array_agg(resource) filter (where resource is not null) as resource,
         array_agg(status) filter (where status is not null) as status,
+        array_agg(ending) filter (where ending is not null) as ending,
         array_agg(parent) filter (where parent is not null) as parent
       from in_order group by first_upload, first_line, first_part
     ),
@@ -63,6 +64,7 @@ async function foldVersions({ tx }: Derivation): Promise<void> {
         value[array_upper(value, 1)] as value,
         resource[array_upper(resource, 1)] as resource,
         status[array_upper(status, 1)] as status,
+        ending[array_upper(ending, 1)] as ending,
         parent[array_upper(parent, 1)] as parent
       from last_given
     ),
@@ -86,7 +88,7 @@ async function foldVersions({ tx }: Derivation): Promise<void> {
     )
     select
       job_key, area_id, arrived, started, finished,
-      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
       upload_id, line, part
     from folded join source using (first_upload, first_line, first_part)`);
 }
@@ -109,7 +111,7 @@ async function chainRecords(derivation: Derivation): Promise<void> {
     every_record as (
       select
         job_key, area_id, arrived, started, finished,
-        record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+        record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
         upload_id, line, part
       from keyed
       where not exists (
@@ -131,6 +133,8 @@ async function chainRecords(derivation: Derivation): Promise<void> {
         *,
         coalesce(
           finished,
+          -- A stay that ended otherwise, at no time that is told, ended at the latest that is known of it.
+          case when ending is not null then coalesce(started, arrived) end,
           case when ${inferLostFinish}::boolean then min(started) over (
             partition by job_key order by about desc
             groups between unbounded preceding and 1 preceding
@@ -181,15 +185,16 @@ async function chainRecords(derivation: Derivation): Promise<void> {
       select
         *,
         coalesce(arrived, case when latest_left > wanted then null else coalesce(latest_left, started) end)
-          as entered
+          as entered,
+        coalesce(latest_left > started, false) as overlapping
       from in_pass
     )
     select
       job_key, ordinal, area_id, pass, arrived, started, finished,
-      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
       upload_id, line, part,
       entered, left_at, finish_inferred,
-      ${stayFrom} as stay_from, ${lengthClass} as length_class
+      ${stayFrom} as stay_from, ${lengthClass} as length_class, overlapping
     from met join zone on zone.id = area_id
     where zone.organisation_id = ${derivation.organisationId} and zone.site_id = ${derivation.siteId}`);
 }

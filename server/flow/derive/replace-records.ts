@@ -17,17 +17,25 @@ export async function findChangedJobs(derivation: Derivation): Promise<void> {
   }
   await tx.execute(sql`/* changed jobs */
     create temp table changed_job on commit drop as
-    with standing as (
+    with merged as (
       select
         job_key, ordinal, area_id, pass, arrived, started, finished,
-        record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+        record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
+        upload_id, line, part,
+        entered, left_at, finish_inferred, stay_from, length_class
+      from merged_record
+    ),
+    standing as (
+      select
+        job_key, ordinal, area_id, pass, arrived, started, finished,
+        record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
         upload_id, line, part,
         entered, left_at, finish_inferred, stay_from, length_class
       from record join touched_job using (job_key)
       where organisation_id = ${organisationId} and site_id = ${siteId}
     )
     select distinct coalesce(merged.job_key, standing.job_key) as job_key
-    from merged_record as merged full join standing
+    from merged full join standing
       on standing.job_key = merged.job_key and standing.ordinal = merged.ordinal
     where merged.* is distinct from standing.*`);
   await finishChangedJobs(tx);
@@ -61,14 +69,14 @@ export async function replaceRecords({ tx, organisationId, siteId }: Derivation)
     insert into record (
       organisation_id, site_id,
       job_key, ordinal, area_id, pass, arrived, started, finished,
-      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
       upload_id, line, part,
       entered, left_at, finish_inferred, stay_from, length_class
     )
     select
       ${organisationId}, ${siteId},
       job_key, ordinal, area_id, pass, arrived, started, finished,
-      record_key, quantity, family, due, priority, work_content, value, resource, status, parent,
+      record_key, quantity, family, due, priority, work_content, value, resource, status, ending, parent,
       upload_id, line, part,
       entered, left_at, finish_inferred, stay_from, length_class
     from merged_record

@@ -33,7 +33,7 @@ export async function replaceStays(
 
 const columns = sql`
   zone.id as zone_id, record.job_key, record.ordinal, record.pass, record.started, record.left_at,
-  record.finish_inferred, record.quantity, record.upload_id, record.line,
+  record.finish_inferred, record.ending, record.quantity, record.upload_id, record.line,
   case zone.counts_from when 'start' then record.started else record.entered end as counted_from`;
 
 /** The records of jobs in the whole site: within a pass a job does not leave it. */
@@ -67,7 +67,7 @@ async function insertStays(
     insert into stay (
       organisation_id, site_id, job_key, zone_id, ordinal,
       entered, started, left_at, length_class, process_microseconds, process_from, process_to,
-      quantity, finish_inferred, upload_id, line
+      quantity, finish_inferred, ending, upload_id, line
     )
     with island as (${islands}),
     swept as (
@@ -106,6 +106,7 @@ async function insertStays(
             > coalesce(max(left_at) filter (where not finish_inferred), '-infinity'),
           false
         ) as finish_inferred,
+        (array_agg(ending))[count(*)] as ending,
         (array_agg(upload_id))[count(*)] as upload_id,
         (array_agg(line))[count(*)] as line
       from stretch
@@ -116,7 +117,7 @@ async function insertStays(
       row_number() over (partition by zone_id, job_key order by pass, gaps),
       entered, started, left_at, length_class(entered, left_at),
       process_microseconds, process_from, process_to,
-      quantity, finish_inferred, upload_id, line
+      quantity, finish_inferred, ending, upload_id, line
     from whole
     where entered is not null`);
 }

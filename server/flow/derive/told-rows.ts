@@ -1,5 +1,8 @@
 import { sql, type SQL } from 'drizzle-orm';
-import type { Derivation } from './derivation.ts';
+import { z } from 'zod';
+import type { Derivation, ToldKinds } from './derivation.ts';
+import { pairEvents } from './pair-events.ts';
+import { isVoided } from './voided-rows.ts';
 
 /** Gathers in temporary table `touched_job` every job of the site, for a rebuild. */
 export async function touchEveryJob({ tx, organisationId, siteId }: Derivation): Promise<void> {
@@ -33,12 +36,14 @@ export async function createTouchedJobs(tx: Derivation['tx']): Promise<void> {
  */
 export async function gatherToldRows(derivation: Derivation): Promise<void> {
   const { tx } = derivation;
+  derivation.told = await readToldKinds(derivation);
   await tx.execute(sql`drop table if exists begun, retold, told_row`);
+  if (derivation.told.events) await pairEvents(derivation, sql`with ${toldRows(derivation)}`);
   await tx.execute(sql`/* first start told of each arrival */
     create temp table begun on commit drop as
     with ${toldRows(derivation)}
     select job_key, area_id, arrived, min(started) as started
-    from told where arrived is not null and started is not null
+    from told where arrived is not null and started is not null and event is null
     group by job_key, area_id, arrived`);
   await tx.execute(sql`analyze begun`);
   await tx.execute(sql`/* records told of more than once */
@@ -93,25 +98,75 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
   await tx.execute(sql`analyze told_row`);
 }
 
-/** CTE `told`: every row told of a touched job. Read again wherever it is named: that costs less than keeping it. */
-const toldRows = ({ organisationId, siteId }: Derivation): SQL => sql`
+/** Which kinds of rows the site's uploads hold. */
+export async function readToldKinds(derivation: Derivation): Promise<ToldKinds> {
+  const { tx, organisationId, siteId } = derivation;
+  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  const { rows } = await tx.execute(sql`/* kinds of told rows */
+    select
+      exists (
+          select from upload
+          where ${ofSite} and 'event' in (plan ->> 'shape', plan_given ->> 'shape')
+        ) as events,
+      exists (
+        select from upload_area where ${ofSite} and replaces_from is not null
+      ) as replaced`);
+  return z.object({ events: z.boolean(), replaced: z.boolean() }).parse(rows[0]);
+}
+
+/**
+ * CTE `told`: every row told of a touched job that no later upload voids. Read again wherever it is named:
+ * that costs less than keeping it.
+ */
+const toldRows = ({ organisationId, siteId, told }: Derivation): SQL => sql`
   told as not materialized (
     select told.*
     from upload_row as told join touched_job using (job_key)
-    where organisation_id = ${organisationId} and site_id = ${siteId}
+    where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
+      ${told?.replaced ? sql`and not ${isVoided(organisationId, siteId)}` : sql``}
   )`;
+
+const rest = sql`
+  told.quantity, told.family, told.due, told.priority, told.work_content, told.value, told.resource,
+  told.status, told.ending, told.parent`;
 
 /** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. Needs `begun`. */
 export const keyedRows = (derivation: Derivation): SQL => sql`
   ${toldRows(derivation)},
   keyed as not materialized (
-    select
-      told.*,
-      coalesce(told.started, begun.started, told.arrived, told.finished) as about
-    from told
-    left join begun
-      on told.started is null
-      and begun.job_key = told.job_key
-      and begun.area_id = told.area_id
-      and begun.arrived = told.arrived
+    ${derivation.told?.events ? keyedWithEvents : keyedStays}
   )`;
+
+const begunThere = sql`
+  left join begun
+    on told.started is null
+    and begun.job_key = told.job_key
+    and begun.area_id = told.area_id
+    and begun.arrived = told.arrived`;
+
+const keyedStays = sql`
+  select
+    told.job_key, told.area_id, told.upload_id, told.line, told.part, told.event,
+    told.arrived, told.started, told.finished, told.record_key, ${rest},
+    coalesce(told.started, begun.started, told.arrived, told.finished) as about
+  from told ${begunThere}`;
+
+/** An event belongs to the record that pairing found; its own id tells the event, not the record. */
+const keyedWithEvents = sql`
+  select
+    coalesce(paired.job_key, told.job_key) as job_key,
+    coalesce(paired.area_id, told.area_id) as area_id,
+    told.upload_id, told.line, told.part, told.event,
+    told.arrived, told.started, coalesce(paired.finished, told.finished) as finished,
+    case when told.event is null then told.record_key end as record_key, ${rest},
+    case
+      when paired.about is null
+        then coalesce(told.started, begun.started, told.arrived, told.finished)
+      when paired.about = told.arrived then coalesce(begun.started, paired.about)
+      else paired.about
+    end as about
+  from told
+  left join paired_event as paired
+    on told.event is not null
+    and paired.upload_id = told.upload_id and paired.line = told.line and paired.part = told.part
+  ${begunThere}`;

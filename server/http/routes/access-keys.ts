@@ -7,6 +7,7 @@ import { recordAct } from '../../audit/record-act.ts';
 import { newAccessKey } from '../../auth/access-key.ts';
 import { keepKey, listKeysOfSite, revokeKey, type AccessKeyRow } from '../../auth/keys-of-site.ts';
 import { withTenant } from '../../db/tenant.ts';
+import { invalidInput } from '../../errors.ts';
 import { actOf } from '../act-of.ts';
 import type { Api } from '../api.ts';
 
@@ -14,6 +15,8 @@ const present = (row: AccessKeyRow) => ({
   id: row.id,
   name: row.name,
   createdAt: row.createdAt.toISOString(),
+  expiresAt: row.expiresAt?.toISOString() ?? null,
+  lastUsedAt: row.lastUsedAt?.toISOString() ?? null,
   revokedAt: row.revokedAt?.toISOString() ?? null,
 });
 
@@ -33,6 +36,7 @@ export function registerAccessKeys({ route, deps }: Api): void {
         keyHash,
         createdBy: actor.kind === 'person' ? actor.personId : null,
         createdAt: clock.now(),
+        expiresAt: expiryOf(body.expiresAt, clock.now()),
       });
       await recordAct(tx, {
         ...actOf(call, clock),
@@ -59,4 +63,14 @@ export function registerAccessKeys({ route, deps }: Api): void {
       return present(after);
     }),
   );
+}
+
+/** @throws ApiError where the key would have expired already */
+function expiryOf(told: string | null | undefined, now: Date): Date | null {
+  if (!told) return null;
+  const at = new Date(told);
+  if (at > now) return at;
+  throw invalidInput('The access key would have expired already. No key was made.', [
+    { field: 'expiresAt', message: 'Give a time to come, or none.' },
+  ]);
 }

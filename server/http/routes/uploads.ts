@@ -4,8 +4,10 @@ import {
   createUpload,
   listUploads,
   previewUpload,
+  readOriginal as readOriginalCall,
   readRefusedRows,
   readUpload,
+  readUploadAgain,
   readUploadRow,
   stopUpload,
   withdrawUpload,
@@ -13,6 +15,7 @@ import {
 import { columnPlanSchema } from '../../../shared/contracts/plan.ts';
 import { notFound } from '../../errors.ts';
 import { readOriginal } from '../../intake/original.ts';
+import { planAskedFor } from '../../intake/plan-part.ts';
 import { presentUpload } from '../../intake/present-upload.ts';
 import { previewRequest } from '../../intake/preview-request.ts';
 import { receiveUpload } from '../../intake/receive-upload.ts';
@@ -58,6 +61,22 @@ export function registerUploads({ route, deps }: Api): void {
   });
 
   route(stopUpload, (call) => wishes.stopUpload(db, keyOf(call), wishOf(call)));
+
+  route(readUploadAgain, async (call) => {
+    const key = keyOf(call);
+    const plan = await planAskedFor(db, key, call.body.plan);
+    const wished = await wishes.readUploadAgain(db, key, plan, wishOf(call));
+    await queue.wake(call.organisationId, call.siteId);
+    return wished;
+  });
+
+  route(readOriginalCall, async (call) => {
+    const key = keyOf(call);
+    const { fileName } = await findUpload(db, key);
+    call.res.status(200).attachment(fileName).type('application/octet-stream');
+    await pipeline(Readable.from(readOriginal(db, key)), call.res);
+    return '';
+  });
 
   route(withdrawUpload, async (call) => {
     const wished = await wishes.withdrawUpload(db, keyOf(call), wishOf(call));

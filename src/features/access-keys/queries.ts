@@ -15,7 +15,8 @@ export const accessKeysQuery = (siteId: number) =>
 export function useCreateAccessKey(siteId: number) {
   const client = useQueryClient();
   return useMutation({
-    mutationFn: (name: string) => call(createAccessKey, { params: { siteId }, body: { name } }),
+    mutationFn: (body: { name: string; expiresAt: string | null }) =>
+      call(createAccessKey, { params: { siteId }, body }),
     onSuccess: () => client.invalidateQueries(accessKeysQuery(siteId)),
   });
 }
