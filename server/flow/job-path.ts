@@ -1,5 +1,8 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
+import type { ToldSource } from './derive/derivation.ts';
+import { createTouchedJobs, gatherToldRows, keyedRows } from './derive/told-rows.ts';
+import { isTruthFor } from './derive/voided-rows.ts';
 import type { SiteReader } from './zone-reader.ts';
 
 const date = z.coerce.date().nullable();
@@ -21,7 +24,7 @@ const toldFields = {
   value: amount,
   resource: text,
   status: text,
-  ending: text,
+  ending: z.enum(['scrapped', 'cancelled']).nullable(),
   parent: text,
 };
 
@@ -72,6 +75,9 @@ const toldRow = z.object({
   job_key: z.string(),
   area_id: z.number(),
   record_key: text,
+  event: z.enum(['arrived', 'started', 'finished']).nullable(),
+  /** With the area, what tells the record apart where the row has no record id. */
+  about: z.coerce.date(),
   ...toldFields,
 });
 export type ToldRow = z.infer<typeof toldRow>;
@@ -82,24 +88,63 @@ export async function readToldRows(
   jobKey: string,
 ): Promise<ToldRow[]> {
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  const source: ToldSource = { tx, organisationId, siteId };
+  await createTouchedJobs(tx);
+  await tx.execute(sql`/* touch a job */
+    insert into touched_job
+    select ${jobKey}
+    union
+    select other.job_key
+    from upload_row as told join upload_row as other using (organisation_id, site_id, record_key)
+    where ${ofSite} and told.job_key = ${jobKey}`);
+  await gatherToldRows(source);
   const { rows } = await tx.execute(sql`/* rows of a job */
-    with told as (
-      select * from upload_row where ${ofSite} and job_key = ${jobKey}
-      union all
-      select * from upload_row
-      where ${ofSite} and job_key <> ${jobKey}
-        and record_key = any(array(
-          select record_key from record
-          where ${ofSite} and job_key = ${jobKey} and record_key is not null
-        ))
-    )
-    select told.*, file_name
-    from told join upload
-      on upload.organisation_id = told.organisation_id
-      and upload.site_id = told.site_id
-      and upload.id = told.upload_id
+    with ${keyedRows(source)}
+    select keyed.*, file_name
+    from keyed join upload
+      on upload.organisation_id = ${organisationId}
+      and upload.site_id = ${siteId}
+      and upload.id = keyed.upload_id
+    where keyed.job_key = ${jobKey} or keyed.record_key is not null
     order by upload_id, line, part`);
   return z.array(toldRow).parse(rows);
+}
+
+const voidedRow = z.object({
+  upload_id: z.number(),
+  line: z.number(),
+  part: z.number(),
+  file_name: z.string(),
+  area_name: z.string(),
+  arrived: date,
+  started: date,
+  finished: date,
+  voided_by: z.number(),
+});
+export type VoidedRow = z.infer<typeof voidedRow>;
+
+/** The rows of a job that a later upload voids, being the whole truth for their area over their time. */
+export async function readVoidedRows(
+  { tx, organisationId, siteId }: SiteReader,
+  jobKey: string,
+): Promise<VoidedRow[]> {
+  const { rows } = await tx.execute(sql`/* voided rows of a job */
+    select
+      told.upload_id, told.line, told.part, told.arrived, told.started, told.finished,
+      upload.file_name, zone.name as area_name, truth.upload_id as voided_by
+    from upload_row as told
+    join upload on upload.organisation_id = told.organisation_id
+      and upload.site_id = told.site_id and upload.id = told.upload_id
+    join zone on zone.organisation_id = told.organisation_id
+      and zone.site_id = told.site_id and zone.id = told.area_id
+    cross join lateral (
+      select min(truth.upload_id) as upload_id from upload_area as truth
+      where ${isTruthFor(organisationId, siteId)}
+    ) as truth
+    where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
+      and told.job_key = ${jobKey} and truth.upload_id is not null
+    order by told.upload_id, told.line, told.part`);
+  return z.array(voidedRow).parse(rows);
 }
 
 const stayRow = z.object({

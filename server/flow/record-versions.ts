@@ -20,13 +20,12 @@ const fields = [
   'parent',
 ] as const;
 
-const about = (row: ToldRow | RecordRow): number | undefined =>
-  (row.started ?? row.arrived ?? row.finished)?.getTime();
+const about = (record: RecordRow): number | undefined =>
+  (record.started ?? record.arrived ?? record.finished)?.getTime();
 
 /**
- * The rows that told one record, in order of receipt, and what each did to it: by the record id where it
- * has one, else by area and start (arrival, else finish); a row that knows only the arrival belongs to
- * the record that began there.
+ * The rows that told one record, in order of receipt, and what each did to it. Of events, those that the
+ * upload brought which brought the record are new: each tells a part of it.
  *
  * @param told every row that told of the job, in order of receipt
  */
@@ -37,9 +36,11 @@ export function versionsOf(
   const given = new Map<string, string | number>();
   return told
     .filter((row) => tellsOf(row, record))
-    .map((row, index) => {
+    .map((row, index, rows) => {
       const values = valuesOf(row);
-      const outcome = index === 0 ? 'new' : outcomeOf(values, given);
+      const isOfFirst = row.event !== null && row.upload_id === rows[0]?.upload_id;
+      const told = index === 0 ? 'new' : outcomeOf(values, given);
+      const outcome = told === 'completing' && isOfFirst ? 'new' : told;
       for (const [field, value] of values) given.set(field, value);
       return { row, outcome };
     });
@@ -57,13 +58,7 @@ function valuesOf(row: ToldRow): [string, string | number][] {
 function tellsOf(row: ToldRow, record: RecordRow): boolean {
   if (record.record_key !== null || row.record_key !== null)
     return row.record_key === record.record_key;
-  if (row.area_id !== record.area_id) return false;
-  if (about(row) === about(record)) return true;
-  return (
-    row.started === null &&
-    row.arrived?.getTime() === record.arrived?.getTime() &&
-    row.arrived !== null
-  );
+  return row.area_id === record.area_id && row.about.getTime() === about(record);
 }
 
 function outcomeOf(

@@ -2,6 +2,7 @@ import type { SeriesPoint, Step } from '../../shared/contracts/figures.ts';
 import { stepBorders } from '../../shared/local-time.ts';
 import { levelSteps } from '../methods/level-steps.ts';
 import { agesByStep, readAgeInside } from './age-inside.ts';
+import { readEndingsByStep } from './endings-by-step.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { readFlowTimes } from './flow-times.ts';
 import { readLevelBlocks } from './level-blocks.ts';
@@ -53,6 +54,7 @@ export async function readZoneSeries(
     await readAgeInside(reader, zone.id, whole.from),
     jobSteps.map((each, index) => ({ ...each, flowSum: flow[index]?.flowSum ?? 0 })),
   );
+  const endings = await readEndingsByStep(reader, zone.id, borders, unit);
   const [insideSteps, processSteps] = [steps(inside), steps(inProcess)];
   const points = insideSteps.map((insideStep, index) => {
     const [start, end] = [borders[index] ?? 0, borders[index + 1] ?? 0];
@@ -66,6 +68,8 @@ export async function readZoneSeries(
         ? stepFigures(zone, (end - start) / 1000, insideStep, processStep, flowStep)
         : unknownFigures),
       ageMeanSeconds: known ? (ages[index] ?? null) : null,
+      scrapped: known ? (endings[index]?.scrapped ?? 0) : null,
+      cancelled: known ? (endings[index]?.cancelled ?? 0) : null,
     };
   });
   const partial = zone.dataUntil === null || whole.to > zone.dataUntil;

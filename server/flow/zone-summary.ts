@@ -2,6 +2,7 @@ import type { Figures, LittlesLaw } from '../../shared/contracts/figures.ts';
 import { stepBorders } from '../../shared/local-time.ts';
 import type { LevelFigures } from '../methods/level-steps.ts';
 import { littlesLaw } from '../methods/littles-law.ts';
+import { noEndings, readEndingsByStep, type Endings } from './endings-by-step.ts';
 import { readBinnedFlowTimes } from './flow-bins.ts';
 import { noFlowTimes, readFlowTimes, type FlowTimes } from './flow-times.ts';
 import { readLevelOver } from './level-over.ts';
@@ -19,6 +20,7 @@ export interface ZoneSummary {
   inProcessJobs: LevelFigures;
   edges: WindowEdges;
   inferredDepartures: number;
+  endings: Endings;
   littlesLaw: LittlesLaw;
   partial: boolean;
   approximate: boolean;
@@ -48,6 +50,7 @@ export async function readZoneSummary(
       : await readLevelOver(reader, zone.id, 'in_process_jobs', period);
   const edges = await readWindowEdges(reader, zone.id, period);
   const { flow, approximate } = await readFlow(reader, zone, period, edges.departures);
+  const endings = await readEndingsByStep(reader, zone.id, [period.from, period.to], unit);
   return {
     figures:
       zone.dataUntil === null
@@ -58,6 +61,7 @@ export async function readZoneSummary(
     inProcessJobs,
     edges,
     inferredDepartures: flow.inferred,
+    endings: endings[0] ?? noEndings,
     littlesLaw: littlesLaw({
       seconds,
       levelIntegral: insideJobs.integral,

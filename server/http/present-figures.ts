@@ -44,6 +44,7 @@ export function presentSummary(
     wipEnd: known ? inside.levelEnd : null,
     inProcessEnd: known && zone.hasStarts ? inProcess.levelEnd : null,
     inferredDepartures: summary.inferredDepartures,
+    ...summary.endings,
     oldestInsideSeconds: edges.oldest,
     ageMeanSeconds: edges.stillInside > 0 ? edges.ageSum / edges.stillInside : null,
     utilisation:

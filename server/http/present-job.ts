@@ -1,6 +1,6 @@
 import type { z } from 'zod';
 import type { JobRecord, readJob } from '../../shared/contracts/jobs.ts';
-import type { RecordRow, StayRow, ToldRow } from '../flow/job-path.ts';
+import type { RecordRow, StayRow, ToldRow, VoidedRow } from '../flow/job-path.ts';
 import { versionsOf } from '../flow/record-versions.ts';
 
 type JobAnswer = z.input<typeof readJob.response>;
@@ -12,6 +12,7 @@ export function presentJob(
   records: readonly RecordRow[],
   told: readonly ToldRow[],
   stays: readonly StayRow[],
+  voided: readonly VoidedRow[],
 ): JobAnswer {
   return {
     jobKey,
@@ -27,6 +28,16 @@ export function presentJob(
       processSeconds: stay.process_seconds,
       flowSeconds: stay.flow_seconds,
     })),
+    voided: voided.map((row) => ({
+      uploadId: row.upload_id,
+      fileName: row.file_name,
+      line: row.line,
+      areaName: row.area_name,
+      arrived: iso(row.arrived),
+      started: iso(row.started),
+      finished: iso(row.finished),
+      voidedBy: row.voided_by,
+    })),
   };
 }
 
@@ -41,6 +52,7 @@ function presentRecord(record: RecordRow, told: readonly ToldRow[]): JobRecord {
     finished: iso(record.finished),
     left: iso(record.left_at),
     finishInferred: record.finish_inferred,
+    ending: record.ending,
     queueSeconds: record.queue_seconds,
     processSeconds: record.process_seconds,
     flowSeconds: record.flow_seconds,
@@ -51,6 +63,7 @@ function presentRecord(record: RecordRow, told: readonly ToldRow[]): JobRecord {
       uploadId: row.upload_id,
       fileName: row.file_name,
       line: row.line,
+      event: row.event,
       outcome,
       arrived: iso(row.arrived),
       started: iso(row.started),

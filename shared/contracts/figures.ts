@@ -49,6 +49,9 @@ export const seriesPointSchema = z.object({
   ...figureFields,
   /** Mean age of the jobs inside just before the step's end. */
   ageMeanSeconds: number,
+  /** Of the departures, those that were scrapped and those that were cancelled; the rest are good. */
+  scrapped: number,
+  cancelled: number,
 });
 export type SeriesPoint = z.infer<typeof seriesPointSchema>;
 
@@ -106,6 +109,9 @@ export const summarySchema = z.object({
   inProcessEnd: number,
   /** Departures whose finish was inferred from a later start. */
   inferredDepartures: z.int(),
+  /** Of the departures, those that were scrapped and those that were cancelled; the rest are good. */
+  scrapped: z.number(),
+  cancelled: z.number(),
   /** Age of the longest inside just before the period's end, and the mean age. */
   oldestInsideSeconds: number,
   ageMeanSeconds: number,

@@ -1,11 +1,14 @@
 import { z } from 'zod';
 import { contract, instantOrNull, instantSchema } from './contract.ts';
+import { endings } from './plan.ts';
 import { siteParams } from './sites.ts';
 
 export const recordVersionSchema = z.object({
   uploadId: z.int(),
   fileName: z.string(),
   line: z.int(),
+  /** Where the row told one event, which. */
+  event: z.enum(['arrived', 'started', 'finished']).nullable(),
   outcome: z.enum(['new', 'same', 'completing', 'correcting']),
   arrived: instantOrNull,
   started: instantOrNull,
@@ -22,6 +25,8 @@ export const jobRecordSchema = z.object({
   finished: instantOrNull,
   left: instantOrNull,
   finishInferred: z.boolean(),
+  /** How the stay ended, where that was no good departure. */
+  ending: z.enum(endings).nullable(),
   queueSeconds: z.number().nullable(),
   processSeconds: z.number().nullable(),
   flowSeconds: z.number().nullable(),
@@ -33,6 +38,19 @@ export const jobRecordSchema = z.object({
   versions: z.array(recordVersionSchema),
 });
 export type JobRecord = z.infer<typeof jobRecordSchema>;
+
+/** A row that told of the job and no longer holds: a later upload is the whole truth for its area and time. */
+export const voidedRowSchema = z.object({
+  uploadId: z.int(),
+  fileName: z.string(),
+  line: z.int(),
+  areaName: z.string(),
+  arrived: instantOrNull,
+  started: instantOrNull,
+  finished: instantOrNull,
+  voidedBy: z.int(),
+});
+export type VoidedRow = z.infer<typeof voidedRowSchema>;
 
 export const jobStaySchema = z.object({
   zoneId: z.int(),
@@ -57,6 +75,7 @@ export const readJob = contract({
     jobKey: z.string(),
     records: z.array(jobRecordSchema),
     stays: z.array(jobStaySchema),
+    voided: z.array(voidedRowSchema),
   }),
 });
 

@@ -3,6 +3,7 @@ import { Link, useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
 import { JobLanes } from '../features/jobs/job-lanes.tsx';
 import { JobRecords } from '../features/jobs/job-records.tsx';
+import { VoidedRows } from '../features/jobs/voided-rows.tsx';
 import { jobSentence } from '../features/jobs/job-sentence.ts';
 import { jobQuery } from '../features/jobs/queries.ts';
 import { usePeriod } from '../features/period/use-period.ts';
@@ -38,6 +39,11 @@ export function Component() {
           rowLink={(uploadId, line) => paths.row(site.id, uploadId, line) + search}
         />
       </section>
+      <VoidedRows
+        rows={job.voided}
+        timeZone={site.timeZone}
+        rowLink={(uploadId, line) => paths.row(site.id, uploadId, line) + search}
+      />
       <section>
         <PanelHeading>Its stays in zones of several areas</PanelHeading>
         <ul>

@@ -12,6 +12,7 @@ const record = (areaName: string, given: Partial<JobRecord> = {}): JobRecord => 
   finished: '2026-10-24T10:00:00.000Z',
   left: '2026-10-24T10:00:00.000Z',
   finishInferred: false,
+  ending: null,
   queueSeconds: 3600,
   processSeconds: 10_800,
   flowSeconds: 14_400,

@@ -41,6 +41,8 @@ const summary = (given: Partial<Summary> = {}): Summary => ({
   wipEnd: 12,
   inProcessEnd: 4,
   inferredDepartures: 0,
+  scrapped: 0,
+  cancelled: 0,
   oldestInsideSeconds: 3600,
   ageMeanSeconds: 1800,
   utilisation: null,

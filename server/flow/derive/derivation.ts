@@ -15,6 +15,9 @@ export interface Derivation {
   told?: ToldKinds;
 }
 
+/** What gathering told rows needs of a derivation. */
+export type ToldSource = Pick<Derivation, 'tx' | 'organisationId' | 'siteId' | 'told'>;
+
 /** Kinds of told rows that most sites have none of, so that looking after them can be left out. */
 export interface ToldKinds {
   /** Some rows tell one event each. */

@@ -16,7 +16,7 @@ import type { Derivation } from './derivation.ts';
  *
  * @param told statement prefix with the CTE `told`
  */
-export async function pairEvents({ tx }: Derivation, told: SQL): Promise<void> {
+export async function pairEvents({ tx }: Pick<Derivation, 'tx'>, told: SQL): Promise<void> {
   await tx.execute(sql`drop table if exists told_event, paired_event`);
   await tx.execute(sql`/* events as they now stand */
     create temp table told_event on commit drop as

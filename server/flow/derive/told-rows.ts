@@ -1,6 +1,6 @@
 import { sql, type SQL } from 'drizzle-orm';
 import { z } from 'zod';
-import type { Derivation, ToldKinds } from './derivation.ts';
+import type { Derivation, ToldKinds, ToldSource } from './derivation.ts';
 import { pairEvents } from './pair-events.ts';
 import { isVoided } from './voided-rows.ts';
 
@@ -34,7 +34,7 @@ export async function createTouchedJobs(tx: Derivation['tx']): Promise<void> {
  * rows, each record named by its first row, `version` counting its rows in order of receipt; `begun` has
  * the starts by which rows that know only an arrival find their record.
  */
-export async function gatherToldRows(derivation: Derivation): Promise<void> {
+export async function gatherToldRows(derivation: ToldSource): Promise<void> {
   const { tx } = derivation;
   derivation.told = await readToldKinds(derivation);
   await tx.execute(sql`drop table if exists begun, retold, told_row`);
@@ -99,7 +99,7 @@ export async function gatherToldRows(derivation: Derivation): Promise<void> {
 }
 
 /** Which kinds of rows the site's uploads hold. */
-export async function readToldKinds(derivation: Derivation): Promise<ToldKinds> {
+export async function readToldKinds(derivation: ToldSource): Promise<ToldKinds> {
   const { tx, organisationId, siteId } = derivation;
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
   const { rows } = await tx.execute(sql`/* kinds of told rows */
@@ -118,7 +118,7 @@ export async function readToldKinds(derivation: Derivation): Promise<ToldKinds> 
  * CTE `told`: every row told of a touched job that no later upload voids. Read again wherever it is named:
  * that costs less than keeping it.
  */
-const toldRows = ({ organisationId, siteId, told }: Derivation): SQL => sql`
+const toldRows = ({ organisationId, siteId, told }: ToldSource): SQL => sql`
   told as not materialized (
     select told.*
     from upload_row as told join touched_job using (job_key)
@@ -131,7 +131,7 @@ const rest = sql`
   told.status, told.ending, told.parent`;
 
 /** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. Needs `begun`. */
-export const keyedRows = (derivation: Derivation): SQL => sql`
+export const keyedRows = (derivation: ToldSource): SQL => sql`
   ${toldRows(derivation)},
   keyed as not materialized (
     ${derivation.told?.events ? keyedWithEvents : keyedStays}

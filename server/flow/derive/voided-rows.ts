@@ -5,32 +5,34 @@ import type { Derivation } from './derivation.ts';
 const about = (row: SQL): SQL => sql`coalesce(${row}.started, ${row}.arrived, ${row}.finished)`;
 
 /**
- * Whether the row `told` is voided: a later upload is the whole truth for its area over a span in which it
- * lies, and does not carry it, neither by its record id nor by job, area and that moment.
+ * Whether the upload of which `truth` tells is later than the row `told`, is the whole truth for its area
+ * over a span in which it lies, and does not carry it, neither by its record id nor by job, area and that
+ * moment.
  */
-export const isVoided = (organisationId: number, siteId: number): SQL => sql`
-  exists (
-    select from upload_area as truth
-    where truth.organisation_id = ${organisationId} and truth.site_id = ${siteId}
-      and truth.area_id = told.area_id
-      and truth.upload_id > told.upload_id
-      and ${about(sql`told`)} between truth.replaces_from and truth.replaces_until
-      and not exists (
-        select from upload_row as carried
-        where carried.organisation_id = ${organisationId} and carried.site_id = ${siteId}
-          and carried.job_key = told.job_key
-          and carried.upload_id = truth.upload_id
-          and (
-            carried.record_key = told.record_key
-            or carried.area_id = told.area_id
-            and case
-              when told.started is not null then carried.started = told.started
-              when told.arrived is not null then carried.arrived = told.arrived
-              else carried.finished = told.finished
-            end
-          )
+export const isTruthFor = (organisationId: number, siteId: number): SQL => sql`
+  truth.organisation_id = ${organisationId} and truth.site_id = ${siteId}
+  and truth.area_id = told.area_id
+  and truth.upload_id > told.upload_id
+  and ${about(sql`told`)} between truth.replaces_from and truth.replaces_until
+  and not exists (
+    select from upload_row as carried
+    where carried.organisation_id = ${organisationId} and carried.site_id = ${siteId}
+      and carried.job_key = told.job_key
+      and carried.upload_id = truth.upload_id
+      and (
+        carried.record_key = told.record_key
+        or carried.area_id = told.area_id
+        and case
+          when told.started is not null then carried.started = told.started
+          when told.arrived is not null then carried.arrived = told.arrived
+          else carried.finished = told.finished
+        end
       )
   )`;
+
+/** Whether the row `told` is voided by any upload. */
+export const isVoided = (organisationId: number, siteId: number): SQL => sql`
+  exists (select from upload_area as truth where ${isTruthFor(organisationId, siteId)})`;
 
 /** Touches the jobs of which an upload that replaces a period voids rows, as long as its areas are known. */
 export async function touchJobsOfReplacedPeriod(

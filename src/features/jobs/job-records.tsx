@@ -71,7 +71,7 @@ function RecordRow({
   const left =
     record.left === null
       ? 'still inside'
-      : `${formatMoment(record.left, timeZone)}${record.finishInferred ? ' (inferred)' : ''}`;
+      : `${formatMoment(record.left, timeZone)}${record.finishInferred ? ' (inferred)' : ''}${record.ending ? `, ${record.ending}` : ''}`;
   const lengths = [record.queueSeconds, record.processSeconds, record.flowSeconds];
   return (
     <tr id={recordAnchor(record)} className="border-b border-hair align-top target:bg-mist">
@@ -107,6 +107,7 @@ function ToldBy({ record, rowLink }: { record: JobRecord; rowLink: RowLink }) {
             {version.fileName}, line {version.line}
           </Link>{' '}
           <span className="text-soft">
+            {version.event ? `${version.event}, ` : ''}
             {version.outcome === 'same' ? 'same as before' : version.outcome}
           </span>
         </li>

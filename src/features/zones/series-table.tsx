@@ -22,6 +22,12 @@ export function SeriesTable({
     figure('inProcessMean', 'in process, mean', (value) => formatNumber(value, 1)),
     figure('arrivals', 'in', formatCount),
     figure('departures', 'out', formatCount),
+    ...(points.some((point) => (point.scrapped ?? 0) + (point.cancelled ?? 0) > 0)
+      ? [
+          figure('scrapped', 'of these scrapped', formatCount),
+          figure('cancelled', 'cancelled', formatCount),
+        ]
+      : []),
     figure('flowMeanSeconds', 'flow time, mean', formatDuration),
     figure('flowP50Seconds', 'P50', formatDuration),
     figure('flowP85Seconds', 'P85', formatDuration),

@@ -12,7 +12,12 @@ import { fewDepartures } from './period-panel.tsx';
 /** What a zone's figures say, in words, from the same figures. */
 export function zoneSentence(zone: Zone, summary: Summary, timeZone: string): string {
   if (summary.wipMean === null) return `There are no data of ${nameOf(zone)} yet.`;
-  return [level(zone, summary), flow(summary), ...minding(summary, timeZone)].join(' ');
+  return [
+    level(zone, summary),
+    flow(summary),
+    ...ends(summary),
+    ...minding(summary, timeZone),
+  ].join(' ');
 }
 
 const nameOf = (zone: Zone) => (zone.kind === 'site' ? 'the whole site' : zone.name);
@@ -33,6 +38,15 @@ function flow(summary: Summary): string {
   if (departures < fewDepartures)
     return `Only ${formatCount(departures)} left, too few for percentiles: the jobs are listed.`;
   return `Half of those that left took at most ${formatDuration(summary.flowP50Seconds)}, 85 of 100 at most ${formatDuration(summary.flowP85Seconds)}.`;
+}
+
+/** Departures that were no good ones. */
+function ends({ scrapped, cancelled, unit }: Summary): string[] {
+  const told = [
+    ...(scrapped > 0 ? [`${inUnit(scrapped, unit)} scrapped`] : []),
+    ...(cancelled > 0 ? [`${inUnit(cancelled, unit)} cancelled`] : []),
+  ];
+  return told.length > 0 ? [`Of the departures ${told.join(' and ')}, the rest were good.`] : [];
 }
 
 function minding(summary: Summary, timeZone: string): string[] {
