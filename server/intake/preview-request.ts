@@ -1,6 +1,8 @@
+import { Readable } from 'node:stream';
 import type { Request } from 'express';
 import { and, eq } from 'drizzle-orm';
 import type { StorageEngine } from 'multer';
+import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import type { UploadPreview } from '../../shared/contracts/uploads.ts';
 import type { Database } from '../db/client.ts';
 import { site } from '../db/schema/sites.ts';
@@ -12,7 +14,8 @@ import { IntakeFailure } from './failure.ts';
 import { isZip } from './file-kind.ts';
 import { sampleBytes } from './limits.ts';
 import { readPlanPart } from './plan-part.ts';
-import { previewOf } from './preview.ts';
+import { readOriginal, type UploadKey } from './original.ts';
+import { previewOf, type PreviewInput } from './preview.ts';
 import { runMulter } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
 
@@ -41,26 +44,46 @@ export async function previewRequest(
   }
   const { plan: part } = request.body as { plan?: string };
   const plan = await readPlanPart(db, siteKey, part);
+  return preview(db, siteKey, {
+    open: () => copyOf(head.bytes),
+    isCut: head.isCut,
+    plan,
+    receivedAt,
+  });
+}
+
+/**
+ * Shows what would be read of a file that was uploaded, by another plan or by the one that is detected.
+ *
+ * @throws ApiError where the file cannot be read
+ */
+export const previewStored = (
+  db: Database,
+  key: UploadKey,
+  plan: ColumnPlan | null,
+  receivedAt: Date,
+): Promise<UploadPreview> =>
+  preview(db, key, { open: () => readOriginal(db, key), isCut: false, plan, receivedAt });
+
+async function preview(
+  db: Database,
+  siteKey: SiteKey,
+  asked: Pick<PreviewInput, 'open' | 'isCut' | 'plan' | 'receivedAt'>,
+): Promise<UploadPreview> {
   const context = await readContext(db, siteKey);
   const savedPlans = await listSavedPlans(db, siteKey);
   try {
-    return await previewOf({
-      bytes: head.bytes,
-      isCut: head.isCut,
-      plan,
-      receivedAt,
-      savedPlans,
-      ...context,
-    });
+    return await previewOf({ ...asked, savedPlans, ...context });
   } catch (error) {
-    if (error instanceof IntakeFailure) {
-      throw new ApiError('invalid-input', error.advice, {
-        errors: [{ field: 'file', message: error.advice }],
-      });
-    }
-    throw error;
+    if (!(error instanceof IntakeFailure)) throw error;
+    throw new ApiError('invalid-input', error.advice, {
+      errors: [{ field: 'file', message: error.advice }],
+    });
   }
 }
+
+/** The bytes as a stream; a copy, since a reading may change them in place. */
+const copyOf = (bytes: Buffer): AsyncIterable<Buffer> => Readable.from([Buffer.from(bytes)]);
 
 /**
  * Keeps the beginning of a file in memory and drops the rest; of a workbook, whose sheets may stand anywhere

@@ -1,11 +1,10 @@
-import { Readable } from 'node:stream';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import type { UploadPreview } from '../../shared/contracts/uploads.ts';
 import { rowReasonSentence } from '../../shared/row-reasons.ts';
 import { detect, type Detection } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
 import { openAndRecognise, type KnownPlan } from './detect/recognise-plan.ts';
-import type { OpenedFile } from './opened-file.ts';
+import type { OpenedFile, Opener } from './opened-file.ts';
 import { readingOf, shapeReaderOf, type RowContext } from './reading.ts';
 import { warningsOf } from './row-account.ts';
 import { cellsOf } from './sample.ts';
@@ -18,9 +17,8 @@ const rowsShown = 50;
 type PreviewRow = UploadPreview['rows'][number];
 
 export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
-  /** The beginning of the file, or all of it. */
-  bytes: Buffer;
-  /** Whether the file is longer than that. */
+  open: Opener;
+  /** Whether what can be read of the file is only its beginning. */
   isCut: boolean;
   plan: ColumnPlan | null;
   /** Plans of the site, to recognise the file by its header where no plan is given. */
@@ -34,9 +32,8 @@ export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
  * @throws IntakeFailure where the file could not be read at all, or not by the plan
  */
 export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
-  const { bytes, isCut, timeZone } = input;
-  const open = () => blocksOf(bytes);
-  const opened = await openAndRecognise(open, input.plan, input.savedPlans, isCut);
+  const { isCut, timeZone } = input;
+  const opened = await openAndRecognise(input.open, input.plan, input.savedPlans, isCut);
   const { file, plan, recognised } = opened;
   const detection = detect({ file, plan, timeZone });
   return {
@@ -49,15 +46,35 @@ export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
     plan: detection.plan,
     dateOrder: detection.dateOrder,
     reasons: [...recognisedReason(recognised), ...detection.reasons],
+    words: wordsOf(detection),
     rows: await previewRows(detection, file, { ...input, dateSystem: file.dateSystem }, isCut),
+  };
+}
+
+/** Words that a preview offers to be explained. */
+const wordsOffered = 100;
+
+/** The words of the event and the status column among the first rows, commonest first. */
+function wordsOf({ places, rows }: Detection): UploadPreview['words'] {
+  const count = (place: number | undefined) => {
+    const counts = new Map<string, number>();
+    for (const { cells } of place === undefined ? [] : rows) {
+      const word = (cells[place ?? 0] ?? '').trim();
+      if (word !== '') counts.set(word, (counts.get(word) ?? 0) + 1);
+    }
+    return [...counts]
+      .sort((a, b) => b[1] - a[1])
+      .slice(0, wordsOffered)
+      .map(([word]) => word);
+  };
+  return {
+    event: count(places?.shape === 'event' ? places.event : undefined),
+    status: count(places?.optional.status),
   };
 }
 
 const recognisedReason = (plan: KnownPlan | null) =>
   plan ? [{ about: 'plan', reason: `The header is that of the column plan “${plan.name}”.` }] : [];
-
-/** The bytes as a stream; a copy, since a reading may change them in place. */
-const blocksOf = (bytes: Buffer): AsyncIterable<Buffer> => Readable.from([Buffer.from(bytes)]);
 
 async function previewRows(
   detection: Detection,

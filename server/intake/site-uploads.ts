@@ -114,10 +114,10 @@ export async function endUpload(
 }
 
 /**
- * Asks that the original of a loaded upload be read again; until that is done what stands goes on standing.
+ * Asks that the original of an upload be read again; until that is done what stands goes on standing.
  *
  * @param plan by which to read it, or null for the plan of before
- * @throws ApiError where there is no such upload, or it is not loaded
+ * @throws ApiError where there is no such upload, or it is still under way or withdrawn
  */
 export async function requestReading(
   tx: Transaction,
@@ -125,9 +125,9 @@ export async function requestReading(
   plan: ColumnPlan | null,
 ): Promise<WishedUpload> {
   const status = await lockStatus(tx, key);
-  if (status !== 'loaded') {
+  if (status !== 'loaded' && status !== 'failed') {
     throw conflict(
-      `The upload is ${status}; only one that is loaded can be read again. Upload the file anew.`,
+      `The upload is ${status}; only one that is loaded or has failed can be read again.`,
     );
   }
   await tx
@@ -136,6 +136,7 @@ export async function requestReading(
       status: 'waiting',
       attempts: 0,
       error: null,
+      stopRequestedAt: null,
       ...(plan
         ? { planGiven: plan }
         : { planGiven: sql`coalesce(${upload.plan}, ${upload.planGiven})` }),

@@ -172,6 +172,40 @@ export const withdrawUpload = contract({
   status: 202,
 });
 
+const uploadPreviewSchema = z.object({
+  fileKind: z.enum(fileKinds),
+  /** null where the file is no delimited text. */
+  delimiter: z.enum(delimiters).nullable(),
+  encoding: z.enum(encodings).nullable(),
+  /** Names of the sheets of a workbook. */
+  sheets: z.array(z.string()),
+  header: z.array(z.string()),
+  /** The saved plan that was recognised by the header, where no plan was given. */
+  recognised: z.object({ id: z.int(), name: z.string() }).nullable(),
+  /** The plan that was given, or the one that was recognised, or the guess; null where no guess could be made. */
+  plan: columnPlanSchema.nullable(),
+  /** `unknown` where the beginning of the file does not tell day and month apart. */
+  dateOrder: z.enum([...dateOrders, 'unknown']).nullable(),
+  /** Why each part of the guess was made, or what is missing, in sentences. */
+  reasons: z.array(z.object({ about: z.string(), reason: z.string() })),
+  /** Words of the event and of the status column among the first rows, commonest first. */
+  words: z.object({ event: z.array(z.string()), status: z.array(z.string()) }),
+  rows: z.array(
+    z.object({
+      line: z.int(),
+      cells: z.array(z.string()),
+      outcome: z.enum(['accepted', 'skipped', 'refused']),
+      reason: z.string().nullable(),
+      warnings: z.array(z.string()),
+      job: z.string().nullable(),
+      area: z.string().nullable(),
+      arrived: instantOrNull,
+      started: instantOrNull,
+      finished: instantOrNull,
+    }),
+  ),
+});
+
 /** Reads the beginning of a file without keeping anything: what is detected, and the first rows as read. */
 export const previewUpload = contract({
   name: 'previewUpload',
@@ -185,36 +219,17 @@ export const previewUpload = contract({
     file: z.string().describe('the first 256 KiB of the export, or all of it'),
     plan: z.string().optional().describe('a column plan as JSON to read it by'),
   }),
-  response: z.object({
-    fileKind: z.enum(fileKinds),
-    /** null where the file is no delimited text. */
-    delimiter: z.enum(delimiters).nullable(),
-    encoding: z.enum(encodings).nullable(),
-    /** Names of the sheets of a workbook. */
-    sheets: z.array(z.string()),
-    header: z.array(z.string()),
-    /** The saved plan that was recognised by the header, where no plan was given. */
-    recognised: z.object({ id: z.int(), name: z.string() }).nullable(),
-    /** The plan that was given, or the one that was recognised, or the guess; null where no guess could be made. */
-    plan: columnPlanSchema.nullable(),
-    /** `unknown` where the beginning of the file does not tell day and month apart. */
-    dateOrder: z.enum([...dateOrders, 'unknown']).nullable(),
-    /** Why each part of the guess was made, or what is missing, in sentences. */
-    reasons: z.array(z.object({ about: z.string(), reason: z.string() })),
-    rows: z.array(
-      z.object({
-        line: z.int(),
-        cells: z.array(z.string()),
-        outcome: z.enum(['accepted', 'skipped', 'refused']),
-        reason: z.string().nullable(),
-        warnings: z.array(z.string()),
-        job: z.string().nullable(),
-        area: z.string().nullable(),
-        arrived: instantOrNull,
-        started: instantOrNull,
-        finished: instantOrNull,
-      }),
-    ),
-  }),
+  response: uploadPreviewSchema,
 });
-export type UploadPreview = z.infer<typeof previewUpload.response>;
+export type UploadPreview = z.infer<typeof uploadPreviewSchema>;
+
+export const previewStoredUpload = contract({
+  name: 'previewStoredUpload',
+  method: 'post',
+  path: '/api/sites/:siteId/uploads/:uploadId/preview',
+  summary: 'What would be read of an uploaded file, by another plan or by the one that is detected',
+  action: 'upload.preview',
+  params: uploadParams,
+  body: z.object({ plan: columnPlanSchema.optional() }),
+  response: uploadPreviewSchema,
+});

@@ -1,3 +1,4 @@
+import { Readable } from 'node:stream';
 import { describe, expect, test } from 'vitest';
 import { detect } from '../../server/intake/detect/detect.ts';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
@@ -162,7 +163,7 @@ describe('the guess', () => {
 describe('the preview', () => {
   const preview = (text: string | Buffer) =>
     previewOf({
-      bytes: Buffer.from(text),
+      open: () => Readable.from([Buffer.from(text)]),
       isCut: text.length >= 262_144,
       plan: null,
       timeZone: 'UTC',

@@ -3,6 +3,7 @@ import { pipeline } from 'node:stream/promises';
 import {
   createUpload,
   listUploads,
+  previewStoredUpload,
   previewUpload,
   readOriginal as readOriginalCall,
   readRefusedRows,
@@ -17,7 +18,7 @@ import { notFound } from '../../errors.ts';
 import { readOriginal } from '../../intake/original.ts';
 import { planAskedFor } from '../../intake/plan-part.ts';
 import { presentUpload } from '../../intake/present-upload.ts';
-import { previewRequest } from '../../intake/preview-request.ts';
+import { previewRequest, previewStored } from '../../intake/preview-request.ts';
 import { receiveUpload } from '../../intake/receive-upload.ts';
 import { refusedCsv } from '../../intake/refused-csv.ts';
 import { findRowOfFile } from '../../intake/row-of-file.ts';
@@ -82,6 +83,13 @@ export function registerUploads({ route, deps }: Api): void {
     const wished = await wishes.withdrawUpload(db, keyOf(call), wishOf(call));
     await queue.wake(call.organisationId, call.siteId);
     return wished;
+  });
+
+  route(previewStoredUpload, async (call) => {
+    const key = keyOf(call);
+    const { receivedAt } = await findUpload(db, key);
+    const plan = await planAskedFor(db, key, call.body.plan);
+    return previewStored(db, key, plan, receivedAt);
   });
 
   route(previewUpload, ({ organisationId, siteId, req }) =>

@@ -1,106 +1,86 @@
-import {
-  optionalColumns,
-  timeColumns,
-  type ColumnPlan,
-  type StayColumns,
-} from '../../../shared/contracts/plan.ts';
-import { ComboBox } from '../../ui/combo-box.tsx';
-import { PanelHeading } from '../../ui/heading.tsx';
+import { shapes, type Shape } from '../../../shared/contracts/plan.ts';
+import type { UploadPreview } from '../../../shared/contracts/uploads.ts';
 import { Select } from '../../ui/select.tsx';
-import { TextField } from '../../ui/text-field.tsx';
+import { AreaColumnsForm } from './area-columns.tsx';
+import { ColumnSelects } from './column-selects.tsx';
+import type { PlanDraft } from './plan-draft.ts';
+import { ReadingSettings } from './reading-settings.tsx';
+import { WordMeanings } from './word-meanings.tsx';
 
-const zones = Intl.supportedValuesOf('timeZone');
-const nothing = '';
-
-const columnLabels: Record<keyof StayColumns, string> = {
-  job: 'Job',
-  area: 'Area',
-  arrived: 'Arrival',
-  started: 'Start',
-  finished: 'Finish',
-  record: 'Record id',
-  quantity: 'Quantity',
-  family: 'Family',
-  due: 'Due',
-  priority: 'Priority',
-  workContent: 'Work content',
-  value: 'Value',
-  resource: 'Resource',
-  status: 'Status',
-  parent: 'Parent job',
+const shapeLabels: Readonly<Record<Shape, string>> = {
+  stay: 'a stay: a job at an area, with its times',
+  event: 'an event: a job arrived, started or finished at an area',
+  job: 'a job, with columns for each area',
 };
 
-/** A plan in the making: the columns may still be missing. */
-export type PlanDraft = Omit<ColumnPlan, 'columns'> & { columns: Partial<StayColumns> };
+const eventMeanings = [
+  { value: 'arrived', label: 'arrival' },
+  { value: 'started', label: 'start' },
+  { value: 'finished', label: 'finish' },
+  { value: 'scrapped', label: 'scrapped: ends the stay' },
+  { value: 'cancelled', label: 'cancelled: ends the stay' },
+  { value: 'ignored', label: 'tells nothing of a stay' },
+] as const;
+const statusMeanings = [
+  { value: 'scrapped', label: 'scrapped: ends the stay' },
+  { value: 'cancelled', label: 'cancelled: ends the stay' },
+] as const;
 
-/** Which column holds what, and how its times are read; changes show at once on the rows. */
+/** What a row tells, which column holds what, and how it is read; changes show at once on the rows. */
 export function PlanForm({
-  header,
+  preview,
   draft,
   onChange,
 }: {
-  header: readonly string[];
+  preview: UploadPreview;
   draft: PlanDraft;
   onChange: (draft: PlanDraft) => void;
 }) {
-  const choices = [
-    { value: nothing, label: 'not in this file' },
-    ...header.map((cell) => ({ value: cell, label: cell })),
-  ];
-  const setColumn = (column: keyof StayColumns, cell: string) => {
-    const columns = { ...draft.columns };
-    if (cell === nothing) delete columns[column];
-    else columns[column] = cell;
-    onChange({ ...draft, columns });
-  };
-  const columnSelect = (column: keyof StayColumns) => (
-    <Select
-      key={column}
-      label={columnLabels[column]}
-      value={draft.columns[column] ?? nothing}
-      choices={choices}
-      onChange={(cell) => setColumn(column, cell)}
-    />
-  );
   return (
-    <div className="flex flex-col gap-4">
-      <PanelHeading>Which column holds what</PanelHeading>
-      <div className="grid grid-cols-2 gap-3 lg:grid-cols-5">
-        {(['job', 'area', ...timeColumns] as const).map(columnSelect)}
-      </div>
-      <details>
-        <summary className="cursor-pointer">More columns</summary>
-        <div className="mt-3 grid grid-cols-2 gap-3 lg:grid-cols-5">
-          {optionalColumns.map(columnSelect)}
-        </div>
-      </details>
-      <PanelHeading>How it is read</PanelHeading>
-      <div className="grid gap-3 sm:grid-cols-2 lg:grid-cols-3">
-        <ComboBox
-          key={draft.timeZone}
-          label="Time zone of times without an offset"
-          value={draft.timeZone}
-          choices={zones}
-          onChange={(timeZone) => onChange({ ...draft, timeZone })}
-        />
-        <TextField
-          label="Time format"
-          hint="auto, or a pattern such as dd.MM.yyyy HH:mm"
-          value={draft.timeFormat}
-          onChange={(timeFormat) => onChange({ ...draft, timeFormat })}
-        />
+    <div className="flex flex-col gap-5">
+      <div className="max-w-xl">
         <Select
-          label="Areas that are not known yet"
-          value={draft.unknownAreas}
-          choices={[
-            { value: 'add', label: 'add them' },
-            { value: 'refuse', label: 'refuse their rows' },
-          ]}
-          onChange={(value) =>
-            onChange({ ...draft, unknownAreas: value === 'refuse' ? 'refuse' : 'add' })
-          }
+          label="A row tells"
+          value={draft.shape}
+          choices={shapes.map((value) => ({ value, label: shapeLabels[value] }))}
+          onChange={(value) => {
+            const shape = shapes.find((each) => each === value);
+            if (shape) onChange({ ...draft, shape });
+          }}
         />
       </div>
+      <ColumnSelects header={preview.header} draft={draft} onChange={onChange} />
+      {draft.shape === 'job' ? (
+        <AreaColumnsForm
+          header={preview.header}
+          areas={draft.areas ?? []}
+          onChange={(areas) => onChange({ ...draft, areas })}
+        />
+      ) : null}
+      {draft.shape === 'event' ? (
+        <WordMeanings
+          title="What each event means"
+          words={preview.words.event}
+          value={draft.eventWords ?? eventWordsOf(preview)}
+          meanings={eventMeanings}
+          unexplained="not explained: refused"
+          onChange={(eventWords) => onChange({ ...draft, eventWords })}
+        />
+      ) : null}
+      {draft.columns.status ? (
+        <WordMeanings
+          title="What each status means"
+          words={preview.words.status}
+          value={draft.statusWords ?? preview.plan?.statusWords ?? {}}
+          meanings={statusMeanings}
+          unexplained="nothing of the kind"
+          onChange={(statusWords) => onChange({ ...draft, statusWords })}
+        />
+      ) : null}
+      <ReadingSettings preview={preview} draft={draft} onChange={onChange} />
     </div>
   );
 }
+
+const eventWordsOf = ({ plan }: UploadPreview) =>
+  plan?.shape === 'event' ? (plan.eventWords ?? {}) : {};

@@ -1,3 +1,4 @@
+import type { FileKind } from '../../../shared/contracts/plan.ts';
 import { rowReasonSentence } from '../../../shared/row-reasons.ts';
 import type { UploadPreview } from '../../../shared/contracts/uploads.ts';
 import { formatMoment } from '../../lib/format.ts';
@@ -7,10 +8,25 @@ type Row = UploadPreview['rows'][number];
 
 const shownRows = 20;
 
+/** What the place of a row is called. */
+const lineWords: Readonly<Record<FileKind, string>> = {
+  text: 'line',
+  workbook: 'row',
+  xes: 'event',
+};
+
 /** The first rows of the file as they would be read. */
-export function PreviewTable({ rows, timeZone }: { rows: readonly Row[]; timeZone: string }) {
+export function PreviewTable({
+  rows,
+  fileKind,
+  timeZone,
+}: {
+  rows: readonly Row[];
+  fileKind: FileKind;
+  timeZone: string;
+}) {
   const columns: Column<Row>[] = [
-    { id: 'line', header: 'line', figure: true, value: (row) => row.line },
+    { id: 'line', header: lineWords[fileKind], figure: true, value: (row) => row.line },
     {
       id: 'outcome',
       header: 'read as',

@@ -3,11 +3,14 @@ import type { ColumnPlan } from '../../../shared/contracts/plan.ts';
 import {
   createUpload,
   listUploads,
+  previewStoredUpload,
   previewUpload,
+  readUploadAgain,
   readUploadRow,
   stopUpload,
   withdrawUpload,
   type Upload,
+  type UploadPreview,
 } from '../../../shared/contracts/uploads.ts';
 import { call } from '../../api/call.ts';
 
@@ -26,16 +29,45 @@ export const uploadsQuery = (siteId: number) =>
     refetchInterval: (query) => (query.state.data?.some(isUnderWay) ? watchEveryMs : false),
   });
 
-/** How a file would be read: by the given plan, or by a guess. Nothing of it is kept. */
-export const previewQuery = (siteId: number, file: File, plan: ColumnPlan | null) =>
-  queryOptions({
+/** A workbook is a zip archive, whose table of contents stands at its end: all of it is needed. */
+async function isWorkbook(file: File): Promise<boolean> {
+  const [p, k] = new Uint8Array(await file.slice(0, 2).arrayBuffer());
+  return p === 0x50 && k === 0x4b;
+}
+
+/** How a file would be read, as a query: by a plan, or by the one that is detected. Nothing is kept. */
+export type PreviewBy = (plan: ColumnPlan | null) => {
+  queryKey: readonly unknown[];
+  queryFn: (context: { signal: AbortSignal }) => Promise<UploadPreview>;
+  staleTime: number;
+};
+
+/** The preview of a file that was not sent yet: its beginning is sent, or all of a workbook. */
+export const previewOfFile =
+  (siteId: number, file: File): PreviewBy =>
+  (plan) => ({
     queryKey: ['site', siteId, 'preview', file.name, file.size, file.lastModified, plan],
-    queryFn: ({ signal }) => {
+    queryFn: async ({ signal }) => {
       const form = new FormData();
       if (plan) form.set('plan', JSON.stringify(plan));
-      form.set('file', file.slice(0, previewBytes), file.name);
+      const sent = (await isWorkbook(file)) ? file : file.slice(0, previewBytes);
+      form.set('file', sent, file.name);
       return call(previewUpload, { params: { siteId }, form, signal });
     },
+    staleTime: Infinity,
+  });
+
+/** The preview of a file that was uploaded. */
+export const previewOfStored =
+  (siteId: number, uploadId: number): PreviewBy =>
+  (plan) => ({
+    queryKey: ['site', siteId, 'uploads', uploadId, 'preview', plan],
+    queryFn: ({ signal }) =>
+      call(previewStoredUpload, {
+        params: { siteId, uploadId },
+        body: plan ? { plan } : {},
+        signal,
+      }),
     staleTime: Infinity,
   });
 
@@ -63,6 +95,15 @@ export function useStopUpload(siteId: number) {
   const client = useQueryClient();
   return useMutation({
     mutationFn: (uploadId: number) => call(stopUpload, { params: { siteId, uploadId } }),
+    onSuccess: () => client.invalidateQueries({ queryKey: ['site', siteId] }),
+  });
+}
+
+export function useReadAgain(siteId: number, uploadId: number) {
+  const client = useQueryClient();
+  return useMutation({
+    mutationFn: (plan: ColumnPlan) =>
+      call(readUploadAgain, { params: { siteId, uploadId }, body: { plan } }),
     onSuccess: () => client.invalidateQueries({ queryKey: ['site', siteId] }),
   });
 }

@@ -20,6 +20,12 @@ export function RowAccountWords({ account }: { account: RowAccount }) {
       <p>
         {plural(account.rowsRead, 'row')} read: {listed(words) || 'nothing in them'}.
       </p>
+      {account.voided > 0 ? (
+        <p>
+          {plural(account.voided, 'row')} of earlier uploads {account.voided === 1 ? 'is' : 'are'}{' '}
+          voided: this file is the whole truth for its areas and its period.
+        </p>
+      ) : null}
       <Reasons title="Skipped" counts={account.skippedBy} />
       <Reasons title="Refused" counts={account.refusedBy} />
       <Reasons title="Accepted, worth knowing" counts={account.warnings} />

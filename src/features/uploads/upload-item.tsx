@@ -1,5 +1,6 @@
+import { useState } from 'react';
 import type { Site } from '../../../shared/contracts/sites.ts';
-import { readRefusedRows, type Upload } from '../../../shared/contracts/uploads.ts';
+import { readOriginal, readRefusedRows, type Upload } from '../../../shared/contracts/uploads.ts';
 import { addressOf } from '../../api/call.ts';
 import { formatBytes, formatCount, formatMoment } from '../../lib/format.ts';
 import { Button } from '../../ui/button.tsx';
@@ -7,6 +8,7 @@ import { ConfirmDialog } from '../../ui/confirm-dialog.tsx';
 import { Notice } from '../../ui/notice.tsx';
 import { Progress } from '../../ui/progress.tsx';
 import { isUnderWay, useStopUpload, useWithdrawUpload } from './queries.ts';
+import { ReadAgain } from './read-again.tsx';
 import { RowAccountWords } from './row-account.tsx';
 
 const statusWords: Record<Upload['status'], string> = {
@@ -30,6 +32,8 @@ export function UploadItem({
 }) {
   const stop = useStopUpload(site.id);
   const withdraw = useWithdrawUpload(site.id);
+  const [isReadingAgain, setReadingAgain] = useState(false);
+  const original = addressOf(readOriginal, { params: { siteId: site.id, uploadId: upload.id } });
   const refused = addressOf(readRefusedRows, {
     params: { siteId: site.id, uploadId: upload.id },
   });
@@ -72,6 +76,12 @@ export function UploadItem({
             Download the refused rows
           </a>
         ) : null}
+        <a href={original} download>
+          Download the file
+        </a>
+        {mayChange && isReadable(upload) ? (
+          <Button onPress={() => setReadingAgain(true)}>Read it again another way</Button>
+        ) : null}
         {mayChange && upload.status === 'loaded' && !upload.withdrawing ? (
           <ConfirmDialog
             trigger="Withdraw this upload"
@@ -84,9 +94,16 @@ export function UploadItem({
           </ConfirmDialog>
         ) : null}
       </div>
+      {isReadingAgain ? (
+        <ReadAgain site={site} upload={upload} onDone={() => setReadingAgain(false)} />
+      ) : null}
     </li>
   );
 }
+
+/** Whether its file can be read again: it is loaded, or its reading failed. */
+const isReadable = ({ status, withdrawing }: Upload): boolean =>
+  (status === 'loaded' || status === 'failed') && !withdrawing;
 
 const shareOf = ({ status, progress }: Upload): number | null => {
   if (status === 'waiting') return 0;
