@@ -2,6 +2,7 @@ import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useEffect } from 'react';
 import { ApiError } from '../api/api-error.ts';
 import { useMay } from '../features/session/queries.ts';
+import { ColumnPlans } from '../features/uploads/column-plans.tsx';
 import { NewUpload } from '../features/uploads/new-upload.tsx';
 import { isUnderWay, uploadsQuery } from '../features/uploads/queries.ts';
 import { UploadItem } from '../features/uploads/upload-item.tsx';
@@ -28,6 +29,7 @@ export function Component() {
         {plural(loaded, 'upload')} loaded. Every row of each is accounted for.
       </Sentence>
       {mayUpload ? <NewUpload site={site} /> : null}
+      <ColumnPlans site={site} mayChange={mayUpload} />
       <section>
         <PanelHeading>Uploads, newest first</PanelHeading>
         {uploads.error instanceof ApiError ? (

@@ -49,18 +49,22 @@ export function detect({ file, plan: given, timeZone }: DetectionInput): Detecti
   const base = given ?? (guess?.planned ? planOf(guess.planned, timeZone) : null);
   const places = base && placeColumns(base, sample.header);
   const dateOrder = base && places && findDateOrder(base, places, sample.rows);
+  const plan = base && places && complete(base, places, sample, file, dateOrder);
   return {
     header: sample.header,
     headerLine: sample.headerLine,
     rows: sample.rows,
     delimiter: sample.cut.delimiter,
-    plan: base && places && complete(base, places, sample, file, dateOrder),
+    plan,
     places,
     dateOrder,
     reasons: [
       ...fileReasons(sample, file, given),
       ...(guess?.reasons ?? []),
       ...dateOrderReasons(dateOrder),
+      ...(plan?.decimalSign === ',' && !given?.decimalSign
+        ? [{ about: 'decimalSign', reason: 'Numbers have a decimal comma.' }]
+        : []),
     ],
     missing: guess?.missing ?? [],
   };

@@ -16,9 +16,9 @@ export function FirstSteps({
       title: 'Get an export',
       text: (
         <>
-          From your MES or job-tracking system, as CSV: a row for each job at each area, with the
-          job, the area, and when it started and finished there. The arrival helps where it is
-          recorded. To try it first, take{' '}
+          From your MES or job-tracking system, as CSV, XLSX or XES: a row for each stay of a job at
+          an area, for each event, or for each job, with the job, the area, and when it started and
+          finished there. The arrival helps where it is recorded. To try it first, take{' '}
           <a href="/samples/depot-two-weeks.csv" download>
             a sample of two weeks
           </a>

@@ -35,7 +35,7 @@ export function PreviewTable({
         row.outcome === 'accepted' ? (
           'accepted'
         ) : (
-          <span className="text-over">
+          <span className={row.outcome === 'refused' ? 'text-over' : 'text-soft'}>
             {row.outcome}: {row.reason ? rowReasonSentence(row.reason) : ''}
           </span>
         ),

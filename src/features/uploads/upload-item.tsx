@@ -7,6 +7,7 @@ import { Button } from '../../ui/button.tsx';
 import { ConfirmDialog } from '../../ui/confirm-dialog.tsx';
 import { Notice } from '../../ui/notice.tsx';
 import { Progress } from '../../ui/progress.tsx';
+import { PlanInWords } from './plan-in-words.tsx';
 import { isUnderWay, useStopUpload, useWithdrawUpload } from './queries.ts';
 import { ReadAgain } from './read-again.tsx';
 import { RowAccountWords } from './row-account.tsx';
@@ -70,6 +71,7 @@ export function UploadItem({
       {upload.status === 'loaded' || upload.status === 'withdrawn' ? (
         <RowAccountWords account={upload.account} />
       ) : null}
+      {upload.plan && !isUnderWay(upload) ? <PlanInWords plan={upload.plan} /> : null}
       <div className="flex flex-wrap items-center gap-4">
         {upload.account.refused > 0 ? (
           <a href={refused} download>
