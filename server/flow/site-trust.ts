@@ -9,7 +9,7 @@ import { factsOfAreas, type AreaTrust, type TrustGrid } from './area-days.ts';
 import { readGapsBetweenAreas } from './gaps-between-areas.ts';
 import { readPaceAtEnd } from './pace-at-end.ts';
 import { readSpokenSpans, type SpokenSpan } from './spoken-spans.ts';
-import { readTrustAreas, type TrustArea } from './trust-areas.ts';
+import { readTrustAreas } from './trust-areas.ts';
 import { readClumps } from './trust-clumps.ts';
 import { readTrustCounts } from './trust-counts.ts';
 import { readWaitingBeforeEnd } from './waiting-before-end.ts';
@@ -31,7 +31,9 @@ export interface GradedDay {
 /** The trust map of everything that is loaded. */
 export interface SiteTrust {
   grid: TrustGrid;
-  /** By area in order of flow, then by day. */
+  /** Those of which uploads tell, in order of flow. */
+  areas: { id: number; name: string }[];
+  /** By area, then by day. */
   cells: GradedDay[];
   notices: TrustNotice[];
 }
@@ -40,7 +42,7 @@ export interface SiteTrust {
 export async function readSiteTrust(reader: SiteReader): Promise<SiteTrust> {
   const spans = await readSpokenSpans(reader);
   const grid = gridOf(reader, spans);
-  if (grid.days.length === 0) return { grid, cells: [], notices: [] };
+  if (grid.days.length === 0) return { grid, areas: [], cells: [], notices: [] };
   const areas = await readTrustAreas(reader);
   const trust = factsOfAreas({
     grid,
@@ -53,7 +55,12 @@ export async function readSiteTrust(reader: SiteReader): Promise<SiteTrust> {
   const cells = trust.flatMap(({ area, facts }) =>
     facts.map((each, day) => ({ areaId: area.id, day, ...gradeDay(each) })),
   );
-  return { grid, cells, notices: await readNotices(reader, grid, areas, trust) };
+  return {
+    grid,
+    areas: trust.map(({ area }) => ({ id: area.id, name: area.name })),
+    cells,
+    notices: await readNotices(reader, grid, trust),
+  };
 }
 
 function gridOf({ rules }: SiteReader, spans: readonly SpokenSpan[]): TrustGrid {
@@ -69,10 +76,9 @@ function gridOf({ rules }: SiteReader, spans: readonly SpokenSpan[]): TrustGrid 
 async function readNotices(
   reader: SiteReader,
   grid: TrustGrid,
-  areas: readonly TrustArea[],
   trust: readonly AreaTrust[],
 ): Promise<TrustNotice[]> {
-  const names = new Map(areas.map((area) => [area.id, area.name]));
+  const names = new Map(trust.map(({ area }) => [area.id, area.name]));
   const pace = await readPaceAtEnd(reader, { first: grid.borders[0] ?? 0, latest: grid.latest });
   const gaps = await readGapsBetweenAreas(reader, grid.latest - clockDays * dayMs);
   return [

@@ -64,8 +64,10 @@ export async function readTrustCounts(
   borders: readonly number[],
 ): Promise<TrustCount[]> {
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
-  const onHour = sql`finished = date_bin('1 hour', finished, timestamptz '2000-01-01Z')`;
-  const onMinute = sql`finished = date_bin('1 minute', finished, timestamptz '2000-01-01Z')`;
+  // Local hours begin with the local day, also where the zone is off by a part of an hour.
+  const midnight = sql`${instantValue(borders[0] ?? 0)}::timestamptz`;
+  const onHour = sql`finished = date_bin('1 hour', finished, ${midnight})`;
+  const onMinute = sql`finished = date_bin('1 minute', finished, ${midnight})`;
   const began = sql`coalesce(started, entered)`;
   const { rows } = await tx.execute(sql`/* trust counts */
     with begun as (

@@ -62,9 +62,12 @@ function missing({ isSpoken, inLongRest, isFew, times, usual, weekday }: DayFact
       'Next to nothing was recorded anywhere for several working days: the site was closed, or an export is missing.',
     );
   if (!isFew || usual === null) return [];
-  const seen = times === 0 ? 'Nothing was' : `Only ${counted(times, 'time was', 'times were')}`;
+  const seen =
+    times === 0
+      ? 'Nothing was recorded here'
+      : `Only ${counted(times, 'start or finish was', 'starts and finishes were')} recorded here`;
   return because(
-    `${seen} recorded here, where ${count(usual)} are usual on a ${weekdays[weekday] ?? 'day'} and other areas went on.`,
+    `${seen}, where ${count(usual)} starts and finishes are usual on a ${weekdays[weekday] ?? 'day'}, and other areas went on.`,
   );
 }
 
@@ -93,7 +96,7 @@ function coarse({ grain, timesForGrain, isGrainOfDay }: DayFacts): TrustReason[]
   const about = isGrainOfDay ? '' : ' of this week';
   const of = (part: number) => `${count(part)} of ${count(finishes)} finishes${about}`;
   const text = {
-    clumps: `${of(clumped)} carry ${clumps === 1 ? 'one and the same moment' : `only ${clumps} moments`}, as where a shift posts its work at its end.`,
+    clumps: `${of(clumped)} carry ${clumps === 1 ? 'one and the same moment' : `only ${clumps} moments`}, as where a shift posts its work at its end, or only dates are told.`,
     hours: `${of(onHours)} are told in whole hours, and most of this work takes less than two.`,
     minutes: `${of(onMinutes)} are told in whole minutes, and most of this work takes less than two.`,
   }[grain];

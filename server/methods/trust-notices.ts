@@ -27,7 +27,7 @@ export function behindNotices(
   return areas.map(({ area, seconds, expected }) => ({
     kind: 'area-behind',
     zoneIds: [area.id],
-    text: `The data of ${area.name} end ${length(seconds)} before those of the other areas; about ${Math.round(expected)} times were to be expected since.`,
+    text: `The data of ${area.name} end ${length(seconds)} before those of the other areas; about ${Math.round(expected)} starts and finishes were to be expected since.`,
     advice: `Look whether the feed of ${area.name} has stopped, and load what is missing. Until then its WIP stands still at the end.`,
     seconds,
   }));

@@ -30,6 +30,8 @@ export const trustMapSchema = z.object({
   /** The local days that are graded: those of the period within the loaded span; null where there is none. */
   from: instantOrNull,
   to: instantOrNull,
+  /** Every area that uploads tell of, in order of flow. */
+  areas: z.array(z.object({ id: z.int(), name: z.string() })),
   cells: z.array(trustCellSchema),
   /** About everything that is loaded, whatever the period. */
   notices: z.array(trustNoticeSchema),

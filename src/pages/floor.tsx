@@ -1,5 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
+import type { FloorRow } from '../../shared/contracts/figures.ts';
 import { dayMs } from '../../shared/local-time.ts';
 import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
@@ -11,6 +12,7 @@ import { floorSentence, type Clause } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
 import { useMay } from '../features/session/queries.ts';
 import { SetUpPanel } from '../features/set-up/set-up-panel.tsx';
+import { TrustNote } from '../features/trust/trust-note.tsx';
 import { PageHeading, Sentence } from '../ui/heading.tsx';
 import { Loading } from '../ui/loading.tsx';
 import { ProblemNotice } from '../ui/notice.tsx';
@@ -59,6 +61,12 @@ export function Component() {
               </Link>
             ))}
           </Sentence>
+          <TrustNote
+            siteId={site.id}
+            period={period}
+            areaIds={areaIdsOf(floor.data.rows)}
+            to={paths.trust(site.id) + search}
+          />
           {mayChange ? <SetUpPanel siteId={site.id} /> : null}
           <FloorSection
             rows={floor.data.rows}
@@ -80,6 +88,9 @@ export function Component() {
     </div>
   );
 }
+
+const areaIdsOf = (rows: readonly FloorRow[]): number[] =>
+  rows.filter((row) => row.zone.kind === 'area').map((row) => row.zone.id);
 
 const daysOf = (period: { from: string; to: string }): number =>
   (Date.parse(period.to) - Date.parse(period.from)) / dayMs;

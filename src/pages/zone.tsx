@@ -7,6 +7,7 @@ import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
 import { StackedCharts } from '../charts/stacked-charts.tsx';
 import { usePeriod, type Period } from '../features/period/use-period.ts';
+import { TrustNote } from '../features/trust/trust-note.tsx';
 import { BooksPanel } from '../features/zones/books-panel.tsx';
 import { CapCaution } from '../features/zones/cap-caution.tsx';
 import { DepartedList } from '../features/zones/departed-list.tsx';
@@ -52,6 +53,12 @@ export function Component() {
       ) : (
         <Loading what="the figures" />
       )}
+      <TrustNote
+        siteId={site.id}
+        period={period}
+        areaIds={zone.areaIds}
+        to={paths.trust(site.id) + search}
+      />
       <div className="grid gap-8 xl:grid-cols-[minmax(0,1fr)_20rem] print:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-5">
           <div className="no-print w-40">

@@ -239,9 +239,11 @@ describe('the grade of a day', () => {
 
   it('tells a day with nothing on it from one with next to nothing', () => {
     expect(grade({ isFew: true, times: 0 }).reasons[0]?.text).toBe(
-      'Nothing was recorded here, where 40 are usual on a Monday and other areas went on.',
+      'Nothing was recorded here, where 40 starts and finishes are usual on a Monday, and other areas went on.',
     );
-    expect(grade({ isFew: true, times: 1 }).reasons[0]?.text).toMatch(/^Only 1 time was recorded/);
+    expect(grade({ isFew: true, times: 1 }).reasons[0]?.text).toMatch(
+      /^Only 1 start or finish was recorded/,
+    );
   });
 
   it('of a day that no upload speaks for is missing, and nothing else is said of it', () => {

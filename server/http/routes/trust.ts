@@ -27,7 +27,11 @@ export function registerTrust({ route, deps }: Api): void {
 }
 
 /** The local days that the period touches. */
-function presentTrust({ grid, cells, notices }: SiteTrust, from: number, to: number): TrustMap {
+function presentTrust(
+  { grid, areas, cells, notices }: SiteTrust,
+  from: number,
+  to: number,
+): TrustMap {
   const isIn = grid.days.map(
     (_, day) => (grid.borders[day] ?? to) < to && (grid.borders[day + 1] ?? from) > from,
   );
@@ -36,6 +40,7 @@ function presentTrust({ grid, cells, notices }: SiteTrust, from: number, to: num
   return {
     from: first < 0 ? null : border(first),
     to: first < 0 ? null : border(isIn.lastIndexOf(true) + 1),
+    areas: areas.map(({ id, name }) => ({ id, name })),
     cells: cells
       .filter(({ day }) => isIn[day])
       .map(({ areaId, day, grade, reasons }) => ({
