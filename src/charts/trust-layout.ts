@@ -49,16 +49,27 @@ export function foldDays(days: readonly string[], width: number): TrustColumn[] 
   return columns;
 }
 
-/** The grades of a field's days as bands, worst on top, as high as they have days. */
+/** What is not covered takes so much of a field at least, so that one day of many is seen. */
+const leastShare = 0.25;
+
+/** The grades of a field's days as bands, worst on top, about as high as they have days. */
 export function bandsOf(grades: readonly (TrustGrade | null)[]): TrustBand[] {
+  const found = [...[...trustGrades].reverse(), null]
+    .map((grade) => ({ grade, days: grades.filter((each) => each === grade).length }))
+    .filter(({ days }) => days > 0)
+    .map((band) => ({ ...band, share: shareOf(band, grades.length) }));
+  const total = found.reduce((sum, band) => sum + band.share, 0);
   let from = 0;
-  return [...[...trustGrades].reverse(), null].flatMap((grade) => {
-    const days = grades.filter((each) => each === grade).length;
-    if (days === 0) return [];
-    const band = { grade, days, from, to: from + days / grades.length };
+  return found.map(({ grade, days, share }) => {
+    const band = { grade, days, from, to: from + share / total };
     from = band.to;
-    return [band];
+    return band;
   });
+}
+
+function shareOf(band: { grade: TrustGrade | null; days: number }, of: number): number {
+  const isPlain = band.grade === null || band.grade === 'covered';
+  return isPlain ? band.days / of : Math.max(leastShare, band.days / of);
 }
 
 const roomForLabel = 62;

@@ -12,6 +12,8 @@ import { floorSentence, type Clause } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
 import { useMay } from '../features/session/queries.ts';
 import { SetUpPanel } from '../features/set-up/set-up-panel.tsx';
+import { gradesInShort } from '../features/trust/poor-days.ts';
+import { trustQuery } from '../features/trust/queries.ts';
 import { TrustNote } from '../features/trust/trust-note.tsx';
 import { PageHeading, Sentence } from '../ui/heading.tsx';
 import { Loading } from '../ui/loading.tsx';
@@ -30,6 +32,12 @@ export function Component() {
     ...floorLevelsQuery(site.id, { ...period, unit }),
     enabled: site.dataUntil !== null,
   });
+  const trust = useQuery({
+    ...trustQuery(site.id, period),
+    enabled: site.dataUntil !== null,
+  }).data;
+  const trustOf = (areaIds: readonly number[]) =>
+    gradesInShort(trust?.cells.filter((cell) => areaIds.includes(cell.zoneId)) ?? []);
   const mayUpload = useMay('upload.create', site.organisationId);
   const mayChange = useMay('zone.change', site.organisationId);
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
@@ -76,7 +84,12 @@ export function Component() {
             linkTo={linkTo}
           />
           <div id="areas">
-            <FloorTable rows={floor.data.rows} days={daysOf(floor.data)} linkTo={linkTo} />
+            <FloorTable
+              rows={floor.data.rows}
+              days={daysOf(floor.data)}
+              linkTo={linkTo}
+              trustOf={trustOf}
+            />
           </div>
           {floor.data.approximate ? (
             <p className="text-soft">Percentiles are read from bins and right within 1 %.</p>

@@ -8,11 +8,14 @@ export function FloorTable({
   rows,
   days,
   linkTo,
+  trustOf,
 }: {
   rows: readonly FloorRow[];
   /** Length of the period, in days. */
   days: number;
   linkTo: (zoneId: number) => string;
+  /** How well the data carry the figures of these areas, in short. */
+  trustOf: (areaIds: readonly number[]) => string;
 }) {
   const columns: Column<FloorRow>[] = [
     {
@@ -42,6 +45,7 @@ export function FloorTable({
         </span>
       ),
     },
+    { id: 'data', header: 'data', value: (row) => trustOf(row.zone.areaIds) || unknown },
   ];
   return (
     <DataTable

@@ -44,3 +44,11 @@ export function poorDaysInWords(cells: readonly TrustCell[]): string {
     ...others.map((each) => `${each.days} ${each.grade}`),
   ]);
 }
+
+/** The days of a period in short, worst first: `1 d missing, 2 d inferred`, or `covered`. Empty where unknown. */
+export function gradesInShort(cells: readonly TrustCell[]): string {
+  const { poor, days } = poorDays(cells);
+  if (days === 0) return '';
+  const told = poor.filter((each) => isWorthTelling(each, days));
+  return told.map((each) => `${each.days} d ${each.grade}`).join(', ') || 'covered';
+}

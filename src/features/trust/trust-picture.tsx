@@ -1,4 +1,4 @@
-import { useState, type KeyboardEvent } from 'react';
+import { Fragment, useState, type KeyboardEvent } from 'react';
 import { Link } from 'react-router-dom';
 import type { TrustCell } from '../../../shared/contracts/trust.ts';
 import { trustGrades, trustMeanings, type TrustGrade } from '../../../shared/trust.ts';
@@ -101,15 +101,15 @@ const columnName = (days: readonly string[], { first }: TrustColumn): string =>
 
 function Legend() {
   return (
-    <dl className="grid gap-x-6 gap-y-1 text-label md:grid-cols-2">
+    <dl className="grid grid-cols-[auto_minmax(0,1fr)] gap-x-4 gap-y-1 text-label">
       {[...trustGrades].reverse().map((grade) => (
-        <div key={grade} className="flex items-baseline gap-2">
-          <dt className="flex shrink-0 items-baseline gap-2 font-bold">
+        <Fragment key={grade}>
+          <dt className="flex items-baseline gap-2 font-bold">
             <GradeSwatch grade={grade} />
             {grade}
           </dt>
           <dd className="text-soft">{trustMeanings[grade]}</dd>
-        </div>
+        </Fragment>
       ))}
     </dl>
   );
