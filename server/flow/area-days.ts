@@ -9,6 +9,7 @@ import {
   type CountedDay,
   type FewVerdict,
 } from '../methods/unusually-few.ts';
+import type { PostedInArea } from './posted-finishes.ts';
 import type { SpokenSpan } from './spoken-spans.ts';
 import type { TrustArea } from './trust-areas.ts';
 import type { Clumps } from './trust-clumps.ts';
@@ -37,6 +38,8 @@ export interface TrustEvidence {
   areas: readonly TrustArea[];
   spans: readonly SpokenSpan[];
   counts: readonly TrustCount[];
+  /** Finishes by the upload that first told them. */
+  posted: readonly PostedInArea[];
   clumps: readonly Clumps[];
   waiting: readonly WaitingBeforeEnd[];
 }
@@ -81,7 +84,7 @@ function restOfSite({ grid, counts }: TrustEvidence): Rest {
 }
 
 function areaTrust(
-  { grid, counts, clumps, waiting }: TrustEvidence,
+  { grid, counts, posted, clumps, waiting }: TrustEvidence,
   area: TrustArea,
   spans: readonly SpokenSpan[],
   rest: Rest,
@@ -111,7 +114,7 @@ function areaTrust(
   const isInUse = ownUntil >= grid.latest - inUseMs;
   const shown = isInUse ? grid.days.length : dayOf(grid, ownUntil) + 1;
   const delay = learnPostingDelay(
-    ofArea,
+    posted.filter((each) => each.areaId === area.id),
     spans.map((span) => spokenDays(grid, span)),
   );
   const wait = (waiting.find((each) => each.areaId === area.id)?.waitingSeconds ?? 0) * 1000;

@@ -8,6 +8,7 @@ import { clockNotices, behindNotices, filteredNotices } from '../methods/trust-n
 import { factsOfAreas, type AreaTrust, type TrustGrid } from './area-days.ts';
 import { readGapsBetweenAreas } from './gaps-between-areas.ts';
 import { readPaceAtEnd } from './pace-at-end.ts';
+import { readPostedFinishes } from './posted-finishes.ts';
 import { readSpokenSpans, type SpokenSpan } from './spoken-spans.ts';
 import { readTrustAreas } from './trust-areas.ts';
 import { readClumps } from './trust-clumps.ts';
@@ -44,11 +45,13 @@ export async function readSiteTrust(reader: SiteReader): Promise<SiteTrust> {
   const grid = gridOf(reader, spans);
   if (grid.days.length === 0) return { grid, areas: [], cells: [], notices: [] };
   const areas = await readTrustAreas(reader);
+  const counts = await readTrustCounts(reader, grid.borders);
   const trust = factsOfAreas({
     grid,
     areas,
     spans,
-    counts: await readTrustCounts(reader, grid.borders),
+    counts,
+    posted: (await readPostedFinishes(reader, grid.borders)) ?? counts,
     clumps: await readClumps(reader, grid.borders),
     waiting: await readWaitingBeforeEnd(reader),
   });

@@ -62,19 +62,21 @@ export function Component() {
       {floor.error instanceof ApiError ? <ProblemNotice problem={floor.error.problem} /> : null}
       {floor.data ? (
         <>
-          <Sentence>
-            {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) => (
-              <Link key={clause.text} to={evidenceOf(clause)}>
-                {clause.text}
-              </Link>
-            ))}
-          </Sentence>
-          <TrustNote
-            siteId={site.id}
-            period={period}
-            areaIds={areaIdsOf(floor.data.rows)}
-            to={paths.trust(site.id) + search}
-          />
+          <div className="flex flex-col gap-1">
+            <Sentence>
+              {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) => (
+                <Link key={clause.text} to={evidenceOf(clause)}>
+                  {clause.text}
+                </Link>
+              ))}
+            </Sentence>
+            <TrustNote
+              siteId={site.id}
+              period={period}
+              areaIds={areaIdsOf(floor.data.rows)}
+              to={paths.trust(site.id) + search}
+            />
+          </div>
           {mayChange ? <SetUpPanel siteId={site.id} /> : null}
           <FloorSection
             rows={floor.data.rows}

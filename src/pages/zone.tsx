@@ -49,16 +49,18 @@ export function Component() {
       <PageHeading>{name}</PageHeading>
       {failed ? <ProblemNotice problem={failed.problem} /> : null}
       {summary.data ? (
-        <Sentence>{zoneSentence(zone, summary.data, site.timeZone)}</Sentence>
+        <div className="flex flex-col gap-1">
+          <Sentence>{zoneSentence(zone, summary.data, site.timeZone)}</Sentence>
+          <TrustNote
+            siteId={site.id}
+            period={period}
+            areaIds={zone.areaIds}
+            to={paths.trust(site.id) + search}
+          />
+        </div>
       ) : (
         <Loading what="the figures" />
       )}
-      <TrustNote
-        siteId={site.id}
-        period={period}
-        areaIds={zone.areaIds}
-        to={paths.trust(site.id) + search}
-      />
       <div className="grid gap-8 xl:grid-cols-[minmax(0,1fr)_20rem] print:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-5">
           <div className="no-print w-40">

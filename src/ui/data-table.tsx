@@ -57,7 +57,8 @@ export function DataTable<Row extends object>({
 }) {
   const [filter, setFilter] = useState('');
   const definitions = useMemo(() => columns.map(toDefinition), [columns]);
-  const data = useMemo(() => [...rows], [rows]);
+  // The table keeps the values of a row as long as the row: columns that read anew need rows anew.
+  const data = useMemo(() => [...rows], [rows, columns]);
   const table = useTable({
     features,
     columns: definitions,

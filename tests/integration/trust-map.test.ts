@@ -2,7 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { TrustCell, TrustMap } from '../../shared/contracts/trust.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
 import { makeSite, type TestSite } from '../support/site.ts';
-import { steadyLog, toCsv, type LogRow } from '../support/steady-log.ts';
+import { steadyLog, toCsv, toEventCsv, type LogRow } from '../support/steady-log.ts';
 
 let test: TestApp;
 beforeAll(async () => {
@@ -166,6 +166,24 @@ describe('the trust map', () => {
     ]);
   });
 
+  it('takes a finish as posted when it was first told, though events tell it again, or a period is replaced', async () => {
+    const half = (from: string, until: string) =>
+      steadyLog().filter((row) => row.started >= from && row.started < until);
+    const events = await makeSite(test);
+    await events.upload(toEventCsv(half('', '2026-09-26')), eventPlan);
+    await events.upload(toEventCsv(half('2026-09-14', '2026-10-10')), eventPlan);
+    expect(await poor(events)).toEqual(lastDay);
+    const replaced = await makeSite(test);
+    await replaced.upload(toCsv(half('', '2026-09-26')));
+    await replaced.upload(toCsv(half('2026-09-14', '2026-10-10')), {
+      shape: 'stay',
+      columns: { job: 'job', area: 'area', started: 'started', finished: 'finished' },
+      mode: 'replace-period',
+      timeZone: 'UTC',
+    });
+    expect(await poor(replaced)).toEqual(lastDay);
+  });
+
   it('finds the day whose work was posted at the end of the shift, and leaves batches alone', async () => {
     const site = await makeSite(test);
     await site.upload(
@@ -276,6 +294,13 @@ describe('the trust map', () => {
     expect(errors.map((error) => error.field)).toContain(field);
   });
 });
+
+const eventPlan = {
+  shape: 'event',
+  columns: { job: 'job', area: 'area', event: 'event', time: 'time' },
+  eventWords: { started: ['in'], finished: ['out'] },
+  timeZone: 'UTC',
+};
 
 const order = ['Wash', 'Bench', 'Ship'];
 const byArea = (one: string, other: string) =>

@@ -48,3 +48,14 @@ export const toCsv = (rows: readonly LogRow[]): string =>
     ...rows.map((row) => [row.job, row.area, row.started, row.finished].join(',')),
     '',
   ].join('\n');
+
+/** The same with a row for each start and finish. */
+export const toEventCsv = (rows: readonly LogRow[]): string =>
+  [
+    'job,area,event,time',
+    ...rows.flatMap(({ job, area, started, finished }) => [
+      `${job},${area},in,${started}`,
+      `${job},${area},out,${finished}`,
+    ]),
+    '',
+  ].join('\n');
