@@ -57,8 +57,7 @@ export function DataTable<Row extends object>({
 }) {
   const [filter, setFilter] = useState('');
   const definitions = useMemo(() => columns.map(toDefinition), [columns]);
-  // The table keeps the values of a row as long as the row: columns that read anew need rows anew.
-  const data = useMemo(() => [...rows], [rows, columns]);
+  const data = useMemo(() => [...rows], [rows]);
   const table = useTable({
     features,
     columns: definitions,
