@@ -17,6 +17,7 @@ import { registerJobs } from './http/routes/jobs.ts';
 import { registerServer } from './http/routes/server.ts';
 import { registerSetUp } from './http/routes/set-up.ts';
 import { registerSites } from './http/routes/sites.ts';
+import { registerTrust } from './http/routes/trust.ts';
 import { registerUploads } from './http/routes/uploads.ts';
 import { registerZones } from './http/routes/zones.ts';
 
@@ -59,6 +60,7 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   registerColumnPlans(api);
   registerZones(api);
   registerFigures(api);
+  registerTrust(api);
   registerJobs(api);
   registerDemo(api);
   registerSetUp(api);

@@ -51,7 +51,8 @@ function sendKept({ req, res }: Asked, entry: { text: string; tag: string }): vo
   else res.type('application/json').send(entry.text);
 }
 
-async function readDataVersion(
+/** The version of a site's data: it grows with every change of figures. */
+export async function readDataVersion(
   deps: Dependencies,
   organisationId: number,
   siteId: number,

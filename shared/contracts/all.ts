@@ -8,6 +8,7 @@ import * as jobs from './jobs.ts';
 import * as server from './server.ts';
 import * as setUp from './set-up.ts';
 import * as sites from './sites.ts';
+import * as trust from './trust.ts';
 import * as uploads from './uploads.ts';
 import * as zones from './zones.ts';
 
@@ -19,6 +20,7 @@ export const contracts: readonly Contract[] = [
   columnPlans,
   zones,
   figures,
+  trust,
   jobs,
   demo,
   setUp,

@@ -6,6 +6,7 @@ export const paths = {
   sites: '/sites',
   floor: (siteId: number) => `/sites/${siteId}/floor`,
   zone: (siteId: number, zoneId: number) => `/sites/${siteId}/zones/${zoneId}`,
+  trust: (siteId: number) => `/sites/${siteId}/trust`,
   intake: (siteId: number) => `/sites/${siteId}/intake`,
   job: (siteId: number, jobKey: string) => `/sites/${siteId}/jobs/${encodeURIComponent(jobKey)}`,
   row: (siteId: number, uploadId: number, line: number) =>

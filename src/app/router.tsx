@@ -51,6 +51,7 @@ export function createRouter(client: QueryClient) {
               loader: ({ params }) => redirect(paths.floor(Number(params.siteId))),
             },
             { path: 'floor', lazy: () => import('../pages/floor.tsx') },
+            { path: 'trust', lazy: () => import('../pages/trust-map.tsx') },
             { path: 'intake', lazy: () => import('../pages/intake.tsx') },
             { path: 'zones/:zoneId', lazy: () => import('../pages/zone.tsx') },
             { path: 'jobs/:jobKey', lazy: () => import('../pages/job.tsx') },

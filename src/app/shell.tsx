@@ -120,6 +120,7 @@ function Navigation({ site, search }: { site: Site; search: string }) {
   const mayKeys = useMay('access-key.read', site.organisationId);
   const links = [
     { to: paths.floor(site.id), label: 'Floor' },
+    { to: paths.trust(site.id), label: 'Trust map' },
     { to: paths.intake(site.id), label: 'Intake' },
     ...(planted ? [{ to: paths.planted(site.id), label: 'What is planted' }] : []),
     ...(mayKeys ? [{ to: paths.accessKeys(site.id), label: 'Access keys' }] : []),

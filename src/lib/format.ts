@@ -91,6 +91,9 @@ export function formatDay(at: string | number | Date | null, timeZone: string): 
   return `${date} ${monthNames[month - 1] ?? ''} ${year}`;
 }
 
+/** A calendar day `2026-08-03`: 3 Aug 2026. */
+export const formatCalendarDay = (day: string): string => formatDay(`${day}T00:00:00Z`, 'UTC');
+
 /** A moment in the site's zone: 3 Aug 2026, 14:05. */
 export function formatMoment(at: string | number | Date | null, timeZone: string): string {
   if (at === null) return unknown;

@@ -1,5 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
+import type { FloorRow } from '../../shared/contracts/figures.ts';
 import { dayMs } from '../../shared/local-time.ts';
 import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
@@ -11,6 +12,9 @@ import { floorSentence, type Clause } from '../features/floor/sentence.ts';
 import { usePeriod } from '../features/period/use-period.ts';
 import { useMay } from '../features/session/queries.ts';
 import { SetUpPanel } from '../features/set-up/set-up-panel.tsx';
+import { gradesInShort } from '../features/trust/poor-days.ts';
+import { trustQuery } from '../features/trust/queries.ts';
+import { TrustNote } from '../features/trust/trust-note.tsx';
 import { PageHeading, Sentence } from '../ui/heading.tsx';
 import { Loading } from '../ui/loading.tsx';
 import { ProblemNotice } from '../ui/notice.tsx';
@@ -28,6 +32,12 @@ export function Component() {
     ...floorLevelsQuery(site.id, { ...period, unit }),
     enabled: site.dataUntil !== null,
   });
+  const trust = useQuery({
+    ...trustQuery(site.id, period),
+    enabled: site.dataUntil !== null,
+  }).data;
+  const trustOf = (areaIds: readonly number[]) =>
+    gradesInShort(trust?.cells.filter((cell) => areaIds.includes(cell.zoneId)) ?? []);
   const mayUpload = useMay('upload.create', site.organisationId);
   const mayChange = useMay('zone.change', site.organisationId);
   const linkTo = (zoneId: number) => paths.zone(site.id, zoneId) + search;
@@ -52,13 +62,21 @@ export function Component() {
       {floor.error instanceof ApiError ? <ProblemNotice problem={floor.error.problem} /> : null}
       {floor.data ? (
         <>
-          <Sentence>
-            {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) => (
-              <Link key={clause.text} to={evidenceOf(clause)}>
-                {clause.text}
-              </Link>
-            ))}
-          </Sentence>
+          <div className="flex flex-col gap-1">
+            <Sentence>
+              {floorSentence(floor.data.rows, floor.data.unit, floor.data.to).map((clause) => (
+                <Link key={clause.text} to={evidenceOf(clause)}>
+                  {clause.text}
+                </Link>
+              ))}
+            </Sentence>
+            <TrustNote
+              siteId={site.id}
+              period={period}
+              areaIds={areaIdsOf(floor.data.rows)}
+              to={paths.trust(site.id) + search}
+            />
+          </div>
           {mayChange ? <SetUpPanel siteId={site.id} /> : null}
           <FloorSection
             rows={floor.data.rows}
@@ -68,7 +86,12 @@ export function Component() {
             linkTo={linkTo}
           />
           <div id="areas">
-            <FloorTable rows={floor.data.rows} days={daysOf(floor.data)} linkTo={linkTo} />
+            <FloorTable
+              rows={floor.data.rows}
+              days={daysOf(floor.data)}
+              linkTo={linkTo}
+              trustOf={trustOf}
+            />
           </div>
           {floor.data.approximate ? (
             <p className="text-soft">Percentiles are read from bins and right within 1 %.</p>
@@ -80,6 +103,9 @@ export function Component() {
     </div>
   );
 }
+
+const areaIdsOf = (rows: readonly FloorRow[]): number[] =>
+  rows.filter((row) => row.zone.kind === 'area').map((row) => row.zone.id);
 
 const daysOf = (period: { from: string; to: string }): number =>
   (Date.parse(period.to) - Date.parse(period.from)) / dayMs;

@@ -7,6 +7,7 @@ import { ApiError } from '../api/api-error.ts';
 import { paths } from '../app/paths.ts';
 import { StackedCharts } from '../charts/stacked-charts.tsx';
 import { usePeriod, type Period } from '../features/period/use-period.ts';
+import { TrustNote } from '../features/trust/trust-note.tsx';
 import { BooksPanel } from '../features/zones/books-panel.tsx';
 import { CapCaution } from '../features/zones/cap-caution.tsx';
 import { DepartedList } from '../features/zones/departed-list.tsx';
@@ -48,7 +49,15 @@ export function Component() {
       <PageHeading>{name}</PageHeading>
       {failed ? <ProblemNotice problem={failed.problem} /> : null}
       {summary.data ? (
-        <Sentence>{zoneSentence(zone, summary.data, site.timeZone)}</Sentence>
+        <div className="flex flex-col gap-1">
+          <Sentence>{zoneSentence(zone, summary.data, site.timeZone)}</Sentence>
+          <TrustNote
+            siteId={site.id}
+            period={period}
+            areaIds={zone.areaIds}
+            to={paths.trust(site.id) + search}
+          />
+        </div>
       ) : (
         <Loading what="the figures" />
       )}

@@ -8,7 +8,7 @@ export function Breadcrumbs({
   here: string;
 }) {
   return (
-    <nav aria-label="Where you are" className="text-label text-soft">
+    <nav aria-label="Where you are" className="no-print text-label text-soft">
       {links.map((link) => (
         <span key={link.to}>
           <Link to={link.to}>{link.label}</Link>

@@ -70,3 +70,20 @@ it('another site has nothing planted, and no such screen to choose', async () =>
   await page.getByText('Nothing is planted here.').waitFor();
   await expectAccessible(page);
 });
+
+it('the demo’s data are trusted from the first day to the last, which ends before its time', async () => {
+  const { page } = await product.visit();
+  await signInOnPage(page, 'analyst@lowmoor.example');
+  await page.getByRole('link', { name: 'Main depot' }).click();
+  await heading(page, 'Floor', 1);
+  await page.getByRole('link', { name: 'Trust map' }).click();
+  await heading(page, 'Trust map', 1);
+  await page.getByRole('button', { name: 'all', exact: true }).click();
+  await page.getByText('Every area is settling on 29 Nov 2026. ').waitFor();
+  await page.getByText('99 % of the areas’ days are covered.').waitFor();
+  expect(await page.getByText('About the data as a whole').count()).toBe(0);
+  await page
+    .getByRole('link', { name: 'Dispatch: of 183 days 1 settling and 182 covered' })
+    .waitFor();
+  await expectAccessible(page);
+});

@@ -8,13 +8,16 @@ export function FloorTable({
   rows,
   days,
   linkTo,
+  trustOf,
 }: {
   rows: readonly FloorRow[];
   /** Length of the period, in days. */
   days: number;
   linkTo: (zoneId: number) => string;
+  /** How well the data carry the figures of these areas, in short. */
+  trustOf: (areaIds: readonly number[]) => string;
 }) {
-  const columns: Column<FloorRow>[] = [
+  const columns: Column<FloorRow & { data: string }>[] = [
     {
       id: 'zone',
       header: 'area',
@@ -42,12 +45,14 @@ export function FloorTable({
         </span>
       ),
     },
+    { id: 'data', header: 'data', value: (row) => row.data },
   ];
   return (
     <DataTable
       label="Areas"
       columns={columns}
-      rows={rows}
+      // A part of the row: the table keeps what it once read of one.
+      rows={rows.map((row) => ({ ...row, data: trustOf(row.zone.areaIds) || unknown }))}
       fileName="floor.csv"
       filterLabel="Rows with"
     />

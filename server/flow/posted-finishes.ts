@@ -1,0 +1,64 @@
+import { sql } from 'drizzle-orm';
+import { z } from 'zod';
+import type { PostedFinishes } from '../methods/posting-delay.ts';
+import { dayBorders } from './trust-counts.ts';
+import type { SiteReader } from './zone-reader.ts';
+
+export interface PostedInArea extends PostedFinishes {
+  areaId: number;
+}
+
+const postedRow = z
+  .object({
+    area_id: z.number(),
+    day: z.number(),
+    upload_id: z.number(),
+    finishes: z.coerce.number(),
+  })
+  .transform((row) => ({
+    areaId: row.area_id,
+    day: row.day - 1,
+    uploadId: row.upload_id,
+    finishes: row.finishes,
+  }));
+
+/**
+ * Finishes by area, local day and the first upload that told them, from the rows as told. Null where the
+ * records know it themselves: a record's source is the first row that tells it as it now stands. That does
+ * not hold where rows tell single events, of which none tells the whole, nor where an upload replaced what
+ * earlier ones had told.
+ *
+ * @param borders of n local days, n + 1
+ */
+export async function readPostedFinishes(
+  reader: SiteReader,
+  borders: readonly number[],
+): Promise<PostedInArea[] | null> {
+  if (await recordsKnowIt(reader)) return null;
+  const { tx, organisationId, siteId } = reader;
+  const { rows } = await tx.execute(sql`/* finishes by the upload that posted them */
+    with first_told as (
+      select area_id, finished, min(upload_id) as upload_id
+      from upload_row
+      where organisation_id = ${organisationId} and site_id = ${siteId} and finished is not null
+      group by area_id, job_key, finished
+    )
+    select
+      area_id, width_bucket(finished, ${dayBorders(borders)}) as day, upload_id,
+      count(*) as finishes
+    from first_told
+    where finished >= (${dayBorders(borders)})[1]
+    group by 1, 2, 3`);
+  return z.array(postedRow).parse(rows);
+}
+
+async function recordsKnowIt({ tx, organisationId, siteId }: SiteReader): Promise<boolean> {
+  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  const { rows } = await tx.execute(sql`/* whether records know their first upload */
+    select not exists (
+      select from upload where ${ofSite} and 'event' in (plan ->> 'shape', plan_given ->> 'shape')
+    ) and not exists (
+      select from upload_area where ${ofSite} and replaces_from is not null
+    ) as known`);
+  return rows[0]?.known === true;
+}
