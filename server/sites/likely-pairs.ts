@@ -28,7 +28,7 @@ function alikeByName(areas: readonly NamedArea[]): LikelyPair[] {
   for (const [index, one] of areas.entries())
     for (const other of areas.slice(index + 1)) {
       if (!areNamesAlike(one.name, other.name)) continue;
-      const [fewer, more] = one.rows <= other.rows ? [one, other] : [other, one];
+      const [fewer, more] = one.rows < other.rows ? [one, other] : [other, one];
       pairs.push({ areaId: fewer.id, targetAreaId: more.id });
       if (pairs.length === mostPairs) return pairs;
     }

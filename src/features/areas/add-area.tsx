@@ -14,12 +14,12 @@ export function AddArea({ siteId }: { siteId: number }) {
       className="no-print flex flex-col gap-3"
       onSubmit={(event) => {
         event.preventDefault();
-        add.mutate(name, { onSuccess: () => setName('') });
+        if (!add.isPending) add.mutate(name, { onSuccess: () => setName('') });
       }}
     >
       <div className="flex flex-wrap items-end gap-3">
         <TextField label="Name of a new area" isRequired value={name} onChange={setName} />
-        <Button type="submit" isDisabled={add.isPending || name.trim() === ''}>
+        <Button type="submit" isDisabled={name.trim() === ''}>
           Add this area
         </Button>
       </div>

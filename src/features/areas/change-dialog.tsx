@@ -34,7 +34,7 @@ function ChangeForm({ site, area, onDone }: { site: Site; area: Area; onDone: ()
         event.preventDefault();
         const changes = changesOf(area, name, servers.trim(), from);
         if (Object.keys(changes).length === 0) onDone();
-        else change.mutate(changes, { onSuccess: onDone });
+        else if (!change.isPending) change.mutate(changes, { onSuccess: onDone });
       }}
     >
       <TextField
@@ -66,7 +66,7 @@ function ChangeForm({ site, area, onDone }: { site: Site; area: Area; onDone: ()
         <Button
           type="submit"
           kind="main"
-          isDisabled={wrongDay || wrongServers || name.trim() === '' || change.isPending}
+          isDisabled={wrongDay || wrongServers || name.trim() === ''}
         >
           Keep these changes
         </Button>

@@ -49,7 +49,8 @@ function MoveForm({ site, all, area, target: offered, onDone }: Given & { onDone
       className="flex flex-col gap-4"
       onSubmit={(event) => {
         event.preventDefault();
-        if (isReady)
+        if (isReady && !move.isPending)
+          // The button is not disabled meanwhile: it would lose the focus, and Escape with it.
           move.mutate({ areaId: area.id, targetAreaId: targetId, from }, { onSuccess: onDone });
       }}
     >
@@ -80,8 +81,10 @@ function MoveForm({ site, all, area, target: offered, onDone }: Given & { onDone
       {move.error instanceof ApiError ? <ProblemNotice problem={move.error.problem} /> : null}
       <div className="flex flex-wrap justify-end gap-3">
         <Button onPress={onDone}>Leave it as it is</Button>
-        <Button type="submit" kind="main" isDisabled={!isReady || move.isPending}>
-          {from === null ? 'Merge them' : `Move them from ${formatDay(from, site.timeZone)}`}
+        <Button type="submit" kind="main" isDisabled={!isReady}>
+          {isDated
+            ? `Move them from ${from === null ? 'a day on' : formatDay(from, site.timeZone)}`
+            : 'Merge them'}
         </Button>
       </div>
     </form>

@@ -33,7 +33,7 @@ function pairClause({ areas, likelyPairs }: Areas): string[] {
 
 function moveClause(moves: readonly AreaMove[], timeZone: string): string {
   const [move] = moves;
-  if (!move) return 'each is written as one name';
+  if (!move) return 'each row counts for the area that its file names';
   if (moves.length > 1) return `${moves.length} moves between names are in force`;
   return moveInWords(move, timeZone);
 }
