@@ -55,7 +55,7 @@ describe('the screen of areas', () => {
     expect(await namesIn(page)).toEqual(['Receiving', 'Repair bench', 'Dispatch', 'Repair-bench']);
     await expectAccessible(page);
     const offered = page.getByRole('heading', { name: 'Are these one area?' }).locator('..');
-    await offered.getByRole('button', { name: 'Merge or move Repair-bench' }).click();
+    await offered.getByRole('button', { name: 'Merge Repair-bench' }).click();
     const dialog = page.getByRole('dialog');
     await dialog.getByText(/^6 rows of “Repair-bench” will count as “Repair bench”/).waitFor();
     await dialog.getByText('Nothing is lost: you can undo it.').waitFor();
@@ -78,7 +78,7 @@ describe('the screen of areas', () => {
 
   it('moves rows from a day on, by keyboard alone', async () => {
     const { page, complaints } = await open();
-    await page.getByRole('button', { name: 'Merge or move Dispatch' }).focus();
+    await page.getByRole('button', { name: 'Merge Dispatch' }).focus();
     await page.keyboard.press('Enter');
     const dialog = page.getByRole('dialog');
     const target = dialog.getByLabel('They count as');
@@ -109,7 +109,7 @@ describe('the screen of areas', () => {
       .expect(201);
     await product.test.settled();
     const { page } = await open();
-    await page.getByRole('button', { name: 'Merge or move Receiving' }).click();
+    await page.getByRole('button', { name: 'Merge Receiving' }).click();
     const dialog = page.getByRole('dialog');
     await dialog.getByLabel('They count as').selectOption({ label: 'Dispatch' });
     await dialog.getByRole('button', { name: 'Merge them' }).click();
@@ -158,7 +158,7 @@ describe('the screen of areas', () => {
     await page.getByText(/may be one area, written in two ways\./).waitFor();
     expect(await namesIn(page)).toHaveLength(4);
     const main = page.getByRole('main');
-    for (const name of [/^Merge or move/, /^Change/, /^Add/, /^Take/])
+    for (const name of [/^Merge/, /^Change/, /^Add/, /^Take/])
       expect([name, await main.getByRole('button', { name }).count()]).toEqual([name, 0]);
     await expectAccessible(page);
     expect(complaints).toEqual([]);

@@ -1,7 +1,7 @@
 import { Link } from 'react-router-dom';
 import type { Area, Areas } from '../../../shared/contracts/areas.ts';
 import type { Site } from '../../../shared/contracts/sites.ts';
-import { formatCount, formatDay, formatMoment } from '../../lib/format.ts';
+import { formatCount, formatDay } from '../../lib/format.ts';
 import { DataTable, type Column } from '../../ui/data-table.tsx';
 import { ChangeDialog } from './change-dialog.tsx';
 import { MoveDialog } from './move-dialog.tsx';
@@ -33,7 +33,7 @@ export function AreaTable({
       header: 'files write',
       value: (area) => spellingsInWords(area, all),
       cell: (area) => (
-        <span className="block min-w-40 whitespace-normal">{spellingsInWords(area, all)}</span>
+        <span className="block min-w-28 whitespace-normal">{spellingsInWords(area, all)}</span>
       ),
     },
     {
@@ -41,7 +41,9 @@ export function AreaTable({
       header: 'servers',
       figure: true,
       value: (area) => area.servers,
-      cell: (area) => serversInWords(area, site.timeZone),
+      cell: (area) => (
+        <span className="block whitespace-normal">{serversInWords(area, site.timeZone)}</span>
+      ),
     },
     {
       id: 'rows',
@@ -50,8 +52,8 @@ export function AreaTable({
       value: (area) => area.rows,
       cell: (area) => formatCount(area.rows),
     },
-    moment('first', 'first seen', (area) => area.firstAt, site),
-    moment('last', 'last seen', (area) => area.latestAt, site),
+    day('first', 'first seen', (area) => area.firstAt, site),
+    day('last', 'last seen', (area) => area.latestAt, site),
   ];
   const actions: Column<Area> = {
     id: 'actions',
@@ -59,11 +61,9 @@ export function AreaTable({
     isAction: true,
     value: () => null,
     cell: (area) => (
-      <span className="flex gap-2">
+      <span className="flex flex-col items-start gap-1 xl:flex-row xl:gap-2">
         <ChangeDialog site={site} area={area} />
-        {shown.length > 1 ? (
-          <MoveDialog trigger="Merge or move" site={site} all={all} area={area} />
-        ) : null}
+        {shown.length > 1 ? <MoveDialog trigger="Merge" site={site} all={all} area={area} /> : null}
       </span>
     ),
   };
@@ -84,7 +84,7 @@ function serversInWords({ servers, serversFrom }: Area, timeZone: string): strin
   return formatCount(servers) + since;
 }
 
-const moment = (
+const day = (
   id: string,
   header: string,
   value: (area: Area) => string | null,
@@ -93,5 +93,5 @@ const moment = (
   id,
   header,
   value,
-  cell: (area) => formatMoment(value(area), timeZone),
+  cell: (area) => formatDay(value(area), timeZone),
 });

@@ -1,6 +1,7 @@
 import { useState } from 'react';
 import type { Area } from '../../../shared/contracts/areas.ts';
 import type { Site } from '../../../shared/contracts/sites.ts';
+import { localDay, zoneRules } from '../../../shared/local-time.ts';
 import { ApiError } from '../../api/api-error.ts';
 import { Button } from '../../ui/button.tsx';
 import { FormDialog } from '../../ui/form-dialog.tsx';
@@ -22,7 +23,7 @@ export function ChangeDialog({ site, area }: { site: Site; area: Area }) {
 function ChangeForm({ site, area, onDone }: { site: Site; area: Area; onDone: () => void }) {
   const [name, setName] = useState(area.name);
   const [servers, setServers] = useState(area.servers === null ? '' : String(area.servers));
-  const [day, setDay] = useState('');
+  const [day, setDay] = useState(sinceDay(area, site));
   const change = useChangeArea(site.id, area.id);
   const from = startOfDay(day, site.timeZone);
   const wrongDay = day !== '' && from === null;
@@ -32,7 +33,8 @@ function ChangeForm({ site, area, onDone }: { site: Site; area: Area; onDone: ()
       className="flex flex-col gap-4"
       onSubmit={(event) => {
         event.preventDefault();
-        const changes = changesOf(area, name, servers.trim(), from);
+        const isSameDay = day === sinceDay(area, site);
+        const changes = changesOf(area, name, servers.trim(), isSameDay ? area.serversFrom : from);
         if (Object.keys(changes).length === 0) onDone();
         else if (!change.isPending) change.mutate(changes, { onSuccess: onDone });
       }}
@@ -75,13 +77,17 @@ function ChangeForm({ site, area, onDone }: { site: Site; area: Area; onDone: ()
   );
 }
 
-/** What differs from the area as it is; servers also where they are said to hold from another day on. */
-function changesOf(area: Area, name: string, servers: string, from: string | null): AreaChanges {
-  const number = servers === '' ? null : Number(servers);
-  const isNewNumber = number !== area.servers || (number !== null && from !== null);
+/** The day since which the area has its servers; empty for since ever. */
+const sinceDay = ({ serversFrom }: Area, { timeZone }: Site): string =>
+  serversFrom === null ? '' : localDay(zoneRules(timeZone), Date.parse(serversFrom));
+
+/** What differs from the area as it is. */
+function changesOf(area: Area, name: string, typed: string, from: string | null): AreaChanges {
+  const servers = typed === '' ? null : Number(typed);
+  const isSame = servers === area.servers && (servers === null || from === area.serversFrom);
   return {
     ...(name.trim() === area.name ? {} : { name }),
-    ...(isNewNumber ? { servers: number } : {}),
-    ...(isNewNumber && number !== null && from !== null ? { serversFrom: from } : {}),
+    ...(isSame ? {} : { servers }),
+    ...(isSame || servers === null || from === null ? {} : { serversFrom: from }),
   };
 }

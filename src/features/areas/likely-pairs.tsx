@@ -37,13 +37,7 @@ export function LikelyPairs({
               {described(area, site)} and {described(target, site)}
             </span>
             {mayChange ? (
-              <MoveDialog
-                trigger="Merge or move"
-                site={site}
-                all={all}
-                area={area}
-                target={target}
-              />
+              <MoveDialog trigger="Merge" site={site} all={all} area={area} target={target} />
             ) : null}
           </li>
         ))}
