@@ -60,8 +60,8 @@ export async function removeUnheardAreas({
       select target_area_id from area_move join kept on kept.id = area_id where ${ofSite}
     )
     select id from area where ${ofSite} and id not in (select id from kept)`);
-  const unheard = sql`any(${sql.param(rows.map((row) => row.id))}::integer[])`;
   if (rows.length === 0) return;
+  const unheard = sql`any(${sql.param(rows.map((row) => row.id))}::integer[])`;
   // Two such areas may be moved to one another: the moves go first.
   await tx.execute(sql`/* remove moves of unheard areas */
     delete from area_move where ${ofSite} and area_id = ${unheard}`);
