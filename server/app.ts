@@ -9,6 +9,7 @@ import { answerErrors, unknownCall } from './http/middleware/errors.ts';
 import { requestId, requestIdOf } from './http/middleware/request-id.ts';
 import { securityHeaders } from './http/middleware/security-headers.ts';
 import { registerAccessKeys } from './http/routes/access-keys.ts';
+import { registerAreas } from './http/routes/areas.ts';
 import { registerAuth } from './http/routes/auth.ts';
 import { registerColumnPlans } from './http/routes/column-plans.ts';
 import { registerFigures } from './http/routes/figures.ts';
@@ -64,6 +65,7 @@ export function buildApp(deps: Dependencies, client?: (app: Express) => void): E
   registerJobs(api);
   registerDemo(api);
   registerSetUp(api);
+  registerAreas(api);
   registerAccessKeys(api);
   app.use(router);
   app.use('/api', unknownCall);

@@ -43,6 +43,8 @@ export const policy = {
   'zone.read': { open: 'member' },
   'zone.create': { open: analysts },
   'zone.change': { open: analysts },
+  'area.read': { open: 'member' },
+  'area.move': { open: analysts },
   'cap.declare': { open: analystsAndOwners },
   'figures.read': { open: 'member' },
   'job.read': { open: 'member' },

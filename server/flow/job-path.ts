@@ -3,6 +3,7 @@ import { z } from 'zod';
 import type { ToldSource } from './derive/derivation.ts';
 import { createTouchedJobs, gatherToldRows, keyedRows } from './derive/told-rows.ts';
 import { isTruthFor } from './derive/voided-rows.ts';
+import { readAreaMoves } from './read-area-moves.ts';
 import type { SiteReader } from './zone-reader.ts';
 
 const date = z.coerce.date().nullable();
@@ -88,7 +89,8 @@ export async function readToldRows(
   jobKey: string,
 ): Promise<ToldRow[]> {
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
-  const source: ToldSource = { tx, organisationId, siteId };
+  const moves = await readAreaMoves({ tx, organisationId, siteId });
+  const source: ToldSource = { tx, organisationId, siteId, moves };
   await createTouchedJobs(tx);
   await tx.execute(sql`/* touch a job */
     insert into touched_job
@@ -128,6 +130,7 @@ export async function readVoidedRows(
   { tx, organisationId, siteId }: SiteReader,
   jobKey: string,
 ): Promise<VoidedRow[]> {
+  const moves = await readAreaMoves({ tx, organisationId, siteId });
   const { rows } = await tx.execute(sql`/* voided rows of a job */
     select
       told.upload_id, told.line, told.part, told.arrived, told.started, told.finished,
@@ -139,7 +142,7 @@ export async function readVoidedRows(
       and zone.site_id = told.site_id and zone.id = told.area_id
     cross join lateral (
       select min(truth.upload_id) as upload_id from upload_area as truth
-      where ${isTruthFor(organisationId, siteId)}
+      where ${isTruthFor(organisationId, siteId, moves)}
     ) as truth
     where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
       and told.job_key = ${jobKey} and truth.upload_id is not null

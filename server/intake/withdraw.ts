@@ -35,37 +35,36 @@ export async function takeRowsOut(derivation: Derivation, uploadId: number): Pro
   await tx.execute(sql`/* withdraw areas */ delete from upload_area where ${ofUpload}`);
 }
 
-/** Removes areas that were found in files of which none is left, unless a person made something of them. */
+/**
+ * Removes areas that were found in files of which none is left, unless a person made something of them: put
+ * them into a loop, declared a number of servers or a cap, or moved to them rows of an area that stays. With
+ * an area go its own moves, which move nothing any more.
+ */
 export async function removeUnheardAreas({
   tx,
   organisationId,
   siteId,
 }: Derivation): Promise<void> {
+  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
+  const { rows } = await tx.execute(sql`/* unheard areas */
+    with recursive kept as (
+      select id from area
+      where ${ofSite} and (
+        origin <> 'found'
+        or id in (select area_id from upload_area where ${ofSite})
+        or id in (select area_id from zone_area where ${ofSite})
+        or id in (select zone_id from zone_fact where ${ofSite})
+        or id in (select zone_id from cap where ${ofSite})
+      )
+      union
+      select target_area_id from area_move join kept on kept.id = area_id where ${ofSite}
+    )
+    select id from area where ${ofSite} and id not in (select id from kept)`);
+  if (rows.length === 0) return;
+  const unheard = sql`any(${sql.param(rows.map((row) => row.id))}::integer[])`;
+  // Two such areas may be moved to one another: the moves go first.
+  await tx.execute(sql`/* remove moves of unheard areas */
+    delete from area_move where ${ofSite} and area_id = ${unheard}`);
   await tx.execute(sql`/* remove unheard areas */
-    delete from zone using area
-    where zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}
-      and area.organisation_id = zone.organisation_id
-      and area.site_id = zone.site_id
-      and area.id = zone.id
-      and area.origin = 'found'
-      and not exists (
-        select from upload_area
-        where upload_area.organisation_id = ${organisationId} and upload_area.site_id = ${siteId}
-          and upload_area.area_id = area.id
-      )
-      and not exists (
-        select from zone_area
-        where zone_area.organisation_id = ${organisationId} and zone_area.site_id = ${siteId}
-          and zone_area.area_id = area.id
-      )
-      and not exists (
-        select from zone_fact
-        where zone_fact.organisation_id = ${organisationId} and zone_fact.site_id = ${siteId}
-          and zone_fact.zone_id = area.id
-      )
-      and not exists (
-        select from cap
-        where cap.organisation_id = ${organisationId} and cap.site_id = ${siteId}
-          and cap.zone_id = area.id
-      )`);
+    delete from zone where ${ofSite} and id = ${unheard}`);
 }

@@ -4,6 +4,7 @@ import { zoneRules } from '../../shared/local-time.ts';
 import type { Database, Transaction } from '../db/client.ts';
 import { withTenant } from '../db/tenant.ts';
 import type { Derivation } from '../flow/derive/derivation.ts';
+import { readAreaMoves } from '../flow/read-area-moves.ts';
 
 const siteRow = z.object({
   time_zone: z.string(),
@@ -28,6 +29,7 @@ export function inDerivation<Result>(
       organisationId,
       siteId,
       ...(await readSettings(tx, organisationId, siteId)),
+      moves: await readAreaMoves({ tx, organisationId, siteId }),
     });
   });
 }

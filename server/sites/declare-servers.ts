@@ -3,7 +3,7 @@ import { zoneFact } from '../db/schema/zones.ts';
 import { ofSite, type SiteWriter } from './site-writer.ts';
 
 /** The beginning of all data: what holds without a date holds from here on. */
-const beginning = new Date(Date.UTC(1950, 0, 1));
+export const beginning = new Date(Date.UTC(1950, 0, 1));
 
 /**
  * Declares the number of servers of a zone from a moment on, until the next declaration.

@@ -22,14 +22,38 @@ const zoneRow = z.object({
   warm_until: date,
 });
 
-/** The zones of a site: areas in order of flow, then loops, then the site; or one of them. */
-export async function readZones(
+/**
+ * The zones of a site: areas in order of flow, then loops, then the site. Areas that are merged into another
+ * bear no records and are left out, also of the areas that loops and the site are made of.
+ */
+export const readZones = (
   tx: Transaction,
   organisationId: number,
   siteId: number,
-  onlyZone: number | null = null,
+): Promise<Zone[]> => selectZones(tx, { organisationId, siteId, onlyZone: null, merged: false });
+
+/** The same, with the areas that are merged into another. */
+export const readEveryZone = (
+  tx: Transaction,
+  organisationId: number,
+  siteId: number,
+): Promise<Zone[]> => selectZones(tx, { organisationId, siteId, onlyZone: null, merged: true });
+
+async function selectZones(
+  tx: Transaction,
+  {
+    organisationId,
+    siteId,
+    onlyZone,
+    merged,
+  }: { organisationId: number; siteId: number; onlyZone: number | null; merged: boolean },
 ): Promise<Zone[]> {
   const { rows } = await tx.execute(sql`/* zones of a site */
+    with hidden as (
+      select area_id from area_move
+      where organisation_id = ${organisationId} and site_id = ${siteId}
+        and valid_from is null and not ${merged}::boolean
+    )
     select
       zone.id, zone.kind, zone.name, area.position, zone.counts_from, zone.state,
       zone.data_from, zone.data_until, zone.warm_until,
@@ -38,6 +62,7 @@ export async function readZones(
           select array_agg(spanned.id order by spanned.position, spanned.id)
           from area as spanned
           where spanned.organisation_id = ${organisationId} and spanned.site_id = ${siteId}
+            and (zone.kind = 'area' or spanned.id not in (select area_id from hidden))
             and case zone.kind
               when 'area' then spanned.id = zone.id
               when 'site' then true
@@ -72,19 +97,23 @@ export async function readZones(
       order by valid_from desc limit 1
     ) as latest_servers on true
     where zone.organisation_id = ${organisationId} and zone.site_id = ${siteId}
-      and (${onlyZone}::integer is null or zone.id = ${onlyZone}::integer)
+      and case when ${onlyZone}::integer is null
+        then zone.id not in (select area_id from hidden)
+        else zone.id = ${onlyZone}::integer
+      end
     order by zone.kind, area.position, zone.name, zone.id`);
   return z.array(zoneRow).parse(rows).map(presentZone);
 }
 
-/** One zone of a site. @throws ApiError not-found */
+/** One zone of a site, be it a merged area. @throws ApiError not-found */
 export async function findZone(
   tx: Transaction,
   organisationId: number,
   siteId: number,
   zoneId: number,
 ): Promise<Zone> {
-  const [found] = await readZones(tx, organisationId, siteId, zoneId);
+  const site = { organisationId, siteId };
+  const [found] = await selectZones(tx, { ...site, onlyZone: zoneId, merged: false });
   if (!found) throw notFound('The zone');
   return found;
 }

@@ -1,3 +1,4 @@
+import { and, inArray } from 'drizzle-orm';
 import type { z } from 'zod';
 import type { confirmSetUp, SetUp } from '../../shared/contracts/set-up.ts';
 import { area } from '../db/schema/zones.ts';
@@ -28,7 +29,7 @@ export async function readSetUpOf(
   const servers =
     until === null ? new Map<number, number>() : await readServerGuesses(reader, Date.parse(until));
   return {
-    confirmed: !(await anyFound(tx, organisationId, siteId)),
+    confirmed: !(await anyFound({ tx, organisationId, siteId }, areas)),
     areas: areas.map((zone) => ({
       zoneId: zone.id,
       name: zone.name,
@@ -40,12 +41,12 @@ export async function readSetUpOf(
   };
 }
 
-async function anyFound(tx: Transaction, organisationId: number, siteId: number): Promise<boolean> {
-  const areas = await tx
-    .select({ origin: area.origin })
+async function anyFound(writer: SiteWriter, zones: readonly { id: number }[]): Promise<boolean> {
+  const areas = await writer.tx
+    .select({ id: area.id, origin: area.origin })
     .from(area)
-    .where(ofSite({ tx, organisationId, siteId }, area));
-  return areas.some(({ origin }) => origin === 'found');
+    .where(ofSite(writer, area));
+  return areas.some(({ id, origin }) => origin === 'found' && zones.some((zone) => zone.id === id));
 }
 
 /**
@@ -63,7 +64,10 @@ export async function applySetUp(writer: SiteWriter, areas: Confirmed): Promise<
     const before = zones.find((zone) => zone.id === zoneId)?.servers ?? null;
     if (servers !== before) await declareServers(writer, zoneId, servers, null);
   }
-  await tx.update(area).set({ origin: 'declared' }).where(ofSite(writer, area));
+  await tx
+    .update(area)
+    .set({ origin: 'declared' })
+    .where(and(ofSite(writer, area), inArray(area.id, [...known])));
 }
 
 function refuseIncomplete(known: ReadonlySet<number>, areas: Confirmed): void {

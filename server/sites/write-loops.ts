@@ -1,6 +1,8 @@
 import { and, eq, inArray, sql } from 'drizzle-orm';
 import { area, zone, zoneArea } from '../db/schema/zones.ts';
 import { conflict, invalidInput } from '../errors.ts';
+import { areaCountedAt, mergedAreas } from '../flow/area-moves.ts';
+import { readAreaMoves } from '../flow/read-area-moves.ts';
 import { lockNames, ofSite, type SiteWriter } from './site-writer.ts';
 
 /** Makes a loop of areas; its stays are derived in the background. */
@@ -35,7 +37,12 @@ export async function renameLoop(writer: SiteWriter, zoneId: number, name: strin
     .where(and(ofSite(writer, zone), eq(zone.id, zoneId)));
 }
 
-/** Sets which areas a loop spans. @throws ApiError invalid-input for ids that are no areas of the site */
+/**
+ * Sets which areas a loop spans. An area merged into one of them stays in the loop, so that it is there
+ * when the merge is taken back.
+ *
+ * @throws ApiError invalid-input for ids that are no areas of the site, or are merged into another
+ */
 export async function setLoopAreas(
   writer: SiteWriter,
   zoneId: number,
@@ -43,19 +50,30 @@ export async function setLoopAreas(
 ): Promise<void> {
   const { tx, organisationId, siteId } = writer;
   const wanted = [...new Set(areaIds)];
+  const moves = await readAreaMoves(writer);
+  const merged = mergedAreas(moves);
   const found = await tx
     .select({ id: area.id })
     .from(area)
     .where(and(ofSite(writer, area), inArray(area.id, wanted)));
-  const unknown = wanted.filter((id) => !found.some((each) => each.id === id));
+  const unknown = wanted.filter((id) => !found.some((each) => each.id === id) || merged.has(id));
   if (unknown.length > 0)
     throw invalidInput('A loop is made of areas of its site. Nothing was changed.', [
-      { field: 'areaIds', message: `Not an area of this site: ${unknown.join(', ')}.` },
+      {
+        field: 'areaIds',
+        message: `Not an area of this site, or merged into another: ${unknown.join(', ')}.`,
+      },
     ]);
-  await tx.delete(zoneArea).where(and(ofSite(writer, zoneArea), eq(zoneArea.zoneId, zoneId)));
+  const before = await tx
+    .delete(zoneArea)
+    .where(and(ofSite(writer, zoneArea), eq(zoneArea.zoneId, zoneId)))
+    .returning({ areaId: zoneArea.areaId });
+  const stay = before
+    .map(({ areaId }) => areaId)
+    .filter((id) => merged.has(id) && wanted.includes(areaCountedAt(moves, id, -Infinity)));
   await tx
     .insert(zoneArea)
-    .values(wanted.map((areaId) => ({ organisationId, siteId, zoneId, areaId })));
+    .values([...wanted, ...stay].map((areaId) => ({ organisationId, siteId, zoneId, areaId })));
 }
 
 async function refuseTakenName(

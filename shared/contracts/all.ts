@@ -1,4 +1,5 @@
 import * as accessKeys from './access-keys.ts';
+import * as areas from './areas.ts';
 import * as auth from './auth.ts';
 import * as columnPlans from './column-plans.ts';
 import type { Contract } from './contract.ts';
@@ -19,6 +20,7 @@ export const contracts: readonly Contract[] = [
   uploads,
   columnPlans,
   zones,
+  areas,
   figures,
   trust,
   jobs,

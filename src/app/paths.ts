@@ -12,5 +12,6 @@ export const paths = {
   row: (siteId: number, uploadId: number, line: number) =>
     `/sites/${siteId}/uploads/${uploadId}/rows/${line}`,
   planted: (siteId: number) => `/sites/${siteId}/planted`,
+  areas: (siteId: number) => `/sites/${siteId}/areas`,
   accessKeys: (siteId: number) => `/sites/${siteId}/access-keys`,
 } as const;

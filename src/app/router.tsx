@@ -57,6 +57,7 @@ export function createRouter(client: QueryClient) {
             { path: 'jobs/:jobKey', lazy: () => import('../pages/job.tsx') },
             { path: 'uploads/:uploadId/rows/:line', lazy: () => import('../pages/row.tsx') },
             { path: 'planted', lazy: () => import('../pages/planted.tsx') },
+            { path: 'areas', lazy: () => import('../pages/areas.tsx') },
             { path: 'access-keys', lazy: () => import('../pages/access-keys.tsx') },
             { path: '*', element: <NotFoundPage /> },
           ],

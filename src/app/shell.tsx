@@ -47,7 +47,7 @@ export function SiteShell() {
           <OfflineNotice />
           {site.busy ? (
             <div className="mb-4">
-              <Notice>An upload is being worked in; figures catch up when it is done.</Notice>
+              <Notice>The site is being worked on; figures catch up when that is done.</Notice>
             </div>
           ) : null}
           <Suspense fallback={<Loading what="the screen" />}>
@@ -123,6 +123,7 @@ function Navigation({ site, search }: { site: Site; search: string }) {
     { to: paths.trust(site.id), label: 'Trust map' },
     { to: paths.intake(site.id), label: 'Intake' },
     ...(planted ? [{ to: paths.planted(site.id), label: 'What is planted' }] : []),
+    { to: paths.areas(site.id), label: 'Areas' },
     ...(mayKeys ? [{ to: paths.accessKeys(site.id), label: 'Access keys' }] : []),
   ];
   return (

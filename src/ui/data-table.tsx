@@ -34,6 +34,8 @@ export interface Column<Row> {
   cell?: (row: Row) => ReactNode;
   /** Figures stand to the right. */
   figure?: boolean;
+  /** Holds buttons: there is nothing to sort by, nor to save. */
+  isAction?: boolean;
 }
 
 const rowHeight = 30;
@@ -112,14 +114,18 @@ export function DataTable<Row extends object>({
                       }
                       className={`px-2 py-1.5 align-bottom ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
                     >
-                      <button
-                        type="button"
-                        onClick={header.column.getToggleSortingHandler()}
-                        className={`cursor-pointer text-soft hover:text-ink ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
-                      >
-                        {columns[index]?.header}
-                        <SortSign direction={sorted} />
-                      </button>
+                      {columns[index]?.isAction ? (
+                        <span className="sr-only">{columns[index].header}</span>
+                      ) : (
+                        <button
+                          type="button"
+                          onClick={header.column.getToggleSortingHandler()}
+                          className={`cursor-pointer text-soft hover:text-ink ${columns[index]?.figure ? 'text-right' : 'text-left'}`}
+                        >
+                          {columns[index]?.header}
+                          <SortSign direction={sorted} />
+                        </button>
+                      )}
                     </th>
                   );
                 })}
@@ -148,8 +154,9 @@ export function DataTable<Row extends object>({
         <div className="no-print">
           <Button
             onPress={() => {
-              const header = columns.map((column) => column.header);
-              const cells = shown.map((row) => columns.map((column) => column.value(row.original)));
+              const saved = columns.filter((column) => !column.isAction);
+              const header = saved.map((column) => column.header);
+              const cells = shown.map((row) => saved.map((column) => column.value(row.original)));
               downloadText(fileName, toCsv([header, ...cells]));
             }}
           >

@@ -74,6 +74,7 @@ export async function rebuildSeconds(db: Database, siteId: number): Promise<numb
         rules: zoneRulesOfSites,
         inferLostFinish: true,
         newPassAfterDays: 90,
+        moves: [],
       });
     }),
   );

@@ -28,6 +28,7 @@ async function rebuild(site: TestSite, timeZone: string) {
       rules: zoneRules(timeZone),
       inferLostFinish: true,
       newPassAfterDays: 90,
+      moves: [],
     }),
   );
 }

@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import { binRatio, zeroBin } from '../../methods/binned-percentile.ts';
 import type { Derivation } from './derivation.ts';
+import { toldAreas } from './moved-rows.ts';
 
 /** A zone as far as deriving its levels depends on it. */
 export interface DerivedZone {
@@ -19,16 +20,17 @@ const zoneRow = z.object({
 
 /**
  * Temporary table `told_zone`: what the uploads say of each zone, which columns they hold and how far they
- * speak. An upload speaks, for each area in it, up to its latest accepted time. An area's data-until is the
- * latest over its uploads; a loop's or the site's the earliest over its areas in use: those with a record
- * within 28 days of the site's latest.
+ * speak. An upload speaks, for each area that its rows count for, up to its latest accepted time. An area's
+ * data-until is the latest over its uploads; a loop's or the site's the earliest over its areas in use:
+ * those with a record within 28 days of the site's latest.
  */
 export async function tellZones(derivation: Derivation): Promise<DerivedZone[]> {
   const { tx, organisationId, siteId } = derivation;
   await tx.execute(sql`drop table if exists told_zone`);
   await tx.execute(sql`/* what is told of zones */
     create temp table told_zone on commit drop as
-    with heard as (
+    with ${toldAreas(derivation)},
+    heard as (
       select
         area_id,
         max(speaks_until) as data_until,
@@ -36,8 +38,7 @@ export async function tellZones(derivation: Derivation): Promise<DerivedZone[]> 
         min(first_at) as data_from,
         bool_or(has_quantities) as has_quantities,
         bool_or(has_starts) as has_starts
-      from upload_area
-      where organisation_id = ${organisationId} and site_id = ${siteId}
+      from told_area
       group by area_id
     ),
     in_use as (

@@ -1,6 +1,7 @@
 import { sql, type SQL } from 'drizzle-orm';
 import { z } from 'zod';
 import type { Derivation, ToldKinds, ToldSource } from './derivation.ts';
+import { keyedWhereCounted, underOneName } from './moved-rows.ts';
 import { pairEvents } from './pair-events.ts';
 import { isVoided } from './voided-rows.ts';
 
@@ -115,16 +116,21 @@ export async function readToldKinds(derivation: ToldSource): Promise<ToldKinds> 
 }
 
 /**
- * CTE `told`: every row told of a touched job that no later upload voids. Read again wherever it is named:
- * that costs less than keeping it.
+ * CTE `told`: every row told of a touched job that no later upload voids, under one of the names of its
+ * area. Read again wherever it is named: that costs less than keeping it.
  */
-const toldRows = ({ organisationId, siteId, told }: ToldSource): SQL => sql`
-  told as not materialized (
-    select told.*
-    from upload_row as told join touched_job using (job_key)
-    where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
-      ${told?.replaced ? sql`and not ${isVoided(organisationId, siteId)}` : sql``}
-  )`;
+const toldRows = ({ organisationId, siteId, told, moves }: ToldSource): SQL => {
+  const { areaId, join } = underOneName(moves);
+  return sql`
+    told as not materialized (
+      select
+        told.job_key, ${areaId} as area_id, told.upload_id, told.line, told.part, told.event,
+        told.arrived, told.started, told.finished, told.second_reading, told.record_key, ${rest}
+      from upload_row as told join touched_job using (job_key) ${join}
+      where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
+        ${told?.replaced ? sql`and not ${isVoided(organisationId, siteId, moves)}` : sql``}
+    )`;
+};
 
 const rest = sql`
   told.quantity, told.family, told.due, told.priority, told.work_content, told.value, told.resource,
@@ -133,9 +139,7 @@ const rest = sql`
 /** CTEs that end with `keyed`: every row told of a touched job, with what tells its record apart. Needs `begun`. */
 export const keyedRows = (derivation: ToldSource): SQL => sql`
   ${toldRows(derivation)},
-  keyed as not materialized (
-    ${derivation.told?.events ? keyedWithEvents : keyedStays}
-  )`;
+  ${keyedWhereCounted(derivation, derivation.told?.events ? keyedWithEvents : keyedStays)}`;
 
 const begunThere = sql`
   left join begun

@@ -10,17 +10,41 @@ export interface OrderedArea {
   servers: string;
 }
 
+type SetUpArea = SetUp['areas'][number];
+
 /** The order as it is guessed from the data; servers as declared, else as guessed. */
-export function guessedOrder(areas: SetUp['areas']): OrderedArea[] {
-  const inOrder = [...areas].sort(
-    (one, other) => one.guessedPosition - other.guessedPosition || one.position - other.position,
+export const guessedOrder = (areas: readonly SetUpArea[]): OrderedArea[] =>
+  orderBy(
+    areas,
+    (area) => area.guessedPosition,
+    (area) => area.servers ?? area.guessedServers,
   );
-  return inOrder.map((area, index) => ({
-    zoneId: area.zoneId,
-    name: area.name,
-    besideBefore: inOrder[index - 1]?.guessedPosition === area.guessedPosition,
-    servers: String(area.servers ?? area.guessedServers ?? ''),
-  }));
+
+/** The order as it stands, with the servers as declared. */
+export const standingOrder = (areas: readonly SetUpArea[]): OrderedArea[] =>
+  orderBy(
+    areas,
+    (area) => area.position,
+    (area) => area.servers,
+  );
+
+function orderBy(
+  areas: readonly SetUpArea[],
+  place: (area: SetUpArea) => number,
+  servers: (area: SetUpArea) => number | null,
+): OrderedArea[] {
+  const inOrder = [...areas].sort(
+    (one, other) => place(one) - place(other) || one.position - other.position,
+  );
+  return inOrder.map((area, index) => {
+    const before = inOrder[index - 1];
+    return {
+      zoneId: area.zoneId,
+      name: area.name,
+      besideBefore: before !== undefined && place(before) === place(area),
+      servers: String(servers(area) ?? ''),
+    };
+  });
 }
 
 /** The order with one area a place earlier or later; the first stands beside nothing. */

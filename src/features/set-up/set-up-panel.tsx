@@ -1,6 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
-import { useState } from 'react';
-import type { SetUp } from '../../../shared/contracts/set-up.ts';
+import { useState, type ReactNode } from 'react';
 import { ApiError } from '../../api/api-error.ts';
 import { Button } from '../../ui/button.tsx';
 import { PanelHeading } from '../../ui/heading.tsx';
@@ -13,19 +12,43 @@ export function SetUpPanel({ siteId }: { siteId: number }) {
   const { data } = useQuery(setUpQuery(siteId));
   const [isLater, setLater] = useState(false);
   if (!data || data.confirmed || data.areas.length === 0 || isLater) return null;
-  return <SetUpForm siteId={siteId} areas={data.areas} onLater={() => setLater(true)} />;
+  return (
+    <SetUpForm
+      siteId={siteId}
+      order={guessedOrder(data.areas)}
+      title="Is this the order of work?"
+      action="Confirm this order"
+      leave="Later"
+      onLeave={() => setLater(true)}
+    >
+      It is guessed from the ways of the latest jobs, and the servers from how many were in process
+      at once. Put right what is wrong; servers may be left open.
+    </SetUpForm>
+  );
 }
 
-function SetUpForm({
+/** The order of areas and their servers, to be changed and kept. */
+export function SetUpForm({
   siteId,
-  areas,
-  onLater,
+  order: given,
+  title,
+  action,
+  leave,
+  onLeave,
+  onKept,
+  children,
 }: {
   siteId: number;
-  areas: SetUp['areas'];
-  onLater: () => void;
+  order: readonly OrderedArea[];
+  title: string;
+  action: string;
+  leave: string;
+  onLeave: () => void;
+  onKept?: () => void;
+  /** What there is to say about the order that is shown first. */
+  children: ReactNode;
 }) {
-  const [order, setOrder] = useState(() => guessedOrder(areas));
+  const [order, setOrder] = useState(given);
   const confirm = useConfirmSetUp(siteId);
   const wanted = placed(order);
   const change = (index: number, changes: Partial<OrderedArea>) =>
@@ -36,14 +59,11 @@ function SetUpForm({
       className="no-print flex max-w-4xl flex-col gap-3 border-l-4 border-water py-2 pl-4"
       onSubmit={(event) => {
         event.preventDefault();
-        if (wanted) confirm.mutate(wanted);
+        if (wanted) confirm.mutate(wanted, onKept ? { onSuccess: onKept } : {});
       }}
     >
-      <PanelHeading>Is this the order of work?</PanelHeading>
-      <p className="max-w-prose text-soft">
-        It is guessed from the ways of the latest jobs, and the servers from how many were in
-        process at once. Put right what is wrong; servers may be left open.
-      </p>
+      <PanelHeading>{title}</PanelHeading>
+      <p className="max-w-prose text-soft">{children}</p>
       <ol className="flex flex-col">
         {order.map((area, index) => (
           <AreaLine
@@ -59,9 +79,9 @@ function SetUpForm({
       {confirm.error instanceof ApiError ? <ProblemNotice problem={confirm.error.problem} /> : null}
       <div className="flex gap-3">
         <Button type="submit" kind="main" isDisabled={wanted === null || confirm.isPending}>
-          Confirm this order
+          {action}
         </Button>
-        <Button onPress={onLater}>Later</Button>
+        <Button onPress={onLeave}>{leave}</Button>
       </div>
     </form>
   );
