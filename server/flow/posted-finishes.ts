@@ -1,6 +1,8 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import type { PostedFinishes } from '../methods/posting-delay.ts';
+import { areaCounted } from './derive/moved-rows.ts';
+import { readAreaMoves } from './read-area-moves.ts';
 import { dayBorders } from './trust-counts.ts';
 import type { SiteReader } from './zone-reader.ts';
 
@@ -36,12 +38,19 @@ export async function readPostedFinishes(
 ): Promise<PostedInArea[] | null> {
   if (await recordsKnowIt(reader)) return null;
   const { tx, organisationId, siteId } = reader;
+  const moves = await readAreaMoves(reader);
+  const about = sql`coalesce(started, arrived, finished)`;
   const { rows } = await tx.execute(sql`/* finishes by the upload that posted them */
-    with first_told as (
-      select area_id, finished, min(upload_id) as upload_id
+    with counted as (
+      select
+        ${areaCounted(moves, sql`upload_row.area_id`, about)} as area_id,
+        job_key, finished, upload_id
       from upload_row
       where organisation_id = ${organisationId} and site_id = ${siteId} and finished is not null
-      group by area_id, job_key, finished
+    ),
+    first_told as (
+      select area_id, finished, min(upload_id) as upload_id
+      from counted group by area_id, job_key, finished
     )
     select
       area_id, width_bucket(finished, ${dayBorders(borders)}) as day, upload_id,

@@ -1,5 +1,7 @@
 import { sql } from 'drizzle-orm';
 import { z } from 'zod';
+import { toldAreas } from './derive/moved-rows.ts';
+import { readAreaMoves } from './read-area-moves.ts';
 import type { SiteReader } from './zone-reader.ts';
 
 /** Over which span an upload speaks for an area, in milliseconds; both ends belong to it. */
@@ -23,18 +25,16 @@ const spanRow = z.object({
   latest_at: z.coerce.date(),
 });
 
-/** The spans of all uploads that count, in order of receipt. */
-export async function readSpokenSpans({
-  tx,
-  organisationId,
-  siteId,
-}: SiteReader): Promise<SpokenSpan[]> {
+/** The spans of all uploads that count, in order of receipt, under the areas for which their rows count. */
+export async function readSpokenSpans(reader: SiteReader): Promise<SpokenSpan[]> {
+  const { tx, organisationId, siteId } = reader;
+  const moves = await readAreaMoves(reader);
   const { rows } = await tx.execute(sql`/* spans for which uploads speak */
+    with ${toldAreas({ organisationId, siteId, moves })}
     select
       area_id, upload_id, first_at, latest_at, speaks_until,
       min(first_at) over (partition by upload_id) as speaks_from
-    from upload_area
-    where organisation_id = ${organisationId} and site_id = ${siteId}
+    from told_area
     order by upload_id, area_id`);
   return z
     .array(spanRow)

@@ -122,8 +122,8 @@ function Navigation({ site, search }: { site: Site; search: string }) {
     { to: paths.floor(site.id), label: 'Floor' },
     { to: paths.trust(site.id), label: 'Trust map' },
     { to: paths.intake(site.id), label: 'Intake' },
-    ...(planted ? [{ to: paths.planted(site.id), label: 'What is planted' }] : []),
     { to: paths.areas(site.id), label: 'Areas' },
+    ...(planted ? [{ to: paths.planted(site.id), label: 'What is planted' }] : []),
     ...(mayKeys ? [{ to: paths.accessKeys(site.id), label: 'Access keys' }] : []),
   ];
   return (

@@ -283,6 +283,26 @@ describe('the trust map', () => {
     expect(await readTrust(site)).toEqual(before);
   });
 
+  it.each(['stay', 'event'])(
+    'grades merged spellings as the one area, told by a row per %s',
+    async (shape) => {
+      const site = await makeSite(test);
+      const respelled = (row: LogRow) =>
+        row.area === 'Ship' && row.started >= '2026-09-21' ? { ...row, area: 'Shipping' } : row;
+      const rows = steadyLog().map(respelled);
+      if (shape === 'event') await site.upload(toEventCsv(rows), eventPlan);
+      else await site.upload(toCsv(rows));
+      expect((await poor(site)).length).toBeGreaterThan(lastDay.length);
+      const [target, source] = [await site.zone('Ship'), await site.zone('Shipping')];
+      await site.agent
+        .post(`/api/sites/${site.id}/area-moves`)
+        .send({ areaId: source.id, targetAreaId: target.id, from: null })
+        .expect(201);
+      await test.settled();
+      expect(await poor(site)).toEqual(lastDay);
+    },
+  );
+
   it.each([
     [{ from: everything.to, to: everything.from }, 'from'],
     [{ from: 'yesterday', to: everything.to }, 'from'],

@@ -24,7 +24,9 @@ const axeSource = readFileSync(
   'utf8',
 );
 
-export async function startTestBrowser(options: { demo?: boolean } = {}): Promise<TestBrowser> {
+export async function startTestBrowser(
+  options: { demo?: boolean; env?: Record<string, string> } = {},
+): Promise<TestBrowser> {
   const test = await startTestApp({ ...options, clientFolder });
   const server = createServer(test.app);
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
