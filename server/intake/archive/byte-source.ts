@@ -13,9 +13,9 @@ export class ByteSource {
   /** The next bytes, at least one and at most so many; null at the end of the file. */
   async next(most: number): Promise<Buffer | null> {
     while (this.#at === this.#block.length) {
-      const { done, value } = await this.#blocks.next();
-      if (done) return null;
-      this.#block = value as Buffer;
+      const block = await this.#blocks.next();
+      if (block.done) return null;
+      this.#block = block.value;
       this.#at = 0;
     }
     const bytes = this.#block.subarray(this.#at, this.#at + most);

@@ -33,7 +33,7 @@ class FoundParts {
   list: { part: string; handler: SheetList } | null = null;
   styles: Styles | null = null;
   /** The first part that could not be read before its root told what it is. */
-  unread: unknown = null;
+  unread: IntakeFailure | null = null;
 
   handlerOf(root: string, part: string): XmlHandler | null {
     switch (root) {
@@ -94,7 +94,7 @@ async function readPart(entry: ZipEntry, found: FoundParts): Promise<void> {
 /** Properties, and data that programs put beside a workbook. */
 const ofNoUse = /^(?:docProps|customXml)\//i;
 
-const isOfXml = (error: unknown): boolean =>
+const isOfXml = (error: unknown): error is IntakeFailure =>
   error instanceof IntakeFailure &&
   /^(?:unsafe-xml|unsupported-encoding|broken-file)$/.test(error.code);
 

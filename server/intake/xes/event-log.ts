@@ -65,7 +65,7 @@ export class EventLog implements XmlHandler {
     else if (name === 'event' && depth <= 2) this.#event = [];
     else if (name === 'global' && depth === 1) return this.#openGlobal(attributes.scope);
     else return;
-    this.#scopes[depth + 1] = name as Scope;
+    this.#scopes[depth + 1] = name;
   }
 
   #openGlobal(scope: string | undefined): void {
