@@ -54,7 +54,9 @@ const documents: readonly (NamedKind & { holds: RegExp })[] = [
   { holds: /opendocument:xmlns:office/i, kind: 'an OpenDocument in one file', remedy: saveSheet },
 ];
 
-const markup = /^\s*(?:<\?xml|<!doctype|<!--|<[a-z][\w.-]*(?::[\w.-]+)?(?:\s[^<>]*)?\/?>)/i;
+/** A declaration, a comment or a tag; a header may name its columns within angle brackets. */
+const markup =
+  /^\s*(?:<\?xml|<!doctype|<!--|<[a-z][\w.-]*(?::[\w.-]+)?(?:\s[^<>]*)?\/?>(?![,;|\t]))/i;
 const log = /<(?:[\w.-]+:)?log[\s>]/;
 const json = /^\s*(?:\{\s*["}]|\[\s*[[{"\]])/;
 /** Characters in which the root element of a markup document is looked for. */

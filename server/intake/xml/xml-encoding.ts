@@ -2,13 +2,13 @@ import { IntakeFailure } from '../failure.ts';
 
 const declared = /^\s*<\?xml[^>]*?\sencoding\s*=\s*["']([A-Za-z][\w.:-]*)["']/;
 /** Bytes in which the declaration of the encoding stands. */
-const declaredWithin = 400;
+export const declaredWithin = 400;
 
 /**
  * A decoder for an XML document by its byte order mark, by where its zero bytes stand, or by what its
  * declaration says (XML 1.0, appendix F); it takes bytes that are no text for an error.
  *
- * @param head the first bytes, four or more where there are so many
+ * @param head the first bytes, `declaredWithin` or more where there are so many
  * @throws IntakeFailure where the declared encoding is not known
  */
 export function xmlDecoder(head: Buffer): TextDecoder {

@@ -1,7 +1,7 @@
 import { SaxesParser } from 'saxes';
 import { IntakeFailure } from '../failure.ts';
 import { xmlDepthLimit, xmlPieceLimit } from '../limits.ts';
-import { xmlDecoder } from './xml-encoding.ts';
+import { declaredWithin, xmlDecoder } from './xml-encoding.ts';
 
 export type XmlAttributes = Readonly<Record<string, string>>;
 
@@ -31,6 +31,7 @@ export class XmlReader {
   readonly #subject: XmlSubject;
   readonly #handler: XmlHandler;
   #decoder: TextDecoder | null = null;
+  /** The first bytes, as long as they may not yet hold the whole declaration. */
   #first: Buffer = Buffer.alloc(0);
   #depth = 0;
   /** Characters since the last tag. */
@@ -64,7 +65,7 @@ export class XmlReader {
   write(block: Buffer): void {
     if (this.isDone) return;
     const bytes = this.#first.length > 0 ? Buffer.concat([this.#first, block]) : block;
-    if (this.#decoder === null && bytes.length < 4) {
+    if (this.#decoder === null && bytes.length < declaredWithin) {
       this.#first = bytes;
       return;
     }
