@@ -1,16 +1,13 @@
 import type { ColumnPlan, FileKind } from '../../shared/contracts/plan.ts';
-import { IntakeFailure } from './failure.ts';
 import { kindOfFile } from './file-kind.ts';
 import { sampleBytes } from './limits.ts';
 import type { OpenedFile, Opener } from './opened-file.ts';
 import { openText } from './text/open-text.ts';
+import { openWorkbook } from './workbook/open-workbook.ts';
+import { openXes } from './xes/open-xes.ts';
 
 /** What a plan says of the file itself; what it leaves out is detected. */
 export type FileWishes = Partial<Pick<ColumnPlan, 'encoding' | 'delimiter' | 'sheet'>>;
-
-const refuse = (kind: string) => (): never => {
-  throw new IntakeFailure('wrong-kind', `The file is ${kind}.`, 'Export it as CSV.');
-};
 
 const openers: Readonly<
   Record<
@@ -19,8 +16,8 @@ const openers: Readonly<
   >
 > = {
   text: openText,
-  workbook: refuse('an XLSX workbook or another zip archive'),
-  xes: refuse('an XES log'),
+  workbook: openWorkbook,
+  xes: openXes,
 };
 
 /** The beginning of a file, as much as is looked at. */

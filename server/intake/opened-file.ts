@@ -21,6 +21,8 @@ export interface RowsWanted {
   delimiter: Delimiter | null;
   /** The header's cells: where a kind of file leaves out empty cells, rows are made as wide as it. */
   header: readonly string[];
+  /** Numbers of a workbook are written with the decimal sign that the plan reads. */
+  plan?: Pick<ColumnPlan, 'decimalSign'> | null;
 }
 
 /** A file whose beginning was looked at, and which can be read as a whole, as often as is wanted. */

@@ -10,7 +10,7 @@ import { IntakeFailure, stopped } from './failure.ts';
 import { openAndRecognise, type KnownPlan } from './detect/recognise-plan.ts';
 import type { OpenedFile } from './opened-file.ts';
 import { readOriginal } from './original.ts';
-import { readingOf, shapeReaderOf, type Reading, type RowContext } from './reading.ts';
+import { ofFile, readingOf, shapeReaderOf, type Reading, type RowContext } from './reading.ts';
 import { StageReader } from './stage-reader.ts';
 import { Stage } from './stage.ts';
 
@@ -21,7 +21,7 @@ export interface Progress {
   bytes: number;
 }
 
-export interface ReadingInput extends Omit<RowContext, 'dateSystem'> {
+export interface ReadingInput extends Omit<RowContext, 'dateSystem' | 'fileKind'> {
   organisationId: number;
   siteId: number;
   uploadId: number;
@@ -77,7 +77,7 @@ export async function readIntoStage(
   const open = () => readOriginal(input.db, input);
   const { file, plan } = await openAndRecognise(open, input.plan, input.savedPlans);
   const reading = await prepareReading({ ...input, plan }, file);
-  const { shape, areas } = shapeReaderOf(reading, { ...input, dateSystem: file.dateSystem });
+  const { shape, areas } = shapeReaderOf(reading, { ...input, ...ofFile(file) });
   const stage = await Stage.open(client, shape.stagedColumns);
   const reader = new StageReader(reading.headerLine, shape, stage);
   try {

@@ -5,7 +5,7 @@ import { detect, type Detection } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
 import { openAndRecognise, type KnownPlan } from './detect/recognise-plan.ts';
 import type { OpenedFile, Opener } from './opened-file.ts';
-import { readingOf, shapeReaderOf, type RowContext } from './reading.ts';
+import { ofFile, readingOf, shapeReaderOf, type RowContext } from './reading.ts';
 import { warningsOf } from './row-account.ts';
 import { cellsOf } from './sample.ts';
 import type { RowOutcome, ShapeReader } from './shapes/shape-reader.ts';
@@ -16,7 +16,7 @@ const rowsShown = 50;
 
 type PreviewRow = UploadPreview['rows'][number];
 
-export interface PreviewInput extends Omit<RowContext, 'dateSystem'> {
+export interface PreviewInput extends Omit<RowContext, 'dateSystem' | 'fileKind'> {
   open: Opener;
   /** Whether what can be read of the file is only its beginning. */
   isCut: boolean;
@@ -47,7 +47,7 @@ export async function previewOf(input: PreviewInput): Promise<UploadPreview> {
     dateOrder: detection.dateOrder,
     reasons: [...recognisedReason(recognised), ...detection.reasons],
     words: wordsOf(detection),
-    rows: await previewRows(detection, file, { ...input, dateSystem: file.dateSystem }, isCut),
+    rows: await previewRows(detection, file, { ...input, ...ofFile(file) }, isCut),
   };
 }
 

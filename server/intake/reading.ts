@@ -1,8 +1,9 @@
-import type { ColumnPlan, Delimiter } from '../../shared/contracts/plan.ts';
+import type { ColumnPlan, Delimiter, FileKind } from '../../shared/contracts/plan.ts';
 import { dayMs, readLocal, zoneRules } from '../../shared/local-time.ts';
 import { AreaRegister } from './area-register.ts';
 import type { Detection } from './detect/detect.ts';
 import { IntakeFailure } from './failure.ts';
+import type { OpenedFile } from './opened-file.ts';
 import { EventRow } from './shapes/event-row.ts';
 import { JobRow } from './shapes/job-row.ts';
 import type { Places } from './shapes/places.ts';
@@ -10,6 +11,7 @@ import { RowFrame } from './shapes/row-frame.ts';
 import type { RowRules, ShapeReader } from './shapes/shape-reader.ts';
 import { StayRow } from './shapes/stay-row.ts';
 import { AutoTimeReader, type DateSystem } from './times/auto-time-reader.ts';
+import { CellTimeReader } from './times/cell-time-reader.ts';
 import { LocalClock } from './times/local-clock.ts';
 import { PatternTimeReader } from './times/pattern-time-reader.ts';
 import { compileTimePattern } from './times/time-pattern.ts';
@@ -31,7 +33,14 @@ export interface RowContext {
   /** The site's areas by folded spelling. */
   knownAreas: ReadonlyMap<string, number>;
   dateSystem: DateSystem;
+  fileKind: FileKind;
 }
+
+/** What a file says of itself by which its rows are judged. */
+export const ofFile = ({
+  dateSystem,
+  kind,
+}: OpenedFile): Pick<RowContext, 'dateSystem' | 'fileKind'> => ({ dateSystem, fileKind: kind });
 
 /** @throws IntakeFailure where no plan was given and none could be guessed */
 export function readingOf(detection: Detection): Reading {
@@ -47,11 +56,11 @@ export function readingOf(detection: Detection): Reading {
 /** The rules of a reading, ready to judge row by row. */
 export function shapeReaderOf(
   { plan, places, header }: Reading,
-  { receivedAt, knownAreas, dateSystem }: RowContext,
+  { receivedAt, knownAreas, dateSystem, fileKind }: RowContext,
 ): { shape: ShapeReader; areas: AreaRegister } {
   const zone = zoneRules(plan.timeZone);
   const areas = new AreaRegister(knownAreas);
-  const times = timeReaderOf(plan, dateSystem);
+  const times = timeReaderOf(plan, dateSystem, fileKind);
   const rules: RowRules = {
     frame: new RowFrame({
       header,
@@ -83,9 +92,11 @@ function shapeOf(plan: ColumnPlan, places: Places, rules: RowRules): ShapeReader
   }
 }
 
-function timeReaderOf(plan: ColumnPlan, dateSystem: DateSystem): TimeReader {
+function timeReaderOf(plan: ColumnPlan, dateSystem: DateSystem, kind: FileKind): TimeReader {
   const clock = new LocalClock(zoneRules(plan.timeZone));
-  return plan.timeFormat === 'auto'
-    ? new AutoTimeReader(clock, plan.dateOrder ?? null, dateSystem)
-    : new PatternTimeReader(compileTimePattern(plan.timeFormat), clock);
+  if (plan.timeFormat === 'auto') {
+    return new AutoTimeReader(clock, plan.dateOrder ?? null, dateSystem);
+  }
+  const reader = new PatternTimeReader(compileTimePattern(plan.timeFormat), clock);
+  return kind === 'workbook' ? new CellTimeReader(reader, new AutoTimeReader(clock, null)) : reader;
 }

@@ -58,6 +58,7 @@ export async function readText(text: string | Buffer, options: ReadTextOptions =
     receivedAt: new Date(options.receivedAt ?? '2026-06-01T00:00:00Z'),
     knownAreas: new Map((options.knownAreas ?? []).map((folded, index) => [folded, index + 1])),
     dateSystem: file.dateSystem,
+    fileKind: file.kind,
   });
   const rows: JudgedRow[] = [];
   const noted = notedBy(shape, rows);

@@ -35,7 +35,7 @@ export function chooseCut(file: OpenedFile, plan: ColumnPlan | null): Sample {
 }
 
 function withHeader(cut: Cut, told: number | null, plan: ColumnPlan | null): Sample {
-  const line = plan?.headerLine ?? told ?? findHeader(cut.rows, plan);
+  const line = told ?? plan?.headerLine ?? findHeader(cut.rows, plan);
   const width = Math.max(0, ...cut.rows.slice(0, rowsCompared).map(({ cells }) => cells.length));
   const found = cut.rows.find((row) => row.line === line);
   const header =

@@ -1,4 +1,4 @@
-import { type ColumnPlan, type DateOrder, type Delimiter } from '../../../shared/contracts/plan.ts';
+import type { ColumnPlan, DateOrder, Delimiter, FileKind } from '../../../shared/contracts/plan.ts';
 import { IntakeFailure } from '../failure.ts';
 import { columnLimit } from '../limits.ts';
 import type { OpenedFile } from '../opened-file.ts';
@@ -11,6 +11,7 @@ import { findDecimalSign } from './decimal-sign.ts';
 import { guessEventWords, guessStatusWords } from './event-words.ts';
 import type { GuessReason } from './found-columns.ts';
 import { guessColumns } from './guess-columns.ts';
+import { guessXes } from './guess-xes.ts';
 
 /** What is known of how to read a file. */
 export interface DetectionInput {
@@ -45,7 +46,7 @@ export interface Detection {
 export function detect({ file, plan: given, timeZone }: DetectionInput): Detection {
   const sample = chooseCut(file, given);
   refuseHeader(sample);
-  const guess = given ? null : guessColumns(profileColumns(sample));
+  const guess = given ? null : guessOf(file.kind)(profileColumns(sample));
   const base = given ?? (guess?.planned ? planOf(guess.planned, timeZone) : null);
   const places = base && placeColumns(base, sample.header);
   const dateOrder = base && places && findDateOrder(base, places, sample.rows);
@@ -69,6 +70,8 @@ export function detect({ file, plan: given, timeZone }: DetectionInput): Detecti
     missing: guess?.missing ?? [],
   };
 }
+
+const guessOf = (kind: FileKind) => (kind === 'xes' ? guessXes : guessColumns);
 
 /** The plan with everything that the beginning of the file tells. */
 function complete(

@@ -31,6 +31,8 @@ export async function openAndRecognise(
   const recognised = recognisePlan(file, saved);
   if (!recognised) return { file, plan: null, recognised: null };
   const { plan } = recognised;
+  // The header was found on the sheet that was opened, whatever it was called last time.
+  if (file.kind !== 'text') return { file, plan, recognised };
   return { file: await openFile(open, plan, isCut), plan, recognised };
 }
 
