@@ -4,9 +4,12 @@ import { withTenant } from '../../server/db/tenant.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
 import {
   asText,
+  asWorkbook,
+  asXes,
   dialects,
   encoders,
   exportZone,
+  sheetTimes,
   tableOf,
   type ExportShape,
   type LogStay,
@@ -96,5 +99,24 @@ describe.each(shapes)('delimited text with a row per %s', (shape) => {
       const file = encoders[encoding]?.(text) ?? Buffer.alloc(0);
       expect(await staysFrom(file, 'export.csv')).toEqual(expected);
     });
+  });
+});
+
+describe.each(shapes)('a workbook with a row per %s', (shape) => {
+  it.each(sheetTimes)('with times as %s tells the log', async (times) => {
+    expect(await staysFrom(await asWorkbook(log, shape, times), 'export.xlsx')).toEqual(expected);
+  });
+});
+
+describe('an event log in XES', () => {
+  it.each([
+    ['UTF-8', 'utf-8'],
+    ['UTF-8 with a mark', 'utf-8'],
+    ['UTF-16LE with a mark', 'utf-16'],
+    ['UTF-16BE with a mark', 'utf-16'],
+    ['Windows-1252', 'windows-1252'],
+  ])('in %s tells the log', async (encoder, declared) => {
+    const file = encoders[encoder]?.(asXes(log, declared)) ?? Buffer.alloc(0);
+    expect(await staysFrom(file, 'export.xes')).toEqual(expected);
   });
 });

@@ -176,7 +176,7 @@ const isOnly = (profile: ColumnProfile, all: readonly ColumnProfile[]): boolean 
   all.every((other) => other === profile || other.header !== profile.header);
 
 /** Whether the cells of a column can be what its header says. */
-function mayHold(
+export function mayHold(
   profile: ColumnProfile,
   column: (typeof stayColumns)[number],
   score: number,

@@ -2,7 +2,8 @@ import type { EventKind, EventWords } from '../../../shared/contracts/plan.ts';
 import type { ColumnProfile } from './column-profile.ts';
 import { commonEventMeaning, guessEventWords } from './event-words.ts';
 import type { GuessReason } from './found-columns.ts';
-import type { ColumnGuess } from './guess-columns.ts';
+import { wholeHeaderScore, wordScore } from './column-words.ts';
+import { mayHold, type ColumnGuess } from './guess-columns.ts';
 
 /**
  * The attributes of IEEE 1849-2016 (annex A, the concept, lifecycle, time, organisational and identity
@@ -58,6 +59,7 @@ export function guessXes(profiles: readonly ColumnProfile[]): ColumnGuess {
   const optional = {
     ...(resource ? { resource: resource.header } : {}),
     ...(record ? { record: record.header } : {}),
+    ...namedByWords(profiles, reasons),
   };
   const base = { job: job.header, area: area.header, ...optional };
   if (event) {
@@ -65,6 +67,36 @@ export function guessXes(profiles: readonly ColumnProfile[]): ColumnGuess {
     return { planned: { shape: 'event', columns, eventWords: wordsOf(event) }, ...told };
   }
   return { planned: { shape: 'stay', columns: { ...base, finished: time.header } }, ...told };
+}
+
+/** Columns for which the standard has no key; they go by the words of whatever key a log uses. */
+const byWords = [
+  'quantity',
+  'family',
+  'due',
+  'priority',
+  'workContent',
+  'value',
+  'status',
+] as const;
+
+function namedByWords(
+  profiles: readonly ColumnProfile[],
+  reasons: GuessReason[],
+): Partial<Record<(typeof byWords)[number], string>> {
+  const found: Partial<Record<(typeof byWords)[number], string>> = {};
+  const isNamed = (column: (typeof byWords)[number], profile: ColumnProfile): boolean => {
+    // The first word says whether the trace or the event has the attribute.
+    const score = wordScore(column, profile.words.slice(1));
+    return score >= wholeHeaderScore && profile.filled > 0 && mayHold(profile, column, score);
+  };
+  for (const column of byWords) {
+    const profile = profiles.find((each) => isNamed(column, each));
+    if (!profile) continue;
+    found[column] = profile.header;
+    reasons.push({ about: column, reason: `“${profile.header}” is a common key for it.` });
+  }
+  return found;
 }
 
 function findKeys(
