@@ -1,10 +1,13 @@
 import { SetupError } from './say.mjs';
 
-const oldest = 20;
+/** Its checksums of zip archives came with this version. */
+const oldest = '20.15';
 
 /** @throws SetupError where this Node is too old to run the product */
 export function checkNodeVersion() {
-  if (Number(process.versions.node.split('.')[0]) < oldest)
+  const [major, minor] = process.versions.node.split('.').map(Number);
+  const [oldestMajor, oldestMinor] = oldest.split('.').map(Number);
+  if (major < oldestMajor || (major === oldestMajor && minor < oldestMinor))
     throw new SetupError(
       `Weirmark needs Node ${oldest} or newer, and this is ${process.versions.node}: install it from https://nodejs.org.`,
     );

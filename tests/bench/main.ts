@@ -16,6 +16,7 @@ import { measureClient } from './client.ts';
 import { median, medianSeconds, report } from './measure.ts';
 import { BenchServer } from './server.ts';
 import { writeSimulatedLog } from './simulated-log.ts';
+import { measureWorkbook } from './workbook.ts';
 
 /**
  * Speed, as ratios within one run. `npm run bench` measures at 1,000,000 rows, `npm run bench -- --large`
@@ -46,6 +47,7 @@ try {
   const { applicationUrl } = await migrateDatabase(cluster.migratingUrl);
   const migrating = connect(cluster.migratingUrl, { max: 2 });
   const db = connect(applicationUrl, { max: 2 });
+  await measureWorkbook(cluster.migratingUrl, folder, bar);
   const server = await BenchServer.start(cluster.migratingUrl);
   stops.push(
     () => server.stop(),

@@ -1,3 +1,4 @@
+import { Readable } from 'node:stream';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { detect } from '../../server/intake/detect/detect.ts';
@@ -256,7 +257,7 @@ describe('an event log', () => {
     const event = /<event>[\s\S]*?<\/event>/.exec(log)?.[0] ?? '';
     const long = log.replace(event, event.repeat(3000)).slice(0, 262_144);
     const shown = await previewOf({
-      bytes: Buffer.from(long),
+      open: () => Readable.from([Buffer.from(long)]),
       isCut: true,
       plan: null,
       savedPlans: [],
