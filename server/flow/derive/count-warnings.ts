@@ -16,17 +16,21 @@ export async function countWarnings(
 ): Promise<Partial<Record<WarningReason, number>>> {
   const { tx, organisationId, siteId, told } = derivation;
   const { rows } = await tx.execute(sql`/* warnings of records */
-    with noted as (
+    with noted as materialized (
       select job_key, coalesce(started, arrived, finished) as about, finish_inferred, overlapping
       from merged_record where finish_inferred or overlapping
     ),
     of_upload as (
       select noted.finish_inferred, noted.overlapping
-      from noted join upload_row as told
-        on told.organisation_id = ${organisationId} and told.site_id = ${siteId}
-        and told.job_key = noted.job_key
-        and told.upload_id = ${uploadId}
-        and coalesce(told.started, told.arrived, told.finished) = noted.about
+      from noted cross join lateral (
+        -- Looked up one by one: there are few, and of a new site the planner knows no counts.
+        select from upload_row as told
+        where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
+          and told.job_key = noted.job_key
+          and told.upload_id = ${uploadId}
+          and coalesce(told.started, told.arrived, told.finished) = noted.about
+        offset 0
+      ) as told
     )
     select 'finish-inferred' as reason, count(*) as rows from of_upload where finish_inferred
     union all

@@ -13,8 +13,6 @@ export async function mergeRecords(derivation: Derivation): Promise<void> {
   await foldVersions(derivation);
   await chainRecords(derivation);
   await enterOverlapping(derivation);
-  // Of a site that is new the planner knows no counts: what looks records up by job must not scan each time.
-  await derivation.tx.execute(sql`create index on merged_record (job_key)`);
   await derivation.tx.execute(sql`analyze merged_record`);
 }
 
