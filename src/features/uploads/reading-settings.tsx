@@ -61,8 +61,9 @@ export function ReadingSettings({
       <PanelHeading>How it is read</PanelHeading>
       {preview.dateOrder === 'unknown' ? (
         <Notice kind="warning">
-          The first dates can be read day first or month first. Say below which it is; otherwise the
-          whole file is asked, and where that does not tell, the reading stops.
+          The first dates can be read day first or month first; the rows are shown day first. Say
+          below which it is; otherwise the whole file is asked, and where that does not tell, the
+          reading stops.
         </Notice>
       ) : null}
       <div className="grid gap-3 sm:grid-cols-2 lg:grid-cols-3">
