@@ -13,6 +13,7 @@ export type IntakeFailureCode =
   | 'no-such-sheet'
   | 'cell-too-long'
   | 'row-too-long'
+  | 'too-many-rows'
   | 'too-many-columns'
   | 'too-many-areas'
   | 'no-such-column'

@@ -2,6 +2,8 @@
 
 /** Bytes of one row, however many lines its quoted cells span. */
 export const rowByteLimit = 1_048_576;
+/** Rows of one file. */
+export const rowLimit = 20_000_000;
 /** Columns of the header. */
 export const columnLimit = 1000;
 /** Characters of what names a job, an area or a record: these are keys of the database's indexes. */

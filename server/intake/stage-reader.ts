@@ -1,3 +1,5 @@
+import { IntakeFailure } from './failure.ts';
+import { rowLimit } from './limits.ts';
 import { RowTally } from './row-account.ts';
 import { rawOf } from './sample.ts';
 import type { ShapeReader } from './shapes/shape-reader.ts';
@@ -12,17 +14,23 @@ export class StageReader {
   readonly #stage: RowSink;
   readonly #headerLine: number;
   readonly #blank = new SkippedRows([]);
+  readonly #mostRows: number;
   #isBelowHeader: boolean;
+  #rows = 0;
 
   /** @param headerLine the line of the header, which is no row; 0 where there is none */
-  constructor(headerLine: number, shape: ShapeReader, stage: RowSink) {
+  constructor(headerLine: number, shape: ShapeReader, stage: RowSink, mostRows = rowLimit) {
+    this.#mostRows = mostRows;
     this.#headerLine = headerLine;
     this.#isBelowHeader = headerLine === 0;
     this.#shape = shape;
     this.#stage = stage;
   }
 
+  /** @throws IntakeFailure where the file has more rows, or names more areas, than are allowed */
   take(row: ScannedRow): void {
+    this.#rows += 1;
+    if (this.#rows > this.#mostRows) throw tooManyRows(this.#mostRows);
     if (this.#isBelowHeader) this.#judge(row);
     else this.#passHeader(row);
   }
@@ -61,3 +69,10 @@ export class StageReader {
     refused.text(rawOf(row));
   }
 }
+
+const tooManyRows = (limit: number): IntakeFailure =>
+  new IntakeFailure(
+    'too-many-rows',
+    `The file has more than ${limit.toLocaleString('en')} rows.`,
+    'Export a shorter period at a time; uploads of one site add up.',
+  );

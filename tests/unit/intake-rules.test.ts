@@ -1,7 +1,11 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { refusalReasons, skipReasons, warningReasons } from '../../shared/row-reasons.ts';
+import { BinaryCopy } from '../../server/intake/binary-copy.ts';
 import { IntakeFailure } from '../../server/intake/failure.ts';
+import type { ShapeReader } from '../../server/intake/shapes/shape-reader.ts';
+import { StageReader } from '../../server/intake/stage-reader.ts';
+import { RowScanner } from '../../server/intake/text/row-scanner.ts';
 import { readText, type ReadTextOptions } from '../support/read-text.ts';
 
 const header = 'job,area,arrived,started,finished,quantity,due,family';
@@ -224,6 +228,26 @@ describe('a row is accepted', () => {
       plan: { timeZone: 'Europe/Dublin' },
     });
     expect(read.reason).toBe('finish-before-start');
+  });
+});
+
+describe('a file', () => {
+  test('with more rows than are taken fails with a sentence', () => {
+    const none = { rows: new BinaryCopy(65_536), refused: new BinaryCopy(65_536) };
+    const stage = { ...none, sendFull: () => Promise.resolve() };
+    const shape: ShapeReader = {
+      ...{ stagedColumns: [], part: 0, warnings: 0, refusal: null },
+      ...{ skipReason: 'blank-line' as const, read: () => 'skipped' as const },
+      ...{ next: () => null, write: () => undefined },
+      told: () => ({ job: null, area: null, arrived: NaN, started: NaN, finished: NaN }),
+    };
+    const reader = new StageReader(1, shape, stage, 3);
+    const scan = (text: string) =>
+      new RowScanner(',').scan(Buffer.from(text), true, (row) => reader.take(row));
+    expect(() => scan('a,b\n1,2\n3,4\n')).not.toThrow();
+    expect(() => scan('5,6\n')).toThrow(
+      /^The file has more than 3 rows\. Nothing of it was kept\./,
+    );
   });
 });
 
