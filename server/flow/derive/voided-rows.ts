@@ -55,6 +55,14 @@ export async function touchJobsOfReplacedPeriod(
   { tx, organisationId, siteId, moves }: Derivation,
   uploadId: number,
 ): Promise<void> {
+  const { rows } = await tx.execute(sql`/* whether an upload replaces a period */
+    select exists (
+      select from upload_area
+      where organisation_id = ${organisationId} and site_id = ${siteId}
+        and upload_id = ${uploadId} and replaces_from is not null
+    ) as replaces`);
+  // Most do not, and the rows of the whole site need not be looked at.
+  if (rows[0]?.replaces !== true) return;
   await tx.execute(sql`/* touch jobs of a replaced period */
     insert into touched_job
     select distinct told.job_key
