@@ -15,6 +15,7 @@ export const errorKinds = {
   'too-many-attempts': { status: 429, title: 'Too many failed attempts' },
   'internal-error': { status: 500, title: 'Something went wrong on the server' },
   unavailable: { status: 503, title: 'The database cannot be reached' },
+  'storage-full': { status: 507, title: 'The disk of the database is full' },
 } as const;
 
 export type ErrorCode = keyof typeof errorKinds;

@@ -2,12 +2,7 @@ import type { Request } from 'express';
 import multer, { MulterError, type StorageEngine } from 'multer';
 import type { Database } from '../db/client.ts';
 import { ApiError } from '../errors.ts';
-import {
-  discardReceipt,
-  storeOriginal,
-  type Receipt,
-  type StoredOriginal,
-} from './store-original.ts';
+import { storeOriginal, type Receipt, type StoredOriginal } from './store-original.ts';
 
 /** A whole request with a file, received. */
 export interface ReceivedParts {
@@ -21,10 +16,11 @@ const planBytes = 65_536;
 
 /**
  * Receives a multipart request whose parts `file` and `plan` come in any order, storing the file while it
- * arrives. A transfer that breaks off, or that holds anything else, leaves nothing behind.
+ * arrives.
  *
  * @param limitMb the largest file that is taken, in MiB
- * @throws ApiError with the sentence that says what was wrong with the request
+ * @throws ApiError with the sentence that says what was wrong with the request; nothing is being stored any
+ *   more then, and the caller discards what was
  */
 export async function receiveParts(
   request: Request,
@@ -36,7 +32,7 @@ export async function receiveParts(
   try {
     await runMulter(request, storage, limitMb * 1_048_576, limitMb);
   } catch (error) {
-    await storage.discard();
+    await storage.settled();
     throw error;
   }
   const file = request.file as (Express.Multer.File & { stored: StoredOriginal }) | undefined;
@@ -48,13 +44,13 @@ export async function receiveParts(
     });
   }
   const parts = request.body as Record<string, unknown>;
-  const stored = file.stored;
   const unknown = Object.keys(parts).filter((name) => name !== 'plan');
-  if (unknown.length > 0 || Array.isArray(parts.plan)) {
-    await discardReceipt(db, { ...receipt, uploadId: stored.uploadId });
-    throw refuseFields(unknown);
-  }
-  return { stored, fileName: file.originalname, planPart: parts.plan as string | undefined };
+  if (unknown.length > 0 || Array.isArray(parts.plan)) throw refuseFields(unknown);
+  return {
+    stored: file.stored,
+    fileName: file.originalname,
+    planPart: parts.plan as string | undefined,
+  };
 }
 
 /** Reads a multipart request by multer into a storage. */
@@ -88,17 +84,16 @@ export async function runMulter(
 class ChunkStorage implements StorageEngine {
   readonly #db: Database;
   readonly #receipt: Omit<Receipt, 'fileName'>;
-  #storing: Promise<StoredOriginal | null> = Promise.resolve(null);
+  #storing: Promise<unknown> = Promise.resolve();
 
   constructor(db: Database, receipt: Omit<Receipt, 'fileName'>) {
     this.#db = db;
     this.#receipt = receipt;
   }
 
-  /** Removes what was stored, also where multer answers a fault before it is. */
-  async discard(): Promise<void> {
-    const stored = await this.#storing;
-    if (stored) await discardReceipt(this.#db, { ...this.#receipt, uploadId: stored.uploadId });
+  /** Waits until nothing is being stored any more: multer answers a fault before that. */
+  async settled(): Promise<void> {
+    await this.#storing.catch(() => undefined);
   }
 
   _handleFile(
@@ -110,7 +105,7 @@ class ChunkStorage implements StorageEngine {
     file.stream.once('limit', () => file.stream.destroy(new MulterError('LIMIT_FILE_SIZE')));
     const receipt = { ...this.#receipt, fileName: cleanFileName(file.originalname) };
     const storing = storeOriginal(this.#db, receipt, file.stream);
-    this.#storing = storing.catch(() => null);
+    this.#storing = storing;
     storing.then(
       (stored) => {
         done(null, { stored, size: stored.byteSize } as Partial<Express.Multer.File>);
@@ -121,23 +116,9 @@ class ChunkStorage implements StorageEngine {
     );
   }
 
-  _removeFile(
-    _request: Request,
-    file: Express.Multer.File & { stored?: StoredOriginal },
-    done: (error: Error | null) => void,
-  ): void {
-    if (!file.stored) {
-      done(null);
-      return;
-    }
-    discardReceipt(this.#db, { ...this.#receipt, uploadId: file.stored.uploadId }).then(
-      () => {
-        done(null);
-      },
-      (error: unknown) => {
-        done(error as Error);
-      },
-    );
+  /** What is stored is discarded by whoever asked for the receipt. */
+  _removeFile(_request: Request, _file: unknown, done: (error: Error | null) => void): void {
+    done(null);
   }
 }
 

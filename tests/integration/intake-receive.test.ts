@@ -1,10 +1,12 @@
+import { randomBytes } from 'node:crypto';
 import { createServer, request as httpRequest, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import express, { type NextFunction, type Request, type Response } from 'express';
 import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
 import { ApiError } from '../../server/errors.ts';
-import { discardUnfinishedReceipts } from '../../server/intake/discard-receipts.ts';
+import { discardAbandonedReceipts } from '../../server/intake/discard-receipts.ts';
+import { receiptLock } from '../../server/intake/hold-receipt.ts';
 import { readOriginal } from '../../server/intake/original.ts';
 import { receiveUpload } from '../../server/intake/receive-upload.ts';
 import { withTenant } from '../../server/db/tenant.ts';
@@ -227,16 +229,79 @@ test('a plan may be the id of a saved one of the site', async () => {
   expect(given.rows[0]).toMatchObject({ plan_given: plan });
 });
 
-test('files whose server ended while they arrived are discarded, others are not', async () => {
+/** Ends the connections that hold the locks of arriving files, as a lost network would. */
+async function endReceivers(): Promise<void> {
+  await site.db.execute(sql`/* end receivers */
+    select pg_terminate_backend(pid) from pg_locks
+    where locktype = 'advisory' and classid = ${receiptLock}
+      and database = (select oid from pg_database where datname = current_database())`);
+}
+
+/** Sends the beginning of a form, and waits until some of the file is kept. */
+async function beginToSend() {
+  const { port } = server.address() as AddressInfo;
+  const sending = httpRequest({
+    port,
+    method: 'POST',
+    headers: { 'Content-Type': 'multipart/form-data; boundary=b' },
+  });
+  const answered = new Promise<{ status: number | undefined; detail: string }>((resolve) => {
+    sending.on('response', (answer) => {
+      answer.setEncoding('utf8').on('data', (body: string) => {
+        resolve({ status: answer.statusCode, ...(JSON.parse(body) as { detail: string }) });
+      });
+    });
+  });
+  sending.on('error', () => undefined);
+  sending.write('--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\n');
+  sending.write(randomBytes(400_000));
+  await expect.poll(kept).toEqual([{ status: 'receiving', chunks: 1 }]);
+  return { sending, answered };
+}
+
+describe('while a file arrives', () => {
+  test('it is left alone, and other files come and go', async () => {
+    const { sending } = await beginToSend();
+    expect(await discardAbandonedReceipts(site.db)).toBe(0);
+    expect(await send([file()])).toMatchObject({ status: 202 });
+    expect((await kept()).map(({ status }) => status)).toEqual(['receiving', 'waiting']);
+    sending.destroy();
+    await expect.poll(async () => (await kept()).map(({ status }) => status)).toEqual(['waiting']);
+  });
+
+  test('a lost lock ends it with a sentence, and nothing of it is kept', async () => {
+    const { sending, answered } = await beginToSend();
+    await endReceivers();
+    expect(await answered).toMatchObject({
+      status: 503,
+      detail: expect.stringMatching(/database was lost/) as string,
+    });
+    expect(await kept()).toEqual([]);
+    sending.destroy();
+    expect(await send([file()])).toMatchObject({ status: 202 });
+  });
+
+  test('one that another discarded meanwhile is not taken for received', async () => {
+    const { sending, answered } = await beginToSend();
+    await withTenant(site.db, site.key.organisationId, (tx) =>
+      tx.execute(sql`/* as a sweep would */ delete from upload where status = 'receiving'`),
+    );
+    sending.end('\r\n--b--\r\n');
+    expect(await answered).toMatchObject({
+      status: 503,
+      detail: expect.stringMatching(/lost while it arrived/) as string,
+    });
+    expect(await kept()).toEqual([]);
+  });
+});
+
+test('a file that nobody receives any more is discarded, one that was received is not', async () => {
   await send([file()]);
   await withTenant(site.db, site.key.organisationId, (tx) =>
-    tx.execute(sql`/* broken-off receipts */
+    tx.execute(sql`/* broken-off receipt */
       insert into upload (organisation_id, site_id, status, file_name, received_at)
-      values
-        (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'old', '2026-01-01T00:00Z'),
-        (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'new', '2026-01-03T00:00Z')`),
+      values (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'old', now())`),
   );
-  const discarded = await discardUnfinishedReceipts(site.db, new Date('2026-01-02T00:00:00Z'));
-  expect(discarded).toBe(1);
-  expect((await kept()).map(({ status }) => status).sort()).toEqual(['receiving', 'waiting']);
+  expect(await discardAbandonedReceipts(site.db)).toBe(1);
+  expect((await kept()).map(({ status }) => status)).toEqual(['waiting']);
 });
