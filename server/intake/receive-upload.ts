@@ -14,7 +14,7 @@ import { discardReceipt } from './discard-receipts.ts';
 import { holdReceipt, type HeldReceipt } from './hold-receipt.ts';
 import type { UploadKey } from './original.ts';
 import { readPlanPart } from './plan-part.ts';
-import { receiveParts, type ReceivedParts } from './receive.ts';
+import { receiveParts, type ReceiptLimits, type ReceivedParts } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
 import { storeOriginal, type Receipt } from './store-original.ts';
 
@@ -25,10 +25,8 @@ export interface ReceiptContext {
   requestId?: string;
 }
 
-/** Of a request, also how large a file may be, in MiB. */
-export interface RequestContext extends ReceiptContext {
-  limitMb: number;
-}
+/** Of a request, also how large a file may be, and how long nothing may come. */
+export interface RequestContext extends ReceiptContext, ReceiptLimits {}
 
 /**
  * Receives a file with its column plan, whole or not at all, and makes it an upload that waits to be read.
@@ -41,9 +39,9 @@ export async function receiveUpload(
   site: SiteKey,
   context: RequestContext,
 ): Promise<number> {
-  const { db, limitMb } = context;
+  const { db } = context;
   return wholeOrNothing(site, context, async (key, receipt) => {
-    const received = await receiveParts(request, db, receipt, limitMb);
+    const received = await receiveParts(request, db, receipt, context);
     const plan = await readPlanPart(db, site, received.planPart);
     await accept(key, received, plan, context);
   });

@@ -32,6 +32,7 @@ beforeAll(async () => {
       clock: { now: () => new Date('2026-02-01T00:00:00Z') },
       actor: { kind: 'machine', accessKeyId: site.accessKeyId, ...site.key },
       limitMb: 1,
+      patienceMs: Number(req.headers['x-patience-ms'] ?? 120_000),
     });
     res.status(202).json({ id });
   });
@@ -182,11 +183,30 @@ describe('nothing is kept, and a sentence says why,', () => {
     expect(await kept()).toEqual([]);
   });
 
-  test('of a form that ends too early', async () => {
-    const body =
-      '--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\njob,ar';
+  const part = 'Content-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\njob,area';
+  test.each([
+    ['that ends in the file', `--b\r\n${part}`],
+    ['that ends in the header of a part', '--b\r\nContent-Disposition: form-da'],
+    ['that ends after its first boundary', '--b\r\n'],
+    ['whose parts have another boundary', `--c\r\n${part}\r\n--c--\r\n`],
+    ['whose last boundary is another', `--b\r\n${part}\r\n--c--\r\n`],
+    ['of a part without a header', `--b\r\n\r\njob,area\r\n--b--\r\n`],
+    ['of a part whose header is broken', `--b\r\nContent Disposition\r\n\r\nx\r\n--b--\r\n`],
+    ['of a part without a name', `--b\r\nContent-Disposition: form-data\r\n\r\nx\r\n--b--\r\n`],
+    ['that is empty', '--b--\r\n'],
+    ['without a byte', ''],
+    ['of other bytes', '\0\x01\r\n\r\n--'],
+  ])('of a form %s', async (_, body) => {
     const headers = { 'Content-Type': 'multipart/form-data; boundary=b' };
     const answer = await fetch(address, { method: 'POST', body, headers });
+    expect(answer.status).toBe(400);
+    expect(((await answer.json()) as { detail: string }).detail).toMatch(/^[A-Z].*\.$/);
+    expect(await kept()).toEqual([]);
+  });
+
+  test('of a form that names no boundary', async () => {
+    const headers = { 'Content-Type': 'multipart/form-data' };
+    const answer = await fetch(address, { method: 'POST', body: `--b\r\n${part}`, headers });
     expect(answer.status).toBe(400);
     expect(await kept()).toEqual([]);
   });
@@ -237,13 +257,13 @@ async function endReceivers(): Promise<void> {
       and database = (select oid from pg_database where datname = current_database())`);
 }
 
-/** Sends the beginning of a form, and waits until some of the file is kept. */
-async function beginToSend() {
+/** Sends the beginning of a form, of a file of 400 kB. */
+function beginToSend(more: Record<string, string> = {}) {
   const { port } = server.address() as AddressInfo;
   const sending = httpRequest({
     port,
     method: 'POST',
-    headers: { 'Content-Type': 'multipart/form-data; boundary=b' },
+    headers: { 'Content-Type': 'multipart/form-data; boundary=b', ...more },
   });
   const answered = new Promise<{ status: number | undefined; detail: string }>((resolve) => {
     sending.on('response', (answer) => {
@@ -255,13 +275,15 @@ async function beginToSend() {
   sending.on('error', () => undefined);
   sending.write('--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\n');
   sending.write(randomBytes(400_000));
-  await expect.poll(kept).toEqual([{ status: 'receiving', chunks: 1 }]);
   return { sending, answered };
 }
 
+const keptInPart = () => expect.poll(kept).toEqual([{ status: 'receiving', chunks: 1 }]);
+
 describe('while a file arrives', () => {
   test('it is left alone, and other files come and go', async () => {
-    const { sending } = await beginToSend();
+    const { sending } = beginToSend();
+    await keptInPart();
     expect(await discardAbandonedReceipts(site.db)).toBe(0);
     expect(await send([file()])).toMatchObject({ status: 202 });
     expect((await kept()).map(({ status }) => status)).toEqual(['receiving', 'waiting']);
@@ -270,7 +292,8 @@ describe('while a file arrives', () => {
   });
 
   test('a lost lock ends it with a sentence, and nothing of it is kept', async () => {
-    const { sending, answered } = await beginToSend();
+    const { sending, answered } = beginToSend();
+    await keptInPart();
     await endReceivers();
     expect(await answered).toMatchObject({
       status: 503,
@@ -281,8 +304,18 @@ describe('while a file arrives', () => {
     expect(await send([file()])).toMatchObject({ status: 202 });
   });
 
+  test('a sender that stops is told so, and nothing of the file is kept', async () => {
+    const { answered } = beginToSend({ 'X-Patience-Ms': '300' });
+    expect(await answered).toMatchObject({
+      status: 408,
+      detail: 'Nothing of the file came any more. Nothing of it was kept. Send it again.',
+    });
+    expect(await kept()).toEqual([]);
+  });
+
   test('one that another discarded meanwhile is not taken for received', async () => {
-    const { sending, answered } = await beginToSend();
+    const { sending, answered } = beginToSend();
+    await keptInPart();
     await withTenant(site.db, site.key.organisationId, (tx) =>
       tx.execute(sql`/* as a sweep would */ delete from upload where status = 'receiving'`),
     );
