@@ -1,7 +1,12 @@
 import { Client } from 'pg';
 
 /** A point in the taking in of an upload at which a test holds it. */
-export type Moment = 'reading' | 'loading' | 'deriving';
+export type Moment = 'reading' | 'deriving';
+
+const lockFor: Readonly<Record<Moment, string>> = {
+  reading: 'lock table column_plan in access exclusive mode',
+  deriving: 'lock table level_hour in exclusive mode',
+};
 
 /**
  * Keeps a server's work from going past a moment, by a lock on a table that it needs next: so the moment of
@@ -10,6 +15,7 @@ export type Moment = 'reading' | 'loading' | 'deriving';
 export class FrozenLoad {
   readonly #url: string;
   readonly #clients: Client[] = [];
+  #moment: Moment = 'reading';
 
   constructor(url: string) {
     this.#url = url;
@@ -17,12 +23,9 @@ export class FrozenLoad {
 
   /** To be called before the file is sent. */
   async holdAt(moment: Moment): Promise<void> {
-    const tables = { reading: 'column_plan', loading: 'upload_row', deriving: 'level_hour' };
-    const mode = moment === 'reading' ? 'access exclusive' : 'exclusive';
-    await this.#hold(`lock table ${tables[moment]} in ${mode} mode`);
+    await this.#hold(lockFor[moment]);
     this.#moment = moment;
   }
-  #moment: Moment = 'reading';
 
   /** Waits until an upload has come to the moment; of reading, until some of its rows are staged. */
   async arrived(uploadId: number): Promise<void> {
@@ -48,12 +51,12 @@ export class FrozenLoad {
     this.#clients.push(client);
   }
 
-  /** Until somebody waits for what the newest connection holds. */
+  /** Until somebody waits for what the newest connection holds: locks are seen as they are, sessions not. */
   async #waiting(): Promise<void> {
     const client = this.#clients.at(-1);
     for (;;) {
       const found = await client?.query(
-        'select from pg_stat_activity where pg_backend_pid() = any (pg_blocking_pids(pid))',
+        'select from pg_locks where not granted and pg_backend_pid() = any (pg_blocking_pids(pid))',
       );
       if (found?.rowCount) return;
     }
