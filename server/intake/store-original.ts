@@ -57,13 +57,21 @@ export async function storeOriginal(
       done(null, block);
     },
   });
-  await pipeline(
-    file,
-    meter,
-    createGzip({ level: gzipLevel }),
-    (packed) =>
-      keepChunks(db, { organisationId, siteId, uploadId }, packed as AsyncIterable<Buffer>),
-    { signal: lost },
+  const key = { organisationId, siteId, uploadId };
+  let broken: unknown;
+  const keep = async (packed: AsyncIterable<Buffer>) => {
+    try {
+      await keepChunks(db, key, packed);
+    } catch (error) {
+      broken = error;
+      throw error;
+    }
+  };
+  await pipeline(file, meter, createGzip({ level: gzipLevel }), keep, { signal: lost }).catch(
+    (error: unknown) => {
+      // Where the last step fails, a pipeline tells only that the one before it was aborted.
+      throw broken ?? error;
+    },
   );
   return { byteSize, sha256: hash.digest('hex') };
 }

@@ -1,7 +1,9 @@
 import { mkdtempSync, chmodSync, rmSync } from 'node:fs';
 import os from 'node:os';
 import path from 'node:path';
+import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Upload } from '../../shared/contracts/uploads.ts';
 import { Analyst } from '../support/analyst.ts';
 import { FrozenLoad, type Moment } from '../support/frozen-load.ts';
 import {
@@ -59,6 +61,31 @@ const kills = {
 };
 const victims = ['server', 'database'] as const;
 
+/** Ends the load's own process of the database by force: all others are ended by it, and it recovers. */
+async function crashDatabase(): Promise<void> {
+  const pid = await lookingAt(databaseUrl(folder), async (db) => {
+    const { rows } = await db.execute(sql`/* the load */
+      select pid from pg_locks where locktype = 'advisory' and objsubid = 2 and granted`);
+    return Number(rows[0]?.pid);
+  });
+  process.kill(pid, 'SIGKILL');
+}
+
+/** Waits until an upload is taken in, and proves that it is wholly, once, and with nothing beside it. */
+async function isWhole(site: number, id: number): Promise<void> {
+  const analyst = await Analyst.at(server.origin);
+  expect(await analyst.until(site, id, ['loaded', 'failed'])).toMatchObject({
+    status: 'loaded',
+    account: { rowsRead: rows, new: rows, refused: 0 },
+  });
+  await restsAtLast();
+  const { derived, rebuilt } = await lookingAt(databaseUrl(folder), (db) =>
+    derivedAndRebuilt(db, site),
+  );
+  expect(derived).toEqual(rebuilt);
+  expect(derived[0]).toMatchObject({ table: 'record', rows });
+}
+
 const leftOvers = () => lookingAt(databaseUrl(folder), readLeftOvers);
 const restsAtLast = () => expect.poll(leftOvers, { timeout: 60_000 }).toEqual(nothingLeft);
 
@@ -77,17 +104,7 @@ describe.each(victims)('the %s, killed', (victim) => {
       await frozen.letGo();
 
       server = await startServer(folder);
-      const loaded = await (await Analyst.at(server.origin)).until(site, id, ['loaded', 'failed']);
-      expect(loaded).toMatchObject({
-        status: 'loaded',
-        account: { rowsRead: rows, new: rows, refused: 0 },
-      });
-      await restsAtLast();
-      const { derived, rebuilt } = await lookingAt(databaseUrl(folder), (db) =>
-        derivedAndRebuilt(db, site),
-      );
-      expect(derived).toEqual(rebuilt);
-      expect(derived[0]).toMatchObject({ table: 'record', rows });
+      await isWhole(site, id);
     },
     120_000,
   );
@@ -98,10 +115,7 @@ describe.each(victims)('the %s, killed', (victim) => {
     const id = await analyst.send(site, new Blob([file]));
     await kills[victim]();
     server = await startServer(folder);
-    const next = await Analyst.at(server.origin);
-    const loaded = await next.until(site, id, ['loaded', 'failed']);
-    expect(loaded).toMatchObject({ status: 'loaded', account: { rowsRead: rows, new: rows } });
-    await restsAtLast();
+    await isWhole(site, id);
   }, 120_000);
 
   it('while a file arrives, leaves nothing of it', async () => {
@@ -115,5 +129,23 @@ describe.each(victims)('the %s, killed', (victim) => {
     await restsAtLast();
     const next = await Analyst.at(server.origin);
     expect(await next.call(`/api/sites/${site}/uploads`)).toEqual([]);
+  }, 120_000);
+});
+
+describe('a database that crashes and comes back by itself', () => {
+  it('leaves the server running, which takes the upload in whole, unasked', async () => {
+    const analyst = await Analyst.at(server.origin);
+    const site = await analyst.makeSite('crash');
+    const frozen = new FrozenLoad(databaseUrl(folder));
+    await frozen.holdAt('deriving');
+    const id = await analyst.send(site, new Blob([file]));
+    await frozen.arrived(id);
+    await crashDatabase();
+    await frozen.letGo();
+    const status = async () =>
+      (await analyst.call<Upload>(`/api/sites/${site}/uploads/${id}`)).status;
+    // Calls fail while it recovers.
+    await expect.poll(() => status().catch(String), { timeout: 60_000 }).toBe('loaded');
+    await isWhole(site, id);
   }, 120_000);
 });

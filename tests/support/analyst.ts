@@ -12,12 +12,14 @@ export class Analyst {
     this.#cookie = cookie;
   }
 
+  /** Signs in. @throws Error where the server does not let them */
   static async at(origin: string): Promise<Analyst> {
     const response = await fetch(`${origin}/api/auth/sign-in`, {
       method: 'POST',
       headers: { 'Content-Type': 'application/json' },
       body: JSON.stringify({ email: 'analyst@lowmoor.example', password: demoPassword }),
     });
+    if (!response.ok) throw new Error(`Signing in was answered ${response.status}.`);
     return new Analyst(origin, response.headers.get('set-cookie')?.split(';')[0] ?? '');
   }
 
