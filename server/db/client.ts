@@ -1,5 +1,6 @@
 import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import { Pool } from 'pg';
+import { onConnection } from './on-connection.ts';
 
 export type Database = NodePgDatabase & { $client: Pool };
 /** A transaction as drizzle hands it on. */
@@ -12,9 +13,18 @@ export interface ConnectOptions {
   onIdleError?: (error: Error) => void;
 }
 
-/** A pool of connections to one database under one role, with drizzle over it. */
+/**
+ * A pool of connections to one database under one role, with drizzle over it. A connection that breaks
+ * within a transaction fails that transaction and leaves the pool, and does no harm beyond it.
+ */
 export function connect(url: string, options: ConnectOptions = {}): Database {
   const pool = new Pool({ connectionString: url, max: options.max ?? 10 });
   pool.on('error', (error) => options.onIdleError?.(error));
-  return drizzle(pool, { casing: 'snake_case' });
+  const db = drizzle(pool, { casing: 'snake_case' });
+  // Drizzle's own would keep a connection for ever whose first statement fails, and hear no errors of it.
+  const transaction: Database['transaction'] = (work, config) =>
+    onConnection(pool, (client) =>
+      drizzle(client, { casing: 'snake_case' }).transaction(work, config),
+    );
+  return Object.assign(db, { transaction });
 }

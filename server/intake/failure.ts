@@ -2,6 +2,7 @@
 export type IntakeFailureCode =
   | 'stopped'
   | 'internal-error'
+  | 'storage-full'
   | 'empty-file'
   | 'header-only'
   | 'wrong-kind'

@@ -16,7 +16,7 @@ import { sampleBytes } from './limits.ts';
 import { readPlanPart } from './plan-part.ts';
 import { readOriginal, type UploadKey } from './original.ts';
 import { previewOf, type PreviewInput } from './preview.ts';
-import { runMulter } from './receive.ts';
+import { readForm } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
 
 const isWorkbook = (head: Buffer | undefined): boolean => head !== undefined && isZip(head);
@@ -36,7 +36,7 @@ export async function previewRequest(
   receivedAt: Date,
 ): Promise<UploadPreview> {
   const head = new HeadStorage();
-  await runMulter(request, head, previewMb * 1_048_576, previewMb);
+  await readForm(request, head, previewMb * 1_048_576, previewMb);
   if (!head.isFilled) {
     throw invalidInput('The request holds no file.', [
       { field: 'file', message: 'Send the beginning of the export as a part named file.' },

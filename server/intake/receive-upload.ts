@@ -8,11 +8,15 @@ import type { Clock } from '../clock.ts';
 import type { Database } from '../db/client.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
+import { hasCode } from '../db/faults.ts';
+import { ApiError } from '../errors.ts';
+import { discardReceipt } from './discard-receipts.ts';
+import { holdReceipt, type HeldReceipt } from './hold-receipt.ts';
 import type { UploadKey } from './original.ts';
 import { readPlanPart } from './plan-part.ts';
-import { receiveParts, type ReceivedParts } from './receive.ts';
+import { receiveParts, type ReceiptLimits, type ReceivedParts } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
-import { discardReceipt, storeOriginal } from './store-original.ts';
+import { storeOriginal, type Receipt } from './store-original.ts';
 
 export interface ReceiptContext {
   db: Database;
@@ -21,10 +25,8 @@ export interface ReceiptContext {
   requestId?: string;
 }
 
-/** Of a request, also how large a file may be, in MiB. */
-export interface RequestContext extends ReceiptContext {
-  limitMb: number;
-}
+/** Of a request, also how large a file may be, and how long nothing may come. */
+export interface RequestContext extends ReceiptContext, ReceiptLimits {}
 
 /**
  * Receives a file with its column plan, whole or not at all, and makes it an upload that waits to be read.
@@ -37,17 +39,12 @@ export async function receiveUpload(
   site: SiteKey,
   context: RequestContext,
 ): Promise<number> {
-  const { db, limitMb } = context;
-  const received = await receiveParts(request, db, receiptOf(site, context), limitMb);
-  const key = { ...site, uploadId: received.stored.uploadId };
-  try {
+  const { db } = context;
+  return wholeOrNothing(site, context, async (key, receipt) => {
+    const received = await receiveParts(request, db, receipt, context);
     const plan = await readPlanPart(db, site, received.planPart);
     await accept(key, received, plan, context);
-  } catch (error) {
-    await discardReceipt(db, key);
-    throw error;
-  }
-  return key.uploadId;
+  });
 }
 
 /**
@@ -61,14 +58,46 @@ export async function receiveFile(
   site: SiteKey,
   context: ReceiptContext,
 ): Promise<number> {
-  const receipt = { ...receiptOf(site, context), fileName };
-  const stored = await storeOriginal(context.db, receipt, file);
-  await accept({ ...site, uploadId: stored.uploadId }, { stored, fileName }, null, context);
-  return stored.uploadId;
+  return wholeOrNothing(site, context, async (key, receipt) => {
+    const stored = await storeOriginal(context.db, { ...receipt, fileName }, file);
+    await accept(key, { stored, fileName }, null, context);
+  });
 }
 
-const receiptOf = (site: SiteKey, { clock, actor }: ReceiptContext) => ({
+/** Receives under the lock of a new upload; where that fails, what has arrived is discarded. */
+function wholeOrNothing(
+  site: SiteKey,
+  context: ReceiptContext,
+  receive: (key: UploadKey, receipt: Omit<Receipt, 'fileName'>) => Promise<void>,
+): Promise<number> {
+  return holdReceipt(context.db, async (held) => {
+    const key = { ...site, uploadId: held.uploadId };
+    try {
+      await receive(key, receiptOf(site, context, held));
+      return held.uploadId;
+    } catch (error) {
+      // Where the database is away, the sweep for what nobody receives any more does it later.
+      await discardReceipt(context.db, key).catch(() => undefined);
+      // A chunk has nothing to belong to where another server took this one for dead.
+      throw hasCode(error, [foreignKeyViolation]) ? lostOnTheWay() : error;
+    }
+  });
+}
+
+const foreignKeyViolation = '23503';
+const lostOnTheWay = () =>
+  new ApiError(
+    'unavailable',
+    'The file was lost while it arrived. Nothing of it was kept. Send it again.',
+  );
+
+const receiptOf = (
+  site: SiteKey,
+  { clock, actor }: ReceiptContext,
+  held: HeldReceipt,
+): Omit<Receipt, 'fileName'> => ({
   ...site,
+  ...held,
   receivedAt: clock.now(),
   receivedBy: actor.kind === 'person' ? actor.personId : null,
   receivedKey: actor.kind === 'machine' ? actor.accessKeyId : null,
@@ -84,7 +113,7 @@ async function accept(
   const { byteSize, sha256 } = stored;
   const at = clock.now();
   await withTenant(db, organisationId, async (tx) => {
-    await tx
+    const accepted = await tx
       .update(upload)
       .set({ status: 'waiting', byteSize, sha256, planGiven, receivedAt: at })
       .where(
@@ -92,8 +121,11 @@ async function accept(
           eq(upload.organisationId, organisationId),
           eq(upload.siteId, siteId),
           eq(upload.id, uploadId),
+          eq(upload.status, 'receiving'),
         ),
-      );
+      )
+      .returning({ id: upload.id });
+    if (accepted.length === 0) throw lostOnTheWay();
     await recordAct(tx, {
       organisationId,
       siteId,

@@ -1,13 +1,9 @@
+import type { Readable } from 'node:stream';
 import type { Request } from 'express';
 import multer, { MulterError, type StorageEngine } from 'multer';
 import type { Database } from '../db/client.ts';
 import { ApiError } from '../errors.ts';
-import {
-  discardReceipt,
-  storeOriginal,
-  type Receipt,
-  type StoredOriginal,
-} from './store-original.ts';
+import { storeOriginal, type Receipt, type StoredOriginal } from './store-original.ts';
 
 /** A whole request with a file, received. */
 export interface ReceivedParts {
@@ -18,26 +14,37 @@ export interface ReceivedParts {
 }
 
 const planBytes = 65_536;
+/** A sender of whom nothing came for so long has stopped. */
+const patienceMs = 120_000;
 
 /**
  * Receives a multipart request whose parts `file` and `plan` come in any order, storing the file while it
- * arrives. A transfer that breaks off, or that holds anything else, leaves nothing behind.
+ * arrives.
  *
- * @param limitMb the largest file that is taken, in MiB
- * @throws ApiError with the sentence that says what was wrong with the request
+ * @param limits the largest file that is taken, in MiB, and how long nothing may come
+ * @throws ApiError with the sentence that says what was wrong with the request; nothing is being stored any
+ *   more then, and the caller discards what was
  */
 export async function receiveParts(
   request: Request,
   db: Database,
   receipt: Omit<Receipt, 'fileName'>,
-  limitMb: number,
+  { limitMb, ...limits }: ReceiptLimits,
 ): Promise<ReceivedParts> {
   const storage = new ChunkStorage(db, receipt);
+  const hasStopped = whenStopped(request, limits.patienceMs ?? patienceMs);
+  void hasStopped.then((error) => {
+    storage.abandon(error);
+  });
   try {
-    await runMulter(request, storage, limitMb * 1_048_576, limitMb);
+    const form = readForm(request, storage, limitMb * 1_048_576, limitMb);
+    // The answer does not wait for what is still to come of a file that is not taken.
+    await Promise.race([form, storage.failure.then((error) => throwRefusal(error, limitMb))]);
   } catch (error) {
-    await storage.discard();
+    await storage.settled();
     throw error;
+  } finally {
+    request.setTimeout(0);
   }
   const file = request.file as (Express.Multer.File & { stored: StoredOriginal }) | undefined;
   if (!file) {
@@ -48,17 +55,38 @@ export async function receiveParts(
     });
   }
   const parts = request.body as Record<string, unknown>;
-  const stored = file.stored;
   const unknown = Object.keys(parts).filter((name) => name !== 'plan');
-  if (unknown.length > 0 || Array.isArray(parts.plan)) {
-    await discardReceipt(db, { ...receipt, uploadId: stored.uploadId });
-    throw refuseFields(unknown);
-  }
-  return { stored, fileName: file.originalname, planPart: parts.plan as string | undefined };
+  if (unknown.length > 0 || Array.isArray(parts.plan)) throw refuseFields(unknown);
+  return {
+    stored: file.stored,
+    fileName: file.originalname,
+    planPart: parts.plan as string | undefined,
+  };
+}
+
+export interface ReceiptLimits {
+  limitMb: number;
+  patienceMs?: number;
+}
+
+/** Resolves, perhaps never, when nothing of a request has come for a while. */
+function whenStopped(request: Request, afterMs: number): Promise<ApiError> {
+  return new Promise((resolve) => {
+    request.setTimeout(afterMs, () => {
+      // What may come after all is no new request.
+      request.res?.setHeader('Connection', 'close');
+      resolve(
+        new ApiError(
+          'timed-out',
+          'Nothing of the file came any more. Nothing of it was kept. Send it again.',
+        ),
+      );
+    });
+  });
 }
 
 /** Reads a multipart request by multer into a storage. */
-export async function runMulter(
+export async function readForm(
   request: Request,
   storage: StorageEngine,
   fileSize: number,
@@ -81,24 +109,35 @@ export async function runMulter(
   const error = await new Promise<unknown>((resolve) => {
     void middleware(request, request.res as never, resolve);
   });
-  if (error !== undefined && error !== null) throw asRefusal(error, limitMb);
+  if (error !== undefined && error !== null) throwRefusal(error, limitMb);
 }
 
 /** Multer's storage of one request: the file goes to the database in chunks. */
 class ChunkStorage implements StorageEngine {
   readonly #db: Database;
   readonly #receipt: Omit<Receipt, 'fileName'>;
-  #storing: Promise<StoredOriginal | null> = Promise.resolve(null);
+  #storing: Promise<unknown> = Promise.resolve();
+  #file: Readable | null = null;
+  #abandoned: Error | null = null;
+  #fail: (error: unknown) => void = () => undefined;
+  /** Resolves with what ended the storing before its time; else never. */
+  readonly failure = new Promise<unknown>((resolve) => (this.#fail = resolve));
 
   constructor(db: Database, receipt: Omit<Receipt, 'fileName'>) {
     this.#db = db;
     this.#receipt = receipt;
   }
 
-  /** Removes what was stored, also where multer answers a fault before it is. */
-  async discard(): Promise<void> {
-    const stored = await this.#storing;
-    if (stored) await discardReceipt(this.#db, { ...this.#receipt, uploadId: stored.uploadId });
+  /** Stores nothing more. */
+  abandon(error: Error): void {
+    this.#abandoned = error;
+    if (this.#file) this.#file.destroy(error);
+    else this.#fail(error);
+  }
+
+  /** Waits until nothing is being stored any more: multer answers a fault before that. */
+  async settled(): Promise<void> {
+    await this.#storing.catch(() => undefined);
   }
 
   _handleFile(
@@ -110,34 +149,23 @@ class ChunkStorage implements StorageEngine {
     file.stream.once('limit', () => file.stream.destroy(new MulterError('LIMIT_FILE_SIZE')));
     const receipt = { ...this.#receipt, fileName: cleanFileName(file.originalname) };
     const storing = storeOriginal(this.#db, receipt, file.stream);
-    this.#storing = storing.catch(() => null);
+    this.#storing = storing;
+    this.#file = file.stream;
+    if (this.#abandoned) file.stream.destroy(this.#abandoned);
     storing.then(
       (stored) => {
         done(null, { stored, size: stored.byteSize } as Partial<Express.Multer.File>);
       },
       (error: unknown) => {
+        this.#fail(error);
         done(error);
       },
     );
   }
 
-  _removeFile(
-    _request: Request,
-    file: Express.Multer.File & { stored?: StoredOriginal },
-    done: (error: Error | null) => void,
-  ): void {
-    if (!file.stored) {
-      done(null);
-      return;
-    }
-    discardReceipt(this.#db, { ...this.#receipt, uploadId: file.stored.uploadId }).then(
-      () => {
-        done(null);
-      },
-      (error: unknown) => {
-        done(error as Error);
-      },
-    );
+  /** What is stored is discarded by whoever asked for the receipt. */
+  _removeFile(_request: Request, _file: unknown, done: (error: Error | null) => void): void {
+    done(null);
   }
 }
 
@@ -158,6 +186,10 @@ const limitSentences: Partial<Record<MulterError['code'], string>> = {
   LIMIT_FIELD_KEY: 'A part of the request has a name that is too long; it takes file and plan.',
   LIMIT_FIELD_VALUE: 'The column plan is longer than 64 KiB.',
 };
+
+function throwRefusal(error: unknown, limitMb: number): never {
+  throw asRefusal(error, limitMb);
+}
 
 function asRefusal(error: unknown, limitMb: number): Error {
   if (error instanceof MulterError) {

@@ -2,14 +2,14 @@ import { createHash } from 'node:crypto';
 import { Transform, type Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
 import { createGzip } from 'node:zlib';
-import { and, eq } from 'drizzle-orm';
 import type { Database } from '../db/client.ts';
 import { upload, uploadChunk } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
+import type { HeldReceipt } from './hold-receipt.ts';
 import type { UploadKey } from './original.ts';
 
-/** For whom a file is received. */
-export interface Receipt {
+/** For whom a file is received, and under which id. */
+export interface Receipt extends HeldReceipt {
   organisationId: number;
   siteId: number;
   fileName: string;
@@ -20,7 +20,6 @@ export interface Receipt {
 }
 
 export interface StoredOriginal {
-  uploadId: number;
   byteSize: number;
   sha256: string;
 }
@@ -34,40 +33,47 @@ const gzipLevel = 3;
  * Keeps a file while it arrives, gzipped and in chunks, under an upload with the status `receiving`.
  * Each chunk is a transaction of its own: a slow sender holds no connection.
  *
- * @throws what the stream or the database throws; nothing of the file is left then
+ * @throws what the stream or the database throws; the caller then discards what there is of the file
  */
 export async function storeOriginal(
   db: Database,
   receipt: Receipt,
   file: Readable,
 ): Promise<StoredOriginal> {
-  const { organisationId, siteId, ...values } = receipt;
-  const [row] = await withTenant(db, organisationId, (tx) =>
+  const { uploadId, lost, ...values } = receipt;
+  const { organisationId, siteId } = values;
+  await withTenant(db, organisationId, (tx) =>
     tx
       .insert(upload)
-      .values({ organisationId, siteId, status: 'receiving', ...values })
-      .returning({ uploadId: upload.id }),
+      .overridingSystemValue()
+      .values({ ...values, id: uploadId, status: 'receiving' }),
   );
-  if (!row) throw new Error('The upload could not be kept.');
-  const key = { organisationId, siteId, uploadId: row.uploadId };
-  try {
-    const hash = createHash('sha256');
-    let byteSize = 0;
-    const meter = new Transform({
-      transform(block: Buffer, _encoding, done) {
-        hash.update(block);
-        byteSize += block.length;
-        done(null, block);
-      },
-    });
-    await pipeline(file, meter, createGzip({ level: gzipLevel }), (packed) =>
-      keepChunks(db, key, packed as AsyncIterable<Buffer>),
-    );
-    return { uploadId: row.uploadId, byteSize, sha256: hash.digest('hex') };
-  } catch (error) {
-    await discardReceipt(db, key);
-    throw error;
-  }
+  const hash = createHash('sha256');
+  let byteSize = 0;
+  const meter = new Transform({
+    transform(block: Buffer, _encoding, done) {
+      hash.update(block);
+      byteSize += block.length;
+      done(null, block);
+    },
+  });
+  const key = { organisationId, siteId, uploadId };
+  let broken: unknown;
+  const keep = async (packed: AsyncIterable<Buffer>) => {
+    try {
+      await keepChunks(db, key, packed);
+    } catch (error) {
+      broken = error;
+      throw error;
+    }
+  };
+  await pipeline(file, meter, createGzip({ level: gzipLevel }), keep, { signal: lost }).catch(
+    (error: unknown) => {
+      // Where the last step fails, a pipeline tells only that the one before it was aborted.
+      throw broken ?? error;
+    },
+  );
+  return { byteSize, sha256: hash.digest('hex') };
 }
 
 async function keepChunks(
@@ -91,20 +97,4 @@ async function keepChunks(
     if (length >= chunkBytes) await keep();
   }
   if (length > 0) await keep();
-}
-
-/** Removes an upload that was not wholly received, with what there is of its file. */
-export async function discardReceipt(db: Database, key: UploadKey): Promise<void> {
-  await withTenant(db, key.organisationId, (tx) =>
-    tx
-      .delete(upload)
-      .where(
-        and(
-          eq(upload.organisationId, key.organisationId),
-          eq(upload.siteId, key.siteId),
-          eq(upload.id, key.uploadId),
-          eq(upload.status, 'receiving'),
-        ),
-      ),
-  );
 }

@@ -1,3 +1,4 @@
+import { isLostConnection, isStorageFull } from '../db/faults.ts';
 import { withTenant } from '../db/tenant.ts';
 import { IntakeFailure } from '../intake/failure.ts';
 import { endUpload } from '../intake/site-uploads.ts';
@@ -12,28 +13,24 @@ export const attemptLimit = 5;
  */
 export async function failUpload(task: SiteTask, uploadId: number, error: unknown): Promise<void> {
   if (isLostConnection(error)) throw error;
-  const failure =
-    error instanceof IntakeFailure
-      ? error
-      : new IntakeFailure(
-          'internal-error',
-          'Something went wrong while this file was read.',
-          'Upload it again, or tell your administrator: the log names this upload.',
-        );
-  if (failure.code === 'internal-error') task.log.error({ err: error, uploadId }, 'upload failed');
+  const failure = error instanceof IntakeFailure ? error : failureOf(error);
+  if (failure !== error) task.log.error({ err: error, uploadId }, 'upload failed');
   const { organisationId, siteId } = task;
   await withTenant(task.db, organisationId, (tx) =>
     endUpload(tx, { organisationId, siteId, uploadId }, failure, task.clock.now()),
   );
 }
 
-/** SQLSTATE classes 08 (connection) and 57P (shut down), and sockets that broke. */
-function isLostConnection(error: unknown): boolean {
-  for (let each: unknown = error; each instanceof Error; each = each.cause) {
-    const code = 'code' in each && typeof each.code === 'string' ? each.code : '';
-    if (/^(08|57P|ECONN|EPIPE)/.test(code)) return true;
-    if (/Connection terminated|Client has encountered a connection error/.test(each.message))
-      return true;
-  }
-  return false;
+function failureOf(error: unknown): IntakeFailure {
+  if (isStorageFull(error))
+    return new IntakeFailure(
+      'storage-full',
+      'The disk of the database is full.',
+      'Tell your administrator; once there is room, read the file again: it need not be sent again.',
+    );
+  return new IntakeFailure(
+    'internal-error',
+    'Something went wrong while this file was read.',
+    'Upload it again, or tell your administrator: the log names this upload.',
+  );
 }

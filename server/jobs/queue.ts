@@ -1,6 +1,7 @@
 import PgBoss from 'pg-boss';
 import { z } from 'zod';
-import { discardUnfinishedReceipts } from '../intake/discard-receipts.ts';
+import { isLostConnection } from '../db/faults.ts';
+import { discardAbandonedReceipts } from '../intake/discard-receipts.ts';
 import type { Logger } from '../log.ts';
 import type { SiteQueue } from './queues.ts';
 import { findSitesWithWork } from './sites-with-work.ts';
@@ -9,8 +10,8 @@ import { workOnSite, type SiteWork } from './site-work.ts';
 /** How many sites are worked on at once by one server process. */
 const sitesAtOnce = 2;
 const sweepEveryMs = 30_000;
-/** A file still arriving after so long was broken off with the server that took it. */
-const unfinishedAfterMs = 6 * 3_600_000;
+/** A site that another holds, perhaps one that was killed, or that was lost with the database, is looked at again. */
+const lookAgainAfterMs = 3000;
 const siteJob = z.object({ organisationId: z.number(), siteId: z.number() });
 
 export interface Worker extends SiteQueue {
@@ -31,11 +32,32 @@ export async function startWorker(url: string, work: SiteWork, log: Logger): Pro
   await boss.start();
   const workerIds: string[] = [];
   const stopping = new AbortController();
+  const waiting = new Map<number, NodeJS.Timeout>();
+  const lookAgain = (organisationId: number, siteId: number) => {
+    if (waiting.has(siteId) || stopping.signal.aborted) return;
+    const look = () => {
+      waiting.delete(siteId);
+      wake(organisationId, siteId).catch(() => {
+        lookAgain(organisationId, siteId);
+      });
+    };
+    waiting.set(siteId, setTimeout(look, lookAgainAfterMs));
+  };
+  const workOn = async (organisationId: number, siteId: number) => {
+    try {
+      const isDone = await workOnSite(work, organisationId, siteId, stopping.signal);
+      if (!isDone) lookAgain(organisationId, siteId);
+    } catch (error) {
+      log.warn({ err: error, siteId }, 'work on a site broke off');
+      if (isLostConnection(error)) lookAgain(organisationId, siteId);
+      throw error;
+    }
+  };
   for (let index = 0; index < sitesAtOnce; index++) {
     const id = await boss.work('site-work', { pollingIntervalSeconds: 2 }, async (jobs) => {
       for (const job of jobs) {
         const { organisationId, siteId } = siteJob.parse(job.data);
-        await workOnSite(work, organisationId, siteId, stopping.signal);
+        await workOn(organisationId, siteId);
       }
     });
     workerIds.push(id);
@@ -46,8 +68,7 @@ export async function startWorker(url: string, work: SiteWork, log: Logger): Pro
     for (const id of workerIds) boss.notifyWorker(id);
   };
   const sweep = async () => {
-    const broken = new Date(work.clock.now().getTime() - unfinishedAfterMs);
-    await discardUnfinishedReceipts(work.db, broken);
+    await discardAbandonedReceipts(work.db);
     for (const site of await findSitesWithWork(work.db))
       await wake(site.organisationId, site.siteId);
   };
@@ -61,6 +82,7 @@ export async function startWorker(url: string, work: SiteWork, log: Logger): Pro
     wake,
     async stop() {
       clearInterval(timer);
+      for (const timeout of waiting.values()) clearTimeout(timeout);
       stopping.abort();
       await boss.stop({ graceful: true, wait: true, timeout: 20_000 });
     },

@@ -3,7 +3,9 @@ import { drizzle } from 'drizzle-orm/node-postgres';
 import type { PoolClient } from 'pg';
 import type { Clock } from '../clock.ts';
 import type { Database } from '../db/client.ts';
+import { noticeDeath } from '../db/notice-death.ts';
 import { IntakeFailure } from '../intake/failure.ts';
+import { Stage } from '../intake/stage.ts';
 import type { Logger } from '../log.ts';
 import { deriveRequested, deriveRequestedZone } from './derive-task.ts';
 import { failUpload } from './fail-upload.ts';
@@ -35,17 +37,19 @@ const siteLock = 7_261_906;
 /**
  * Does everything that waits at a site, one thing after the other, until nothing is left. Where another
  * process is at it already, that one does it: it looks once more after it has let go of the site.
+ *
+ * @returns whether nothing is left; false where another holds the site, which may be one that was killed
  */
 export async function workOnSite(
   work: SiteWork,
   organisationId: number,
   siteId: number,
   signal: AbortSignal = new AbortController().signal,
-): Promise<void> {
+): Promise<boolean> {
   for (;;) {
-    if (!(await underLock(work, organisationId, siteId, signal))) return;
-    if (signal.aborted) return;
-    if ((await readNextWork(work.db, organisationId, siteId)) === null) return;
+    if (!(await underLock(work, organisationId, siteId, signal))) return false;
+    if (signal.aborted) return true;
+    if ((await readNextWork(work.db, organisationId, siteId)) === null) return true;
   }
 }
 
@@ -65,6 +69,7 @@ async function underLock(
       sql`/* site lock */ select pg_try_advisory_lock(${siteLock}, ${siteId}) as held`,
     );
     if (rows[0]?.held !== true) return false;
+    await noticeDeath(client);
     const task = { ...work, organisationId, siteId, client, connection, signal };
     for (let next = await nextOf(task); next && !signal.aborted; next = await nextOf(task))
       await doTask(task, next);
@@ -87,10 +92,12 @@ const nextOf = (task: SiteTask) => readNextWork(task.db, task.organisationId, ta
 async function doTask(task: SiteTask, next: NextWork): Promise<void> {
   switch (next.kind) {
     case 'load':
-      return loadUpload(task, next.uploadId).catch((error: unknown) => {
+      await loadUpload(task, next.uploadId).catch((error: unknown) => {
         if (task.signal.aborted && !(error instanceof IntakeFailure)) throw error;
         return failUpload(task, next.uploadId, error);
       });
+      // The connection goes back to the pool, where the stage would take room until its next load.
+      return Stage.drop(task.client);
     case 'withdraw':
       return withdrawUpload(task, next.uploadId);
     case 'rebuild':

@@ -17,6 +17,7 @@ import {
   requestWithdrawal,
 } from '../../server/intake/site-uploads.ts';
 import { presentUpload } from '../../server/intake/present-upload.ts';
+import { holdReceipt } from '../../server/intake/hold-receipt.ts';
 import { storeOriginal } from '../../server/intake/store-original.ts';
 import { makeIntakeSite, type IntakeSite } from '../support/intake-site.ts';
 
@@ -36,18 +37,23 @@ afterAll(async () => {
 
 /** Stores a file as if it had been received. */
 async function store(file: string | Buffer): Promise<number> {
-  const receipt = {
-    ...site.key,
-    fileName: 'log.csv',
-    receivedAt,
-    receivedBy: null,
-    receivedKey: null,
-  };
-  const { uploadId } = await storeOriginal(site.db, receipt, Readable.from([Buffer.from(file)]));
-  await withTenant(site.db, site.key.organisationId, (tx) =>
-    tx.execute(sql`/* received */ update upload set status = 'waiting' where id = ${uploadId}`),
-  );
-  return uploadId;
+  return holdReceipt(site.db, async (held) => {
+    const receipt = {
+      ...site.key,
+      ...held,
+      fileName: 'log.csv',
+      receivedAt,
+      receivedBy: null,
+      receivedKey: null,
+    };
+    await storeOriginal(site.db, receipt, Readable.from([Buffer.from(file)]));
+    await withTenant(site.db, site.key.organisationId, (tx) =>
+      tx.execute(
+        sql`/* received */ update upload set status = 'waiting' where id = ${held.uploadId}`,
+      ),
+    );
+    return held.uploadId;
+  });
 }
 
 async function read(file: string | Buffer, more: Partial<ReadingInput> = {}) {

@@ -1,10 +1,12 @@
+import { randomBytes } from 'node:crypto';
 import { createServer, request as httpRequest, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import express, { type NextFunction, type Request, type Response } from 'express';
 import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
 import { ApiError } from '../../server/errors.ts';
-import { discardUnfinishedReceipts } from '../../server/intake/discard-receipts.ts';
+import { discardAbandonedReceipts } from '../../server/intake/discard-receipts.ts';
+import { receiptLock } from '../../server/intake/hold-receipt.ts';
 import { readOriginal } from '../../server/intake/original.ts';
 import { receiveUpload } from '../../server/intake/receive-upload.ts';
 import { withTenant } from '../../server/db/tenant.ts';
@@ -30,6 +32,7 @@ beforeAll(async () => {
       clock: { now: () => new Date('2026-02-01T00:00:00Z') },
       actor: { kind: 'machine', accessKeyId: site.accessKeyId, ...site.key },
       limitMb: 1,
+      patienceMs: Number(req.headers['x-patience-ms'] ?? 120_000),
     });
     res.status(202).json({ id });
   });
@@ -180,11 +183,30 @@ describe('nothing is kept, and a sentence says why,', () => {
     expect(await kept()).toEqual([]);
   });
 
-  test('of a form that ends too early', async () => {
-    const body =
-      '--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\njob,ar';
+  const part = 'Content-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\njob,area';
+  test.each([
+    ['that ends in the file', `--b\r\n${part}`],
+    ['that ends in the header of a part', '--b\r\nContent-Disposition: form-da'],
+    ['that ends after its first boundary', '--b\r\n'],
+    ['whose parts have another boundary', `--c\r\n${part}\r\n--c--\r\n`],
+    ['whose last boundary is another', `--b\r\n${part}\r\n--c--\r\n`],
+    ['of a part without a header', `--b\r\n\r\njob,area\r\n--b--\r\n`],
+    ['of a part whose header is broken', `--b\r\nContent Disposition\r\n\r\nx\r\n--b--\r\n`],
+    ['of a part without a name', `--b\r\nContent-Disposition: form-data\r\n\r\nx\r\n--b--\r\n`],
+    ['that is empty', '--b--\r\n'],
+    ['without a byte', ''],
+    ['of other bytes', '\0\x01\r\n\r\n--'],
+  ])('of a form %s', async (_, body) => {
     const headers = { 'Content-Type': 'multipart/form-data; boundary=b' };
     const answer = await fetch(address, { method: 'POST', body, headers });
+    expect(answer.status).toBe(400);
+    expect(((await answer.json()) as { detail: string }).detail).toMatch(/^[A-Z].*\.$/);
+    expect(await kept()).toEqual([]);
+  });
+
+  test('of a form that names no boundary', async () => {
+    const headers = { 'Content-Type': 'multipart/form-data' };
+    const answer = await fetch(address, { method: 'POST', body: `--b\r\n${part}`, headers });
     expect(answer.status).toBe(400);
     expect(await kept()).toEqual([]);
   });
@@ -227,16 +249,92 @@ test('a plan may be the id of a saved one of the site', async () => {
   expect(given.rows[0]).toMatchObject({ plan_given: plan });
 });
 
-test('files whose server ended while they arrived are discarded, others are not', async () => {
+/** Ends the connections that hold the locks of arriving files, as a lost network would. */
+async function endReceivers(): Promise<void> {
+  await site.db.execute(sql`/* end receivers */
+    select pg_terminate_backend(pid) from pg_locks
+    where locktype = 'advisory' and classid = ${receiptLock}
+      and database = (select oid from pg_database where datname = current_database())`);
+}
+
+/** Sends the beginning of a form, of a file of 400 kB. */
+function beginToSend(more: Record<string, string> = {}) {
+  const { port } = server.address() as AddressInfo;
+  const sending = httpRequest({
+    port,
+    method: 'POST',
+    headers: { 'Content-Type': 'multipart/form-data; boundary=b', ...more },
+  });
+  const answered = new Promise<{ status: number | undefined; detail: string }>((resolve) => {
+    sending.on('response', (answer) => {
+      answer.setEncoding('utf8').on('data', (body: string) => {
+        resolve({ status: answer.statusCode, ...(JSON.parse(body) as { detail: string }) });
+      });
+    });
+  });
+  sending.on('error', () => undefined);
+  sending.write('--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\n');
+  sending.write(randomBytes(400_000));
+  return { sending, answered };
+}
+
+const keptInPart = () => expect.poll(kept).toEqual([{ status: 'receiving', chunks: 1 }]);
+
+describe('while a file arrives', () => {
+  test('it is left alone, and other files come and go', async () => {
+    const { sending } = beginToSend();
+    await keptInPart();
+    expect(await discardAbandonedReceipts(site.db)).toBe(0);
+    expect(await send([file()])).toMatchObject({ status: 202 });
+    expect((await kept()).map(({ status }) => status)).toEqual(['receiving', 'waiting']);
+    sending.destroy();
+    await expect.poll(async () => (await kept()).map(({ status }) => status)).toEqual(['waiting']);
+  });
+
+  test('a lost lock ends it with a sentence, and nothing of it is kept', async () => {
+    const { sending, answered } = beginToSend();
+    await keptInPart();
+    await endReceivers();
+    expect(await answered).toMatchObject({
+      status: 503,
+      detail: expect.stringMatching(/database was lost/) as string,
+    });
+    expect(await kept()).toEqual([]);
+    sending.destroy();
+    expect(await send([file()])).toMatchObject({ status: 202 });
+  });
+
+  test('a sender that stops is told so, and nothing of the file is kept', async () => {
+    const { answered } = beginToSend({ 'X-Patience-Ms': '300' });
+    expect(await answered).toMatchObject({
+      status: 408,
+      detail: 'Nothing of the file came any more. Nothing of it was kept. Send it again.',
+    });
+    expect(await kept()).toEqual([]);
+  });
+
+  test('one that another discarded meanwhile is not taken for received', async () => {
+    const { sending, answered } = beginToSend();
+    await keptInPart();
+    await withTenant(site.db, site.key.organisationId, (tx) =>
+      tx.execute(sql`/* as a sweep would */ delete from upload where status = 'receiving'`),
+    );
+    sending.end('\r\n--b--\r\n');
+    expect(await answered).toMatchObject({
+      status: 503,
+      detail: expect.stringMatching(/lost while it arrived/) as string,
+    });
+    expect(await kept()).toEqual([]);
+  });
+});
+
+test('a file that nobody receives any more is discarded, one that was received is not', async () => {
   await send([file()]);
   await withTenant(site.db, site.key.organisationId, (tx) =>
-    tx.execute(sql`/* broken-off receipts */
+    tx.execute(sql`/* broken-off receipt */
       insert into upload (organisation_id, site_id, status, file_name, received_at)
-      values
-        (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'old', '2026-01-01T00:00Z'),
-        (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'new', '2026-01-03T00:00Z')`),
+      values (${site.key.organisationId}, ${site.key.siteId}, 'receiving', 'old', now())`),
   );
-  const discarded = await discardUnfinishedReceipts(site.db, new Date('2026-01-02T00:00:00Z'));
-  expect(discarded).toBe(1);
-  expect((await kept()).map(({ status }) => status).sort()).toEqual(['receiving', 'waiting']);
+  expect(await discardAbandonedReceipts(site.db)).toBe(1);
+  expect((await kept()).map(({ status }) => status)).toEqual(['waiting']);
 });

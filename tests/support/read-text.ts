@@ -1,5 +1,6 @@
 import { columnPlanSchema, type ColumnPlan } from '../../shared/contracts/plan.ts';
 import { BinaryCopy } from '../../server/intake/binary-copy.ts';
+import { decideDateOrder } from '../../server/intake/detect/decide-date-order.ts';
 import { detect } from '../../server/intake/detect/detect.ts';
 import { openFile } from '../../server/intake/open-file.ts';
 import { readingOf, shapeReaderOf } from '../../server/intake/reading.ts';
@@ -31,6 +32,8 @@ export interface ReadTextOptions {
   timeZone?: string;
   receivedAt?: string;
   knownAreas?: string[];
+  /** Whether the whole file is asked for its order of day and month where its beginning does not tell it. */
+  decidesDateOrder?: boolean;
 }
 
 /** Reads a text as intake does, row by row, without a database. */
@@ -53,7 +56,12 @@ export async function readText(text: string | Buffer, options: ReadTextOptions =
     yield Buffer.from(bytes);
   };
   const file = await openFile(open, plan ?? {});
-  const reading = readingOf(detect({ file, plan, timeZone }));
+  const detection = detect({ file, plan, timeZone });
+  let reading = readingOf(detection);
+  if (options.decidesDateOrder && detection.dateOrder === 'unknown') {
+    const dateOrder = await decideDateOrder(reading, file);
+    reading = { ...reading, plan: { ...reading.plan, dateOrder } };
+  }
   const { shape, areas } = shapeReaderOf(reading, {
     receivedAt: new Date(options.receivedAt ?? '2026-06-01T00:00:00Z'),
     knownAreas: new Map((options.knownAreas ?? []).map((folded, index) => [folded, index + 1])),
@@ -67,8 +75,24 @@ export async function readText(text: string | Buffer, options: ReadTextOptions =
     refused: new BinaryCopy(65_536),
     sendFull: () => Promise.resolve(),
   });
-  for await (const _ of file.rows(reading, (row) => reader.take(row)));
-  return { rows, account: reader.tally.account(), areas: areas.accepted, plan: reading.plan };
+  const taken = { lines: 0, silent: [] as number[] };
+  const take = (row: ScannedRow) => {
+    const before = reader.tally.rowsRead;
+    reader.take(row);
+    taken.lines += rawOf(row).split('\n').length;
+    const isCounted = reader.tally.rowsRead > before || row.line === reading.headerLine;
+    if (!isCounted) taken.silent.push(row.line);
+  };
+  for await (const _ of file.rows(reading, take));
+  return {
+    rows,
+    account: reader.tally.account(),
+    areas: areas.accepted,
+    plan: reading.plan,
+    /** How many lines of the text its rows hold, and on which lines rows began that were not counted. */
+    taken,
+    encoding: file.settled.encoding,
+  };
 }
 
 /** The same reader of rows, noting what it judges. */

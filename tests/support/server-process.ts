@@ -17,17 +17,22 @@ export interface ServerProcess {
 const living = new Set<ChildProcess>();
 
 /** Starts a server over the local database in a folder. @throws Error with what it said instead of being ready */
-export async function startServer(dataFolder: string, port = 0): Promise<ServerProcess> {
+export const startServer = (dataFolder: string, port = 0): Promise<ServerProcess> =>
+  start({ DATABASE_URL: '', WEIRMARK_DATA_DIR: dataFolder, PORT: String(port) });
+
+/** Starts a server over a database that runs already. @throws as `startServer` does */
+export const startServerOn = (migratingUrl: string): Promise<ServerProcess> =>
+  start({ DATABASE_URL: migratingUrl, PORT: '0' });
+
+async function start(settings: Record<string, string>): Promise<ServerProcess> {
   const server = spawn(process.execPath, ['--import', 'tsx', 'server/main.ts'], {
     cwd: checkout,
     env: {
       ...process.env,
-      DATABASE_URL: '',
       HOST: '127.0.0.1',
-      PORT: String(port),
-      WEIRMARK_DATA_DIR: dataFolder,
       WEIRMARK_DEMO: 'empty',
       LOG_LEVEL: 'silent',
+      ...settings,
     },
     stdio: ['ignore', 'pipe', 'pipe'],
   });

@@ -1,4 +1,5 @@
 import type { ErrorRequestHandler, RequestHandler } from 'express';
+import { hasCode, isLostConnection, isStorageFull } from '../../db/faults.ts';
 import { ApiError, notFound, problemOf } from '../../errors.ts';
 import type { Logger } from '../../log.ts';
 import { requestIdOf } from './request-id.ts';
@@ -26,10 +27,14 @@ export function answerErrors(log: Logger): ErrorRequestHandler {
 
 function asApiError(error: unknown): ApiError {
   if (error instanceof ApiError) return error;
-  const chain = [...causesOf(error)];
-  if (chain.some(isDatabaseAway))
+  if (isDatabaseAway(error))
     return new ApiError('unavailable', 'The database cannot be reached. Try again in a moment.');
-  if (chain.some(isUnkeepable))
+  if (isStorageFull(error))
+    return new ApiError(
+      'storage-full',
+      'The disk of the database is full. Nothing was kept. Tell your administrator, and try again once there is room.',
+    );
+  if (isUnkeepable(error))
     return new ApiError(
       'invalid-input',
       'A value holds a character or a date that cannot be kept. Nothing was changed.',
@@ -57,34 +62,19 @@ function unreadable(error: unknown): ApiError | null {
   return new ApiError('invalid-input', 'The request could not be read. Nothing was changed.');
 }
 
-function* causesOf(error: unknown): Generator {
-  for (let each = error; each !== undefined && each !== null;) {
-    yield each;
-    each = each instanceof Error ? each.cause : undefined;
-  }
-}
-
-function traitsOf(error: unknown): { type?: string; code?: string; status?: number } {
+function traitsOf(error: unknown): { type?: string; status?: number } {
   if (typeof error !== 'object' || error === null) return {};
-  const { type, code, status } = error as { type?: unknown; code?: unknown; status?: unknown };
+  const { type, status } = error as { type?: unknown; status?: unknown };
   return {
     ...(typeof type === 'string' ? { type } : {}),
-    ...(typeof code === 'string' ? { code } : {}),
     ...(typeof status === 'number' ? { status } : {}),
   };
 }
 
-/** SQLSTATE classes 08 and 57P, too many connections, and sockets that were refused or broke. */
-function isDatabaseAway(error: unknown): boolean {
-  const { code } = traitsOf(error);
-  if (code !== undefined && /^(08|57P|53300|ECONNREFUSED|ECONNRESET|EPIPE)/.test(code)) return true;
-  return (
-    error instanceof Error &&
-    /Connection terminated|timeout exceeded when trying to connect/.test(error.message)
-  );
-}
+/** It went away, or has no connection left (SQLSTATE of too many). */
+const isDatabaseAway = (error: unknown): boolean =>
+  isLostConnection(error) || hasCode(error, ['53300']);
 
 /** SQLSTATE of characters (NUL) and moments that PostgreSQL cannot hold: they came with the request. */
-function isUnkeepable(error: unknown): boolean {
-  return ['22007', '22008', '22021', '22P05'].includes(traitsOf(error).code ?? '');
-}
+const isUnkeepable = (error: unknown): boolean =>
+  hasCode(error, ['22007', '22008', '22021', '22P05']);
