@@ -5,25 +5,13 @@ import {
   type EventWords,
 } from '../../../shared/contracts/plan.ts';
 import type { PlannedColumns } from '../shapes/places.ts';
-import {
-  holdsTimes,
-  looksLikeTimes,
-  mayHoldTimes,
-  mostly,
-  type ColumnProfile,
-} from './column-profile.ts';
-import { wholeHeaderScore, wordScore } from './column-words.ts';
-import {
-  isTaken,
-  type FoundColumns,
-  type GuessedColumn,
-  type GuessReason,
-} from './found-columns.ts';
+import type { ColumnProfile } from './column-profile.ts';
+import type { FoundColumns, GuessedColumn, GuessReason } from './found-columns.ts';
+import { guessArea, guessJob } from './guess-by-cells.ts';
+import { guessByWords } from './guess-by-words.ts';
 import { guessEvents } from './guess-event.ts';
 import { guessAreaColumns } from './guess-job-columns.ts';
 import { guessTimesByOrder } from './guess-times.ts';
-
-const stayColumns = ['job', 'area', ...timeColumns, ...optionalColumns] as const;
 
 export interface ColumnGuess {
   /** The shape of the rows and what each column holds; null where something that has to be is missing. */
@@ -32,25 +20,6 @@ export interface ColumnGuess {
   /** The sentences of what could not be found. */
   missing: string[];
 }
-
-/** What each column is called in a sentence. */
-const called: Readonly<Record<(typeof stayColumns)[number], string>> = {
-  job: 'the job',
-  area: 'the area',
-  arrived: 'the arrival',
-  started: 'the start',
-  finished: 'the finish',
-  record: 'the record’s own id',
-  quantity: 'the quantity',
-  family: 'the product family',
-  due: 'the due date',
-  priority: 'the priority',
-  workContent: 'the work content',
-  value: 'the value',
-  resource: 'the resource',
-  status: 'the status',
-  parent: 'the parent job',
-};
 
 /**
  * Guesses what a row tells and which column holds what, by the words of the header and by what the cells
@@ -152,92 +121,6 @@ function namesOf<Column extends GuessedColumn>(
 }
 
 const optionalNames = (found: FoundColumns) => namesOf(found, optionalColumns);
-
-function guessByWords(profiles: readonly ColumnProfile[], reasons: GuessReason[]): FoundColumns {
-  const named = profiles.filter((profile) => profile.header !== '' && isOnly(profile, profiles));
-  const fits = named
-    .flatMap((profile) =>
-      stayColumns.map((column) => ({ profile, column, score: wordScore(column, profile.words) })),
-    )
-    .filter(({ profile, column, score }) => score > 0 && mayHold(profile, column, score))
-    .sort((a, b) => b.score - a.score || a.profile.place - b.profile.place);
-  const found: FoundColumns = {};
-  for (const { profile, column } of fits) {
-    if (found[column] || isTaken(found, profile)) continue;
-    found[column] = profile;
-    const reason = `“${profile.header}” is a common header for ${called[column]}.`;
-    reasons.push({ about: column, reason });
-  }
-  return found;
-}
-
-/** A column plan names columns by their header, so a header that occurs twice cannot be chosen. */
-const isOnly = (profile: ColumnProfile, all: readonly ColumnProfile[]): boolean =>
-  all.every((other) => other === profile || other.header !== profile.header);
-
-/** Whether the cells of a column can be what its header says. */
-export function mayHold(
-  profile: ColumnProfile,
-  column: (typeof stayColumns)[number],
-  score: number,
-): boolean {
-  switch (column) {
-    case 'arrived':
-    case 'started':
-    case 'finished':
-    case 'due':
-      return mayHoldTimes(profile) || (score >= wholeHeaderScore && looksLikeTimes(profile));
-    case 'quantity':
-    case 'workContent':
-    case 'value':
-      return profile.filled === 0 || profile.numberShare >= mostly;
-    case 'record':
-      return profile.filled > 0 && profile.distinctShare === 1;
-    default:
-      return !holdsTimes(profile);
-  }
-}
-
-function guessJob(
-  profiles: readonly ColumnProfile[],
-  found: FoundColumns,
-  reasons: GuessReason[],
-): void {
-  if (found.job) return;
-  const [job] = freeText(profiles, found)
-    .filter(({ distinct, distinctShare }) => distinct > 1 && distinctShare >= 0.2)
-    .sort((a, b) => b.distinctShare - a.distinctShare || a.place - b.place);
-  if (!job) return;
-  found.job = job;
-  const reason = `“${job.header}” differs from row to row more than any other column, as job keys do.`;
-  reasons.push({ about: 'job', reason });
-}
-
-function guessArea(
-  profiles: readonly ColumnProfile[],
-  found: FoundColumns,
-  reasons: GuessReason[],
-): void {
-  if (found.area) return;
-  const [area] = freeText(profiles, found)
-    .filter(({ distinct, numberShare }) => distinct > 1 && distinct <= 200 && numberShare < mostly)
-    .filter(({ distinctShare }) => distinctShare <= 0.5)
-    .sort((a, b) => a.distinctShare - b.distinctShare || a.place - b.place);
-  if (!area) return;
-  found.area = area;
-  const reason = `“${area.header}” holds ${area.distinct} names that come again and again, as areas do.`;
-  reasons.push({ about: 'area', reason });
-}
-
-const freeText = (profiles: readonly ColumnProfile[], found: FoundColumns): ColumnProfile[] =>
-  profiles.filter(
-    (profile) =>
-      profile.header !== '' &&
-      profile.filled > 0 &&
-      !holdsTimes(profile) &&
-      !isTaken(found, profile) &&
-      isOnly(profile, profiles),
-  );
 
 const sought = {
   job: 'No column could be found that holds the job.',

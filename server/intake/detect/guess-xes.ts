@@ -3,7 +3,8 @@ import type { ColumnProfile } from './column-profile.ts';
 import { commonEventMeaning, guessEventWords } from './event-words.ts';
 import type { GuessReason } from './found-columns.ts';
 import { wholeHeaderScore, wordScore } from './column-words.ts';
-import { mayHold, type ColumnGuess } from './guess-columns.ts';
+import { mayHold } from './guess-by-words.ts';
+import type { ColumnGuess } from './guess-columns.ts';
 
 /**
  * The attributes of IEEE 1849-2016 (annex A, the concept, lifecycle, time, organisational and identity
