@@ -1,3 +1,4 @@
+import { availableParallelism } from 'node:os';
 import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
 import { defineConfig, type TestProjectInlineConfiguration } from 'vitest/config';
@@ -25,6 +26,8 @@ export default defineConfig({
   publicDir: 'src/public',
   build: { outDir: 'dist', emptyOutDir: true },
   test: {
+    // Tests wait for their database about as long as they reckon: two at once also where there are two cores.
+    maxWorkers: Math.max(2, availableParallelism() - 1),
     projects: [
       project('unit', 'unit'),
       // The same in a zone off by three quarters of an hour: nothing may depend on the machine's zone.

@@ -37,6 +37,7 @@ try {
   await take(page, 'floor', `${below}/floor`);
   await take(page, 'area', `${below}/zones/${bench?.id ?? 0}?${half}`);
   await take(page, 'job', `${below}/jobs/LW-18668`);
+  await take(page, 'trust', `${below}/trust?${half}`);
   await take(page, 'intake', `${below}/intake`);
   await page.emulateMedia({ colorScheme: 'dark' });
   await take(page, 'floor-dark', `${below}/floor`);
