@@ -12,8 +12,8 @@ const say = (line: string) => process.stdout.write(`${line}\n`);
 export async function fuzz(files: number, seed: number): Promise<boolean> {
   const counts = { read: 0, refused: 0, rows: 0, refusedRows: 0, bad: 0 };
   for (let index = 0; index < files; index++) {
-    const { story, shape, bytes } = fuzzedFile(seed, index);
-    const { outcome, rows, refused, problems } = await judgeFile(bytes, shape, index % 3 === 0);
+    const { story, shape, bytes } = await fuzzedFile(seed, index);
+    const { outcome, rows, refused, problems } = await judgeFile(bytes, shape);
     counts[outcome] += 1;
     counts.rows += rows;
     counts.refusedRows += refused;

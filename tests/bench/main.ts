@@ -13,7 +13,10 @@ import {
   windowQuerySeconds,
 } from './database.ts';
 import { measureClient } from './client.ts';
+import { fuzz } from './fuzz.ts';
+import { kill } from './kills.ts';
 import { median, medianSeconds, report } from './measure.ts';
+import { measureMemory } from './memory.ts';
 import { BenchServer } from './server.ts';
 import { writeSimulatedLog } from './simulated-log.ts';
 import { measureWorkbook } from './workbook.ts';
@@ -21,6 +24,10 @@ import { measureWorkbook } from './workbook.ts';
 /**
  * Speed, as ratios within one run. `npm run bench` measures at 1,000,000 rows, `npm run bench -- --large`
  * at 10,000,000 with the bars for that size. Ends with 1 where a bar was missed.
+ *
+ * Three more measures take minutes and have switches of their own: `--kills` kills server and database at ten
+ * moments of an upload of 300,000 rows, `--fuzz` reads 10,000 exports to which something happened, and `--memory`
+ * weighs the server while it takes in 5,000,000 rows.
  */
 const large = process.argv.includes('--large');
 const million = 1_000_000;
@@ -37,12 +44,28 @@ const logFile = async (name: string, rows: number, seed: number, span = year) =>
   return file;
 };
 
-const cluster = await startEmbedded({ dataDir: path.join(folder, 'cluster'), kind: 'start', say });
-const stops: (() => Promise<unknown>)[] = [() => cluster.stop()];
+const alone: Readonly<Record<string, () => Promise<boolean>>> = {
+  '--kills': () => kill(folder),
+  '--fuzz': () => fuzz(10_000, 20_261_202),
+  '--memory': async () => {
+    await measureMemory(folder, bar);
+    return met;
+  },
+};
 let met = true;
 const bar = (given: Parameters<typeof report>[0]) => {
   met = report(given) && met;
 };
+for (const [asked, measure] of Object.entries(alone)) {
+  if (!process.argv.includes(asked)) continue;
+  const isMet = await measure().finally(() => {
+    rmSync(folder, { recursive: true, force: true });
+  });
+  process.exit(isMet ? 0 : 1);
+}
+
+const cluster = await startEmbedded({ dataDir: path.join(folder, 'cluster'), kind: 'start', say });
+const stops: (() => Promise<unknown>)[] = [() => cluster.stop()];
 try {
   const { applicationUrl } = await migrateDatabase(cluster.migratingUrl);
   const migrating = connect(cluster.migratingUrl, { max: 2 });

@@ -1,18 +1,23 @@
 import {
   asText,
+  asWorkbook,
+  asXes,
   dialects,
   encoders,
+  sheetTimes,
   tableOf,
   type Dialect,
   type ExportShape,
   type LogStay,
 } from './export-writer.ts';
+import { escapeXml, workbookOf } from './workbook.ts';
 
 /** A file that may be anything between an export and garbage. */
 export interface FuzzedFile {
   /** What was done to it, to name it in a failure. */
   story: string;
-  shape: ExportShape;
+  /** The shape by whose plan it is to be read; null where that is to be detected. */
+  shape: ExportShape | null;
   bytes: Buffer;
 }
 
@@ -125,38 +130,119 @@ const byteMutations: Readonly<Record<string, (bytes: Buffer, random: Random) => 
 };
 
 /** Kinds of export that are written whole, before anything is done to their bytes. */
-const writers: readonly ((random: Random) => FuzzedFile)[] = [
-  writeText,
-  // Workbooks (XLSX) and event logs (XES) join here once they are read.
+const writers: readonly ((random: Random) => FuzzedFile | Promise<FuzzedFile>)[] = [
+  ...Array.from({ length: 6 }, () => writeText),
+  writeWorkbook,
+  makeWorkbook,
+  writeEventLog,
 ];
+const exportShapes: readonly ExportShape[] = ['stay', 'event', 'job'];
 
 function writeText(random: Random): FuzzedFile {
   const dialect = random.pick(dialects);
-  const shape = random.pick(['stay', 'event', 'job'] as const);
+  const shape = random.pick(exportShapes);
   const encoding = random.pick(Object.keys(encoders));
-  let text = asText(tableOf(randomLog(random), shape, dialect), dialect);
+  const table = asText(tableOf(randomLog(random), shape, dialect), dialect);
+  const { text, done } = happenedTo(table, textMutations, random, dialect);
+  const story = [`a row per ${shape}`, dialect.name, encoding, ...done].join('; ');
+  const isPlanned = random.below(3) === 0;
+  return { story, shape: isPlanned ? shape : null, bytes: encodeBy(encoding, text) };
+}
+
+/** A workbook by an independent writer: what happens to it happens to the bytes of its archive. */
+async function writeWorkbook(random: Random): Promise<FuzzedFile> {
+  const shape = random.pick(exportShapes);
+  const times = random.pick(sheetTimes);
+  const bytes = await asWorkbook(randomLog(random), shape, times);
+  return { story: `a workbook with a row per ${shape}, ${times}`, shape: null, bytes };
+}
+
+/** What can be done to the XML of a sheet or an event log, beside what can be done to any text. */
+const xmlMutations = {
+  'an odd piece of XML': insert([
+    ...[
+      '<',
+      '>',
+      '&',
+      '&amp;',
+      '&#0;',
+      '&#x110000;',
+      '&nothing;',
+      ']]>',
+      '<![CDATA[',
+      '<!--',
+      '<?',
+    ],
+    ...[
+      '</row>',
+      '<row r="1">',
+      '<row r="99999999">',
+      '<c r="XFD1"><v>1</v></c>',
+      '<c t="s"><v>7</v></c>',
+    ],
+    ...['<c t="e"><v>#REF!</v></c>', '<c r="A0"/>', '<c t="b"><v>2</v></c>', '</event>', '<trace>'],
+    ...['<list key="x">', '<event/>', '<date key="time:timestamp" value="soon"/>'],
+  ]),
+};
+
+/** A sheet made by hand, to whose XML something happens before it is packed. */
+function makeWorkbook(random: Random): FuzzedFile {
+  const shape = random.pick(exportShapes);
+  const [dialect] = dialects;
+  if (!dialect) throw new Error('There is no dialect.');
+  const rows = tableOf(randomLog(random), shape, dialect).map(
+    (cells, row) =>
+      `<row r="${row + 1}">${cells.map((cell) => `<c t="inlineStr"><is><t>${escapeXml(cell)}</t></is></c>`).join('')}</row>\n`,
+  );
+  const { text, done } = happenedTo(
+    rows.join(''),
+    { ...textMutations, ...xmlMutations },
+    random,
+    dialect,
+  );
+  const bytes = workbookOf({ sheets: { Log: text } });
+  return { story: ['a sheet made by hand', ...done].join('; '), shape: null, bytes };
+}
+
+function writeEventLog(random: Random): FuzzedFile {
+  const encoding = random.pick(['UTF-8', 'UTF-16LE with a mark', 'Windows-1252']);
+  const [dialect] = dialects;
+  if (!dialect) throw new Error('There is no dialect.');
+  const log = asXes(randomLog(random), encoding.split(' ')[0]?.replace('LE', '') ?? 'UTF-8');
+  const { text, done } = happenedTo(log, { ...textMutations, ...xmlMutations }, random, dialect);
+  const story = ['an event log', encoding, ...done].join('; ');
+  return { story, shape: null, bytes: encodeBy(encoding, text) };
+}
+
+/** Does up to three things to a text. */
+function happenedTo(
+  text: string,
+  mutations: typeof textMutations,
+  random: Random,
+  dialect: Dialect,
+): { text: string; done: string[] } {
   const done: string[] = [];
+  let changed = text;
   for (let count = random.below(4); count > 0; count--) {
-    const mutation = random.pick(Object.keys(textMutations));
-    text = textMutations[mutation]?.(text, random, dialect) ?? text;
+    const mutation = random.pick(Object.keys(mutations));
+    changed = mutations[mutation]?.(changed, random, dialect) ?? changed;
     done.push(mutation);
   }
-  const story = [`a row per ${shape}`, dialect.name, encoding, ...done].join('; ');
-  return { story, shape, bytes: encodeBy(encoding, text) };
+  return { text: changed, done };
 }
 
 function randomBytes(random: Random): FuzzedFile {
   const bytes = random.bytes(random.below(600));
-  return { story: 'random bytes', shape: 'stay', bytes };
+  return { story: 'random bytes', shape: null, bytes };
 }
 
 /**
  * One of endlessly many files: an export in any shape, dialect and encoding to which something happened, or
  * bytes that never were one. The same seed and index give the same file.
  */
-export function fuzzedFile(seed: number, index: number): FuzzedFile {
+export async function fuzzedFile(seed: number, index: number): Promise<FuzzedFile> {
   const random = randomFrom(Math.imul(seed, 1_000_003) + index);
-  const file = random.below(12) === 0 ? randomBytes(random) : random.pick(writers)(random);
+  const file = random.below(12) === 0 ? randomBytes(random) : await random.pick(writers)(random);
   const mutation = random.below(2) === 0 ? 'as it is' : random.pick(Object.keys(byteMutations));
   const bytes = byteMutations[mutation]?.(file.bytes, random) ?? file.bytes;
   return { ...file, story: `seed ${seed}, file ${index}: ${file.story}; ${mutation}`, bytes };

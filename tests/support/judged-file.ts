@@ -35,18 +35,16 @@ const plans: Readonly<Record<ExportShape, object>> = {
 const sentence = /^["“A-Z\d].*[.]$/s;
 
 /**
- * Reads a file as intake does, by a plan for its shape or by what is detected, and looks for what must never
- * happen: an error that is no sentence, counts that do not add up, a line of the text that is in no row.
+ * Reads a file as intake does and looks for what must never happen: an error that is no sentence, counts that
+ * do not add up, a line of a text that is in no row.
+ *
+ * @param shape the shape by whose plan it is read; null where it is detected
  */
-export async function judgeFile(
-  bytes: Buffer,
-  shape: ExportShape,
-  hasPlan: boolean,
-): Promise<Judgement> {
+export async function judgeFile(bytes: Buffer, shape: ExportShape | null): Promise<Judgement> {
   const problems = await previewProblems(bytes);
   try {
     const read = await readText(bytes, {
-      ...(hasPlan ? { plan: plans[shape] as { columns: object } } : {}),
+      ...(shape ? { plan: plans[shape] as { columns: object } } : {}),
       decidesDateOrder: true,
     });
     problems.push(...accountProblems(read), ...lineProblems(bytes, read));
@@ -86,7 +84,9 @@ function accountProblems({ rows, account, taken }: Read): string[] {
   return wrong.filter(([isRight]) => !isRight).map(([, what]) => what);
 }
 
-function lineProblems(bytes: Buffer, { encoding, taken }: Read): string[] {
+function lineProblems(bytes: Buffer, { kind, encoding, taken }: Read): string[] {
+  // Rows of other kinds of file are no lines.
+  if (kind !== 'text') return [];
   const lines = linesOf(bytes, encoding);
   return lines === taken.lines ? [] : [`${lines} lines, ${taken.lines} of them in rows`];
 }

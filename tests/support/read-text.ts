@@ -91,6 +91,7 @@ export async function readText(text: string | Buffer, options: ReadTextOptions =
     plan: reading.plan,
     /** How many lines of the text its rows hold, and on which lines rows began that were not counted. */
     taken,
+    kind: file.kind,
     encoding: file.settled.encoding,
   };
 }
