@@ -40,7 +40,7 @@ export async function kill(folder: string): Promise<boolean> {
     say(`Undisturbed, ${rows.toLocaleString('en')} rows take ${seconds.toFixed(1)} s.`);
     let good = 0;
     for (const [index, moment] of moments.entries())
-      if (await bench.killAt(moment, seconds * 1000, index % 2 === 0)) good += 1;
+      if (await bench.killAt(index, moment, seconds * 1000)) good += 1;
     say(`${good} of ${moments.length} ended wholly loaded or not at all, and as a rebuild has it.`);
     return good === moments.length;
   } finally {
@@ -75,9 +75,10 @@ class KillBench {
   }
 
   /** @returns whether the upload ended as it should */
-  async killAt(moment: Moment, wholeMs: number, ofServer: boolean): Promise<boolean> {
+  async killAt(index: number, moment: Moment, wholeMs: number): Promise<boolean> {
+    const ofServer = index % 2 === 0;
     const analyst = await this.start();
-    const site = await analyst.makeSite(`Killed at ${moment}`);
+    const site = await analyst.makeSite(`Kill ${index + 1}`);
     let id: number | null = null;
     const sending = analyst.send(site, this.#file).then(
       (sent) => (id = sent),
