@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { z } from 'zod';
 import type { PostedFinishes } from '../methods/posting-delay.ts';
 import { areaCounted } from './derive/moved-rows.ts';
+import { readToldKinds } from './derive/told-rows.ts';
 import { readAreaMoves } from './read-area-moves.ts';
 import { dayBorders } from './trust-counts.ts';
 import type { SiteReader } from './zone-reader.ts';
@@ -36,7 +37,8 @@ export async function readPostedFinishes(
   reader: SiteReader,
   borders: readonly number[],
 ): Promise<PostedInArea[] | null> {
-  if (await recordsKnowIt(reader)) return null;
+  const kinds = await readToldKinds(reader);
+  if (!kinds.events && !kinds.replaced) return null;
   const { tx, organisationId, siteId } = reader;
   const moves = await readAreaMoves(reader);
   const about = sql`coalesce(started, arrived, finished)`;
@@ -59,15 +61,4 @@ export async function readPostedFinishes(
     where finished >= (${dayBorders(borders)})[1]
     group by 1, 2, 3`);
   return z.array(postedRow).parse(rows);
-}
-
-async function recordsKnowIt({ tx, organisationId, siteId }: SiteReader): Promise<boolean> {
-  const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
-  const { rows } = await tx.execute(sql`/* whether records know their first upload */
-    select not exists (
-      select from upload where ${ofSite} and 'event' in (plan ->> 'shape', plan_given ->> 'shape')
-    ) and not exists (
-      select from upload_area where ${ofSite} and replaces_from is not null
-    ) as known`);
-  return rows[0]?.known === true;
 }

@@ -6,6 +6,7 @@ import { person } from '../db/schema/people.ts';
 import { columnPlan } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
 import { conflict, notFound } from '../errors.ts';
+import { foldHeaderCell } from './shapes/places.ts';
 import type { SiteKey } from './site-uploads.ts';
 
 /** A saved reading of one kind of export, in use. */
@@ -21,9 +22,7 @@ export interface SavedPlan {
 
 /** What tells one kind of export: its header, without regard to case and blanks. */
 export function fingerprintOf(header: readonly string[]): string {
-  const folded = header.map((cell) =>
-    cell.normalize('NFC').trim().replace(/\s+/gu, ' ').toLowerCase(),
-  );
+  const folded = header.map(foldHeaderCell);
   return createHash('sha256').update(JSON.stringify(folded)).digest('hex');
 }
 

@@ -100,7 +100,9 @@ export async function gatherToldRows(derivation: ToldSource): Promise<void> {
 }
 
 /** Which kinds of rows the site's uploads hold. */
-export async function readToldKinds(derivation: ToldSource): Promise<ToldKinds> {
+export async function readToldKinds(
+  derivation: Pick<ToldSource, 'tx' | 'organisationId' | 'siteId'>,
+): Promise<ToldKinds> {
   const { tx, organisationId, siteId } = derivation;
   const ofSite = sql`organisation_id = ${organisationId} and site_id = ${siteId}`;
   const { rows } = await tx.execute(sql`/* kinds of told rows */

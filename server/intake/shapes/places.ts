@@ -34,7 +34,8 @@ export type JobPlaces = {
 };
 export type Places = StayPlaces | EventPlaces | JobPlaces;
 
-const fold = (text: string): string =>
+/** A cell of a header as it is compared: composed, without case, its blanks made one. */
+export const foldHeaderCell = (text: string): string =>
   text.normalize('NFC').trim().replace(/\s+/gu, ' ').toLowerCase();
 
 /** What of a plan names columns. */
@@ -87,7 +88,10 @@ function placeSome<Column extends string>(
 
 function placeOf(name: string, header: readonly string[]): number {
   const exact = placesWhere(header, (cell) => cell.trim() === name.trim());
-  const found = exact.length > 0 ? exact : placesWhere(header, (cell) => fold(cell) === fold(name));
+  const found =
+    exact.length > 0
+      ? exact
+      : placesWhere(header, (cell) => foldHeaderCell(cell) === foldHeaderCell(name));
   const [place, second] = found;
   if (place === undefined) throw noSuchColumn(name, header);
   if (second !== undefined) {
