@@ -168,6 +168,16 @@ describe('a file that replaces its period', () => {
     expect((await jobOf(site, 'J4')).records).toHaveLength(1);
   });
 
+  it('is alone said to void them, not an upload that comes after it', async () => {
+    const site = await makeSite(test);
+    await site.upload(before, plan);
+    await site.upload(truth, { ...plan, mode });
+    const { account } = await site.upload(before.split('\n').slice(0, 3).join('\n'), plan);
+    expect(account).toMatchObject({ rowsRead: 2, voided: 0 });
+    const other = await site.upload('job,area,start,finish\nJ2,Wash,2026-10-24T12:00Z,\n', plan);
+    expect(other.account).toMatchObject({ new: 1, voided: 0 });
+  });
+
   it('and is withdrawn leaves what was before', async () => {
     const site = await makeSite(test);
     await site.upload(before, plan);

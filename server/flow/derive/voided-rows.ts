@@ -86,7 +86,9 @@ export async function countVoided(
     select count(*) as voided
     from upload_row as told join touched_job using (job_key)
     where told.organisation_id = ${organisationId} and told.site_id = ${siteId}
-      and told.upload_id < ${uploadId}
-      and ${isVoided(organisationId, siteId, moves)}`);
+      and exists (
+        select from upload_area as truth
+        where truth.upload_id = ${uploadId} and ${isTruthFor(organisationId, siteId, moves)}
+      )`);
   return Number(rows[0]?.voided);
 }
