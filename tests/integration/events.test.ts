@@ -1,10 +1,9 @@
-import { sql } from 'drizzle-orm';
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { withTenant } from '../../server/db/tenant.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
-import { pairByRule, type OracleEvent, type PairedStay } from '../support/event-oracle.ts';
-import { makeSite, type TestSite } from '../support/site.ts';
+import { eventPlan, eventsAsCsv, inOrder, recordsOf } from '../support/event-log.ts';
+import { pairByRule, type OracleEvent } from '../support/event-oracle.ts';
+import { makeSite } from '../support/site.ts';
 
 let test: TestApp;
 beforeAll(async () => {
@@ -12,42 +11,7 @@ beforeAll(async () => {
 });
 afterAll(() => test.close());
 
-const lowmoor = 1;
-const plan = {
-  shape: 'event',
-  columns: { job: 'job', area: 'area', event: 'event', time: 'time' },
-  eventWords: { arrived: ['arrived'], started: ['started'], finished: ['finished'] },
-  timeZone: 'Europe/Dublin',
-};
-
-const asCsv = (events: readonly OracleEvent[]): string =>
-  [
-    'job,area,event,time',
-    ...events.map(({ job, area, event, at }) =>
-      [job, area, event, new Date(at).toISOString()].join(),
-    ),
-    '',
-  ].join('\n');
-
-/** The records of a site as paired stays, in an order of their own. */
-async function recordsOf(site: TestSite): Promise<PairedStay[]> {
-  const { rows } = await withTenant(test.db, lowmoor, (tx) =>
-    tx.execute(sql`/* records */
-      select
-        job_key as job, zone.name as area,
-        (extract(epoch from arrived) * 1000)::double precision as arrived,
-        (extract(epoch from started) * 1000)::double precision as started,
-        (extract(epoch from finished) * 1000)::double precision as finished
-      from record join zone
-        on zone.organisation_id = record.organisation_id
-        and zone.site_id = record.site_id and zone.id = record.area_id
-      where record.site_id = ${site.id}`),
-  );
-  return inOrder(rows as unknown as PairedStay[]);
-}
-
-const inOrder = (stays: readonly PairedStay[]): PairedStay[] =>
-  [...stays].sort((a, b) => (JSON.stringify(a) < JSON.stringify(b) ? -1 : 1));
+const plan = { ...eventPlan, timeZone: 'Europe/Dublin' };
 
 const start = Date.parse('2026-10-24T06:00:00Z');
 /** Few moments, so that many events fall together. */
@@ -72,12 +36,12 @@ describe('events', () => {
         const site = await makeSite(test);
         for (const events of parts) {
           if (events.length === 0) continue;
-          const { status, account } = await site.upload(asCsv(events), plan);
+          const { status, account } = await site.upload(eventsAsCsv(events), plan);
           expect(status).toBe('loaded');
           expect(account.new + account.same + account.completing).toBe(events.length);
           expect(account.correcting).toBe(0);
         }
-        expect(await recordsOf(site)).toEqual(inOrder(pairByRule(parts.flat())));
+        expect(await recordsOf(test, site)).toEqual(inOrder(pairByRule(parts.flat())));
       }),
       { numRuns: 40, seed: 20_261_201 },
     );
@@ -89,12 +53,12 @@ describe('events', () => {
         const site = await makeSite(test);
         const ids: (number | null)[] = [];
         for (const events of parts) {
-          ids.push(events.length === 0 ? null : (await site.upload(asCsv(events), plan)).id);
+          ids.push(events.length === 0 ? null : (await site.upload(eventsAsCsv(events), plan)).id);
         }
         const withdrawn = ids[gone];
         if (withdrawn) await site.withdraw(withdrawn);
         const left = parts.filter((_, index) => index !== gone).flat();
-        expect(await recordsOf(site)).toEqual(inOrder(pairByRule(left)));
+        expect(await recordsOf(test, site)).toEqual(inOrder(pairByRule(left)));
       }),
       { numRuns: 20, seed: 20_261_203 },
     );
@@ -138,7 +102,7 @@ describe('events', () => {
       status: 'loaded',
       account: { new: 1, refused: 0, skipped: 1, skippedBy: { 'ignored-event': 1 } },
     });
-    expect(await recordsOf(site)).toHaveLength(1);
+    expect(await recordsOf(test, site)).toHaveLength(1);
   });
 
   it('at a local time that occurs twice mean the second where only then a start precedes them', async () => {
@@ -155,7 +119,7 @@ describe('events', () => {
       ].join('\n'),
       plan,
     );
-    const finished = (await recordsOf(site)).map((stay) =>
+    const finished = (await recordsOf(test, site)).map((stay) =>
       new Date(stay.finished ?? 0).toISOString(),
     );
     expect(finished).toEqual(['2026-10-25T01:20:00.000Z', '2026-10-25T00:20:00.000Z']);
@@ -169,7 +133,7 @@ describe('events', () => {
     await site.upload(file('2026-10-24T09:00Z'), withId);
     const second = await site.upload(file('2026-10-24T09:30Z'), withId);
     expect(second.account).toMatchObject({ same: 1, correcting: 1, new: 0 });
-    const [stay, more] = await recordsOf(site);
+    const [stay, more] = await recordsOf(test, site);
     expect(more).toBeUndefined();
     expect(new Date(stay?.finished ?? 0).toISOString()).toBe('2026-10-24T09:30:00.000Z');
   });
@@ -180,6 +144,6 @@ describe('events', () => {
       'job,area,event,time\nJ1,Bench,started,2026-10-24T08:00Z\nJ1,Bench,scrapped,2026-10-24T09:00Z\n',
     );
     expect(account).toMatchObject({ new: 2, warnings: {} });
-    expect((await recordsOf(site))[0]?.finished).toBe(Date.parse('2026-10-24T09:00Z'));
+    expect((await recordsOf(test, site))[0]?.finished).toBe(Date.parse('2026-10-24T09:00Z'));
   });
 });

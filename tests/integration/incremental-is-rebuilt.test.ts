@@ -6,7 +6,7 @@ import { withTenant } from '../../server/db/tenant.ts';
 import { rebuildSite } from '../../server/flow/derive/derive.ts';
 import { readDerived } from '../../server/flow/derived-state.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
-import { asCsv, logArbitrary, steadyLog } from '../support/random-log.ts';
+import { asCsv, cutLogArbitrary, steadyLog } from '../support/random-log.ts';
 import { makeSite, type TestSite } from '../support/site.ts';
 
 let test: TestApp;
@@ -47,19 +47,7 @@ async function figures(site: TestSite) {
 
 const timeZone = 'Europe/Dublin';
 const start = Date.parse('2026-10-23T00:00:00Z');
-/** A log cut into uploads, some rows of which come twice. */
-const uploads = fc
-  .tuple(
-    logArbitrary(start),
-    fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 24, maxLength: 24 }),
-  )
-  .map(([rows, cuts]) =>
-    [0, 1, 2].map((part) =>
-      rows.filter((_, index) => cuts[index] === part || (cuts[index] === 3 && part > 0)),
-    ),
-  )
-  .map((parts) => parts.filter((rows) => rows.length > 0))
-  .filter((parts) => parts.length > 0);
+const uploads = cutLogArbitrary(start);
 
 describe('what is derived upload by upload', () => {
   it('is what a rebuild derives', async () => {

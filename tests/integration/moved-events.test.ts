@@ -1,9 +1,8 @@
-import { sql } from 'drizzle-orm';
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Areas } from '../../shared/contracts/areas.ts';
-import { withTenant } from '../../server/db/tenant.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
+import { eventPlan, eventsAsCsv, inOrder, recordsOf } from '../support/event-log.ts';
 import { pairByRule, type OracleEvent, type PairedStay } from '../support/event-oracle.ts';
 import { makeSite, type TestSite } from '../support/site.ts';
 
@@ -12,39 +11,6 @@ beforeAll(async () => {
   test = await startTestApp();
 });
 afterAll(() => test.close());
-
-const plan = {
-  shape: 'event',
-  columns: { job: 'job', area: 'area', event: 'event', time: 'time' },
-  eventWords: { arrived: ['arrived'], started: ['started'], finished: ['finished'] },
-  timeZone: 'UTC',
-};
-
-const asCsv = (events: readonly OracleEvent[]): string =>
-  [
-    'job,area,event,time',
-    ...events.map(({ job, area, event, at }) =>
-      [job, area, event, new Date(at).toISOString()].join(),
-    ),
-    '',
-  ].join('\n');
-
-const inOrder = (stays: readonly PairedStay[]): PairedStay[] =>
-  [...stays].sort((a, b) => (JSON.stringify(a) < JSON.stringify(b) ? -1 : 1));
-
-async function recordsOf(site: TestSite): Promise<PairedStay[]> {
-  const { rows } = await withTenant(test.db, 1, (tx) =>
-    tx.execute(sql`/* records */
-      select
-        job_key as job, zone.name as area,
-        (extract(epoch from arrived) * 1000)::double precision as arrived,
-        (extract(epoch from started) * 1000)::double precision as started,
-        (extract(epoch from finished) * 1000)::double precision as finished
-      from record join zone on zone.id = record.area_id
-      where record.site_id = ${site.id}`),
-  );
-  return inOrder(rows as unknown as PairedStay[]);
-}
 
 async function move(site: TestSite, from: number | null): Promise<number> {
   const { areas } = await site.get<Areas>('/areas');
@@ -93,13 +59,13 @@ describe('events of a merged area', () => {
         const site = await makeSite(test);
         const merged = (events: readonly OracleEvent[]) =>
           inOrder(pairByRule(events.map((each) => ({ ...each, area: 'Bench' }))));
-        await site.upload(asCsv(one), plan);
+        await site.upload(eventsAsCsv(one), eventPlan);
         const id = await move(site, null);
-        expect(await recordsOf(site)).toEqual(merged(one));
-        await site.upload(asCsv(other), plan);
-        expect(await recordsOf(site)).toEqual(merged([...one, ...other]));
+        expect(await recordsOf(test, site)).toEqual(merged(one));
+        await site.upload(eventsAsCsv(other), eventPlan);
+        expect(await recordsOf(test, site)).toEqual(merged([...one, ...other]));
         await undo(site, id);
-        expect(await recordsOf(site)).toEqual(inOrder(pairByRule([...one, ...other])));
+        expect(await recordsOf(test, site)).toEqual(inOrder(pairByRule([...one, ...other])));
       }),
       { numRuns: 20, seed: 20_261_208 },
     );
@@ -128,12 +94,12 @@ describe('events of an area that is moved from a moment on', () => {
           (stay) => stay.area === 'Wash' && (stay.finished ?? 0) >= from,
         ).length;
         const site = await makeSite(test);
-        await site.upload(asCsv(one), plan);
+        await site.upload(eventsAsCsv(one), eventPlan);
         const id = await move(site, from);
-        await site.upload(asCsv(other), plan);
-        expect(await recordsOf(site)).toEqual(inOrder(expected));
+        await site.upload(eventsAsCsv(other), eventPlan);
+        expect(await recordsOf(test, site)).toEqual(inOrder(expected));
         await undo(site, id);
-        expect(await recordsOf(site)).toEqual(inOrder(pairByRule([...one, ...other])));
+        expect(await recordsOf(test, site)).toEqual(inOrder(pairByRule([...one, ...other])));
       }),
       { numRuns: 20, seed: 20_261_209 },
     );
@@ -151,7 +117,7 @@ describe('an upload that replaces a period', () => {
     const columns = { job: 'job', area: 'area', started: 'started', finished: 'finished' };
     const stays = { shape: 'stay', mode: 'replace-period', timeZone: 'UTC', columns };
     const replacing = `${header}J1,Bench,2026-10-24T06:00Z,2026-10-24T07:00Z\nJ3,Bench,2026-10-24T10:00Z,\n`;
-    const jobs = async () => (await recordsOf(site)).map(({ job, area }) => `${job} ${area}`);
+    const jobs = async () => (await recordsOf(test, site)).map(({ job, area }) => `${job} ${area}`);
     const one = await site.upload(replacing, stays);
     const asTold = ['J1 Bench', 'J1 Wash', 'J2 Wash', 'J3 Bench', 'J9 Bench'];
     const replaced = ['J1 Bench', 'J3 Bench', 'J9 Bench'];

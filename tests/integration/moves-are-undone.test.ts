@@ -8,7 +8,7 @@ import { rebuildSite } from '../../server/flow/derive/derive.ts';
 import { readDerived } from '../../server/flow/derived-state.ts';
 import { inDerivation } from '../../server/jobs/derivation-of-site.ts';
 import { startTestApp, type TestApp } from '../support/app.ts';
-import { asCsv, logArbitrary, steadyLog, type LogRow } from '../support/random-log.ts';
+import { asCsv, cutLogArbitrary, steadyLog, type LogRow } from '../support/random-log.ts';
 import { makeSite, type TestSite } from '../support/site.ts';
 
 let test: TestApp;
@@ -103,19 +103,7 @@ const aMove = fc
   })
   .filter(({ area, target }) => area !== target);
 
-/** A log cut into three uploads, some rows of which come twice. */
-const uploads = fc
-  .tuple(
-    logArbitrary(start),
-    fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 24, maxLength: 24 }),
-  )
-  .map(([rows, cuts]) =>
-    [0, 1, 2].map((part) =>
-      rows.filter((_, index) => cuts[index] === part || (cuts[index] === 3 && part > 0)),
-    ),
-  )
-  .map((parts) => parts.filter((rows) => rows.length > 0))
-  .filter((parts) => parts.length > 0);
+const uploads = cutLogArbitrary(start);
 
 describe('a move that is taken back', () => {
   it('leaves every derived table as it was', async () => {

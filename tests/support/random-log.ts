@@ -57,6 +57,21 @@ function withoutSharedArrivals(rows: LogRow[]): LogRow[] {
   });
 }
 
+/** A log cut into up to three uploads, some rows of which come twice. */
+export const cutLogArbitrary = (start: number): fc.Arbitrary<LogRow[][]> =>
+  fc
+    .tuple(
+      logArbitrary(start),
+      fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 24, maxLength: 24 }),
+    )
+    .map(([rows, cuts]) =>
+      [0, 1, 2].map((part) =>
+        rows.filter((_, index) => cuts[index] === part || (cuts[index] === 3 && part > 0)),
+      ),
+    )
+    .map((parts) => parts.filter((rows) => rows.length > 0))
+    .filter((parts) => parts.length > 0);
+
 const iso = (at: number | null) => (at === null ? '' : new Date(at).toISOString());
 
 export function asCsv(rows: readonly LogRow[]): string {
