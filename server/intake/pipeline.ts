@@ -131,7 +131,6 @@ async function readRows(
     await setImmediate();
     if (bytes - told >= progressBytes) await tell();
   }
-  await stage.sendFull();
   await tell();
 }
 

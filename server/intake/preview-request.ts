@@ -1,14 +1,11 @@
 import { Readable } from 'node:stream';
 import type { Request } from 'express';
-import { and, eq } from 'drizzle-orm';
 import type { StorageEngine } from 'multer';
 import type { ColumnPlan } from '../../shared/contracts/plan.ts';
 import type { UploadPreview } from '../../shared/contracts/uploads.ts';
 import type { Database } from '../db/client.ts';
-import { site } from '../db/schema/sites.ts';
-import { areaSpelling } from '../db/schema/zones.ts';
 import { withTenant } from '../db/tenant.ts';
-import { ApiError, invalidInput, notFound } from '../errors.ts';
+import { ApiError, invalidInput } from '../errors.ts';
 import { listSavedPlans } from './column-plans.ts';
 import { IntakeFailure } from './failure.ts';
 import { isZip } from './file-kind.ts';
@@ -16,6 +13,7 @@ import { sampleBytes } from './limits.ts';
 import { readPlanPart } from './plan-part.ts';
 import { readOriginal, type UploadKey } from './original.ts';
 import { previewOf, type PreviewInput } from './preview.ts';
+import { readReadingSite } from './reading-site.ts';
 import { readForm } from './receive.ts';
 import type { SiteKey } from './site-uploads.ts';
 
@@ -70,7 +68,9 @@ async function preview(
   siteKey: SiteKey,
   asked: Pick<PreviewInput, 'open' | 'isCut' | 'plan' | 'receivedAt'>,
 ): Promise<UploadPreview> {
-  const context = await readContext(db, siteKey);
+  const context = await withTenant(db, siteKey.organisationId, (tx) =>
+    readReadingSite(tx, siteKey),
+  );
   const savedPlans = await listSavedPlans(db, siteKey);
   try {
     return await previewOf({ ...asked, savedPlans, ...context });
@@ -120,23 +120,4 @@ class HeadStorage implements StorageEngine {
   _removeFile(_request: Request, _file: unknown, done: (error: Error | null) => void): void {
     done(null);
   }
-}
-
-async function readContext(
-  db: Database,
-  { organisationId, siteId }: SiteKey,
-): Promise<{ timeZone: string; knownAreas: Map<string, number> }> {
-  return withTenant(db, organisationId, async (tx) => {
-    const [found] = await tx
-      .select({ timeZone: site.timeZone })
-      .from(site)
-      .where(and(eq(site.organisationId, organisationId), eq(site.id, siteId)));
-    if (!found) throw notFound('The site');
-    const spellings = await tx
-      .select({ folded: areaSpelling.folded, areaId: areaSpelling.areaId })
-      .from(areaSpelling)
-      .where(and(eq(areaSpelling.organisationId, organisationId), eq(areaSpelling.siteId, siteId)));
-    const knownAreas = new Map(spellings.map(({ folded, areaId }) => [folded, areaId]));
-    return { timeZone: found.timeZone, knownAreas };
-  });
 }

@@ -1,14 +1,13 @@
 import { and, eq, sql } from 'drizzle-orm';
 import { z } from 'zod';
 import { columnPlanSchema } from '../../shared/contracts/plan.ts';
-import { areaSpelling } from '../db/schema/zones.ts';
-import { site } from '../db/schema/sites.ts';
 import { upload } from '../db/schema/uploads.ts';
 import { withTenant } from '../db/tenant.ts';
 import { listSavedPlans } from '../intake/column-plans.ts';
 import { IntakeFailure, stopped } from '../intake/failure.ts';
 import { loadStagedRows } from '../intake/load.ts';
 import { readIntoStage } from '../intake/pipeline.ts';
+import { readReadingSite } from '../intake/reading-site.ts';
 import { inDerivation } from './derivation-of-site.ts';
 import { attemptLimit } from './fail-upload.ts';
 import type { SiteTask } from './site-work.ts';
@@ -83,19 +82,7 @@ async function begin(task: SiteTask, uploadId: number) {
       .where(thisUpload(task, uploadId))
       .returning();
     if (!row) throw new Error(`Upload ${uploadId} is gone.`);
-    const [ofSite] = await tx
-      .select({ timeZone: site.timeZone })
-      .from(site)
-      .where(and(eq(site.organisationId, organisationId), eq(site.id, siteId)));
-    const spellings = await tx
-      .select({ folded: areaSpelling.folded, areaId: areaSpelling.areaId })
-      .from(areaSpelling)
-      .where(and(eq(areaSpelling.organisationId, organisationId), eq(areaSpelling.siteId, siteId)));
-    return {
-      ...row,
-      timeZone: ofSite?.timeZone ?? 'UTC',
-      knownAreas: new Map(spellings.map((each) => [each.folded, each.areaId])),
-    };
+    return { ...row, ...(await readReadingSite(tx, { organisationId, siteId })) };
   });
 }
 
