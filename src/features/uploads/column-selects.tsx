@@ -1,7 +1,7 @@
-import { optionalColumns, timeColumns, type Shape } from '../../../shared/contracts/plan.ts';
+import { optionalColumns } from '../../../shared/contracts/plan.ts';
 import { PanelHeading } from '../../ui/heading.tsx';
 import { Select } from '../../ui/select.tsx';
-import type { ColumnName, PlanDraft } from './plan-draft.ts';
+import { columnsOfShape, type ColumnName, type PlanDraft } from './plan-draft.ts';
 
 export const nothing = '';
 
@@ -23,12 +23,6 @@ export const columnLabels: Readonly<Record<ColumnName, string>> = {
   resource: 'Resource',
   status: 'Status',
   parent: 'Parent job',
-};
-
-const mainColumns: Readonly<Record<Shape, readonly ColumnName[]>> = {
-  stay: ['job', 'area', ...timeColumns],
-  event: ['job', 'area', 'event', 'time'],
-  job: ['job'],
 };
 
 /** The cells of a header as choices, and none of them. */
@@ -65,7 +59,7 @@ export function ColumnSelects({
     <section className="flex flex-col gap-3">
       <PanelHeading>Which column holds what</PanelHeading>
       <div className="grid grid-cols-2 gap-3 lg:grid-cols-5">
-        {mainColumns[draft.shape].map(select)}
+        {columnsOfShape[draft.shape].map(select)}
       </div>
       <details>
         <summary className="cursor-pointer">More columns</summary>

@@ -1,5 +1,7 @@
 import {
   columnPlanSchema,
+  optionalColumns,
+  timeColumns,
   type AreaColumns,
   type ColumnPlan,
   type EventWords,
@@ -31,27 +33,18 @@ export const emptyDraft = (timeZone: string): PlanDraft => ({
 
 export const draftOf = (plan: ColumnPlan): PlanDraft => ({ ...plan });
 
-const columnsOfShape: Readonly<Record<Shape, readonly ColumnName[]>> = {
-  stay: ['job', 'area', 'arrived', 'started', 'finished'],
+/** The columns that a shape has of its own, beside those that any row may have. */
+export const columnsOfShape: Readonly<Record<Shape, readonly ColumnName[]>> = {
+  stay: ['job', 'area', ...timeColumns],
   event: ['job', 'area', 'event', 'time'],
   job: ['job'],
 };
-const columnsOfAny: readonly ColumnName[] = [
-  'event',
-  'time',
-  'area',
-  'arrived',
-  'started',
-  'finished',
-];
 
 /** The plan that a draft makes, or null while something that its shape needs is missing. */
 export function planOf(draft: PlanDraft): ColumnPlan | null {
   const { eventWords, areas, columns, ...settings } = draft;
-  const own = columnsOfShape[draft.shape];
-  const kept = Object.entries(columns).filter(
-    ([name]) => own.some((each) => each === name) || !columnsOfAny.some((each) => each === name),
-  );
+  const known: readonly string[] = [...columnsOfShape[draft.shape], ...optionalColumns];
+  const kept = Object.entries(columns).filter(([name]) => known.includes(name));
   const checked = columnPlanSchema.safeParse({
     ...settings,
     columns: Object.fromEntries(kept),
