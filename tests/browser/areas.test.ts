@@ -2,6 +2,7 @@ import type { Page } from 'playwright-core';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import {
   expectAccessible,
+  expectFits,
   signInOnPage,
   startTestBrowser,
   type TestBrowser,
@@ -173,11 +174,7 @@ describe('the screen of areas', () => {
 
   it.each([1440, 1024, 768, 720, 600])('fits a width of %d pixels', async (width) => {
     const { page } = await open();
-    await page.setViewportSize({ width, height: 900 });
     await page.getByRole('table', { name: 'Areas' }).waitFor();
-    const over = await page.evaluate(
-      () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
-    );
-    expect(over).toBe(0);
+    await expectFits(page, width);
   });
 });

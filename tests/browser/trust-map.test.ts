@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
   expectAccessible,
+  expectFits,
   signInOnPage,
   startTestBrowser,
   type TestBrowser,
@@ -132,12 +133,8 @@ describe('the trust map', () => {
 
   it.each([1440, 1024, 768, 600])('fits a width of %d pixels', async (width) => {
     const { page } = await open(`/trust${lastWeeks}`);
-    await page.setViewportSize({ width, height: 900 });
     await page.getByRole('link', { name: /^Ship: of/ }).waitFor();
-    const over = await page.evaluate(
-      () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
-    );
-    expect(over).toBe(0);
+    await expectFits(page, width);
   });
 });
 

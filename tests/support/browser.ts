@@ -83,6 +83,16 @@ export async function signInOnPage(page: Page, email: string, password = demoPas
   await page.getByRole('button', { name: 'Sign in', exact: true }).click();
 }
 
+/** Nothing of the page lies beyond its right edge at this width, once pictures have taken it up. */
+export async function expectFits(page: Page, width: number): Promise<void> {
+  await page.setViewportSize({ width, height: 900 });
+  const beyondEdge = () =>
+    page.evaluate(
+      () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
+    );
+  await expect.poll(beyondEdge, { timeout: 5000 }).toBe(0);
+}
+
 interface AxeResult {
   violations: { id: string; nodes: { html: string; failureSummary?: string }[] }[];
 }
