@@ -34,10 +34,17 @@ export const site = pgTable(
     timeZone: text().notNull(),
     currency: text().notNull().default('EUR'),
     valuePerJob: numeric(),
+    /** What holding a job for a year costs, as a share of its value. */
+    carryingShare: numeric(),
     lostFinish: lostFinish().notNull().default('infer'),
     newPassAfterDays: integer().notNull().default(90),
     /** Grows with every change of figures; answers are cached under it. */
     dataVersion: bigint({ mode: 'number' }).notNull().default(0),
+    /** Set when figures changed from which findings are made; cleared once the findings agree. */
+    findingsRequestedAt: instant(),
+    /** A rise smaller than this share of its level, or than so many jobs, is no finding; null for the usual. */
+    worthwhileRiseShare: numeric(),
+    worthwhileRiseJobs: numeric(),
     /** Set when a setting changed on which every stay depends; cleared once all are derived again. */
     rebuildRequestedAt: instant(),
     createdAt: instant().notNull(),

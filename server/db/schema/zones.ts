@@ -31,6 +31,8 @@ export const zone = pgTable(
     name: text().notNull(),
     countsFrom: countsFrom().notNull().default('arrival'),
     state: zoneState().notNull().default('ready'),
+    /** Share of its derivation that is done, while it is deriving. */
+    progress: numeric().notNull().default('0'),
     /** Latest moment for which the zone's data speak. */
     dataUntil: instant(),
     /** First moment of the zone's data, and the end of its warm-up. */
